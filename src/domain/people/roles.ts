@@ -1,0 +1,4 @@
+/** Roles of the people of the works; a buyer is whoever is signed in without one. */
+export const staffRoles = ['owner', 'builder', 'tester', 'shipper', 'bookkeeper'] as const;
+
+export type StaffRole = (typeof staffRoles)[number];
