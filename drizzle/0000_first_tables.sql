@@ -329,12 +329,13 @@ CREATE TABLE `idempotency_keys` (
 	`id` bigint unsigned AUTO_INCREMENT NOT NULL,
 	`actor` varchar(40) character set ascii collate ascii_bin NOT NULL,
 	`route` varchar(200) character set ascii collate ascii_bin NOT NULL,
-	`key` varchar(255) character set ascii collate ascii_bin NOT NULL,
+	`key` varchar(200) character set ascii collate ascii_bin NOT NULL,
+	`step` int NOT NULL,
 	`request_hash` varchar(64) character set ascii collate ascii_bin NOT NULL,
 	`result` json,
 	`created_at` datetime(3) NOT NULL,
 	CONSTRAINT `idempotency_keys_id` PRIMARY KEY(`id`),
-	CONSTRAINT `idempotency_keys_actor_route_key_unique` UNIQUE(`actor`,`route`,`key`)
+	CONSTRAINT `idempotency_keys_actor_route_key_step_unique` UNIQUE(`actor`,`route`,`key`,`step`)
 );
 --> statement-breakpoint
 CREATE TABLE `ledger_entries` (

@@ -27,7 +27,7 @@ export function openDatabase(url: string, connectionLimit = 10) {
 export type Db = ReturnType<typeof openDatabase>;
 export type Tx = Parameters<Parameters<Db['transaction']>[0]>[0];
 /** What a query may read from: the pool, or the transaction it is asked within. */
-export type Reader = Db | Tx;
+export type Reader = Pick<Db, 'select' | 'selectDistinct' | '$count' | 'execute'>;
 
 let shared: Db | undefined;
 

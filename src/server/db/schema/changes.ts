@@ -60,13 +60,15 @@ export const idempotencyKeys = mysqlTable(
     id: id(),
     actor: code(40).notNull(),
     route: code(200).notNull(),
-    key: code(255).notNull(),
+    key: code(200).notNull(),
+    /** A request may write several times; its first transaction is step 1. */
+    step: int().notNull(),
     requestHash: code(64).notNull(),
     result: json().$type<unknown>(),
     createdAt: moment().notNull(),
   },
   (table) => [
-    unique('idempotency_keys_actor_route_key_unique').on(table.actor, table.route, table.key),
+    unique('idempotency_keys_actor_route_key_step_unique').on(table.actor, table.route, table.key, table.step),
     index('idempotency_keys_created_at_idx').on(table.createdAt),
   ],
 );

@@ -1,0 +1,102 @@
+const segment = (text: string | number): string => encodeURIComponent(String(text));
+
+function withQuery(path: string, query: Record<string, string | readonly string[] | undefined>): string {
+  const search = new URLSearchParams();
+  for (const [name, value] of Object.entries(query)) {
+    if (value === undefined) continue;
+    for (const one of typeof value === 'string' ? [value] : value) search.append(name, one);
+  }
+  const text = search.toString();
+  return text === '' ? path : `${path}?${text}`;
+}
+
+/** Every address inside the application, built in one place. */
+export const paths = {
+  // The shop and the buyer's pages
+  shop: () => '/',
+  rig: (slug: string) => `/rigs/${segment(slug)}`,
+  checkout: (query: { batch: string; option: readonly string[] }) => withQuery('/checkout', query),
+  orderByLink: (token: string) => `/orders/${segment(token)}`,
+  payByLink: (token: string) => `/orders/${segment(token)}/pay`,
+  myOrders: () => '/my/orders',
+  myOrder: (number: number) => `/my/orders/${segment(number)}`,
+  certificateCheck: () => '/certificates',
+  certificateByCode: (code: string) => `/certificates/${segment(code)}`,
+  certificateKeys: () => '/certificates/keys',
+  signIn: (next?: string) => withQuery('/sign-in', { next }),
+  signInLink: (token: string) => `/sign-in/${segment(token)}`,
+  // The works side
+  works: () => '/works',
+  scan: (query?: string) => withQuery('/works/scan', { q: query }),
+  counter: () => '/works/orders',
+  worksOrder: (number: number) => `/works/orders/${segment(number)}`,
+  plan: () => '/works/batches',
+  batch: (number: number) => `/works/batches/${segment(number)}`,
+  worksModels: () => '/works/models',
+  worksModel: (slug: string) => `/works/models/${segment(slug)}`,
+  bomImport: (slug: string) => `/works/models/${segment(slug)}/bom-import`,
+  stores: () => '/works/parts',
+  part: (number: string) => `/works/parts/${segment(number)}`,
+  receive: () => '/works/lots/receive',
+  lot: (number: string) => `/works/lots/${segment(number)}`,
+  floor: () => '/works/floor',
+  unit: (serial: string) => `/works/units/${segment(serial)}`,
+  unitKit: (serial: string) => `/works/units/${segment(serial)}/kit`,
+  unitBuild: (serial: string) => `/works/units/${segment(serial)}/build`,
+  bench: () => '/works/bench',
+  run: (serial: string, runNo: number) => `/works/units/${segment(serial)}/runs/${segment(runNo)}`,
+  instruments: () => '/works/instruments',
+  worksCertificate: (numberAndLetter: string) => `/works/certificates/${segment(numberAndLetter)}`,
+  dispatch: () => '/works/dispatch',
+  packOrder: (number: number) => `/works/dispatch/${segment(number)}`,
+  shipment: (number: number) => `/works/shipments/${segment(number)}`,
+  office: () => '/works/people',
+  worksData: () => '/works/office',
+  changes: () => '/works/changes',
+  // The API
+  api: {
+    health: () => '/api/health',
+    openApi: () => '/api/openapi.json',
+    live: (subject: string) => withQuery('/api/live', { subject }),
+    signIn: () => '/api/sign-in',
+    signOut: () => '/api/sign-out',
+    signInLinks: () => '/api/sign-in-links',
+    signInLink: (token: string) => `/api/sign-in-links/${segment(token)}`,
+    theme: () => '/api/theme',
+    orders: () => '/api/orders',
+    order: (number: number) => `/api/orders/${segment(number)}`,
+    orderPayments: (number: number) => `/api/orders/${segment(number)}/payments`,
+    providerEvents: () => '/api/provider-events',
+    batches: () => '/api/batches',
+    models: () => '/api/models',
+    boms: (slug: string) => `/api/models/${segment(slug)}/boms`,
+    bomReading: () => '/api/bom-readings',
+    parts: () => '/api/parts',
+    part: (number: string) => `/api/parts/${segment(number)}`,
+    lots: () => '/api/lots',
+    lot: (number: string) => `/api/lots/${segment(number)}`,
+    unit: (serial: string) => `/api/units/${segment(serial)}`,
+    picks: (serial: string) => `/api/units/${segment(serial)}/picks`,
+    pick: (serial: string, pickId: number) => `/api/units/${segment(serial)}/picks/${segment(pickId)}`,
+    batchPicks: (number: number) => `/api/batches/${segment(number)}/picks`,
+    steps: (serial: string) => `/api/units/${segment(serial)}/steps`,
+    holds: (serial: string) => `/api/units/${segment(serial)}/holds`,
+    reworks: (serial: string) => `/api/units/${segment(serial)}/reworks`,
+    runs: (serial: string) => `/api/units/${segment(serial)}/runs`,
+    run: (runId: number) => `/api/runs/${segment(runId)}`,
+    readings: (runId: number) => `/api/runs/${segment(runId)}/readings`,
+    reading: (runId: number, readingId: number) => `/api/runs/${segment(runId)}/readings/${segment(readingId)}`,
+    sweeps: (runId: number) => `/api/runs/${segment(runId)}/sweeps`,
+    runClosing: (runId: number) => `/api/runs/${segment(runId)}/closing`,
+    certificates: () => '/api/certificates',
+    certificate: (code: string) => `/api/certificates/${segment(code)}`,
+    certificatePdf: (code: string) => `/api/certificates/${segment(code)}/pdf`,
+    certificateKeys: () => '/api/certificate-keys',
+    shipments: () => '/api/shipments',
+    shipment: (number: number) => `/api/shipments/${segment(number)}`,
+    packingList: (number: number) => `/api/shipments/${segment(number)}/packing-list`,
+    people: () => '/api/people',
+    person: (id: number) => `/api/people/${segment(id)}`,
+    works: () => '/api/works',
+  },
+} as const;
