@@ -103,8 +103,8 @@ async function installOnce() {
   await rename(fresh, dataFolder);
 }
 
-/** Starts the server and answers its port when it takes connections. */
-async function startDatabase() {
+/** Starts the server on a port and waits until it takes connections. @param {number} port */
+async function startDatabase(port) {
   const password = (await readFile(passwordFile, 'utf8')).trim();
   const initFile = join(folder, 'init.sql');
   await writeFile(
@@ -120,11 +120,13 @@ async function startDatabase() {
     ].join('\n'),
     { mode: 0o600 },
   );
-  const port = await freePort();
   const log = await open(logFile, 'a', 0o600);
   const child = spawn(
-    'mariadbd',
+    'setpriv',
     [
+      // The kernel stops the server when its keeper is killed outright.
+      '--pdeathsig=TERM',
+      'mariadbd',
       '--no-defaults',
       ...asRoot,
       `--datadir=${dataFolder}`,
@@ -157,19 +159,35 @@ async function startDatabase() {
   child.once('error', () => (ended = true));
   child.once('exit', () => {
     ended = true;
-    // A server that fell over takes its keeper with it: the users see the connection end and ask again.
-    if (answer && !stopping) process.exit(1);
+    if (answer && !stopping) void restartDatabase(port);
   });
   await log.close();
   for (let waited = 0; waited < 120_000; waited += 50) {
     if (ended) throw new Error(`mariadbd ended while starting; see ${logFile}`);
     if (await listens(port)) {
       await rm(initFile, { force: true });
-      return port;
+      return;
     }
     await pause(50);
   }
   throw new Error(`mariadbd does not answer; see ${logFile}`);
+}
+
+/**
+ * A server that fell over comes back on its port, where the users' pools find it again; one that cannot
+ * takes its keeper with it, and the users see the connection end.
+ *
+ * @param {number} port
+ */
+async function restartDatabase(port) {
+  process.stderr.write(`${new Date().toISOString()} mariadbd ended by itself; starting it again\n`);
+  try {
+    await pause(500);
+    await startDatabase(port);
+  } catch (error) {
+    process.stderr.write(`${String(error)}\n`);
+    process.exit(1);
+  }
 }
 
 async function stop() {
@@ -214,7 +232,9 @@ door.listen(socketName(`database ${folder}`), async () => {
   try {
     await stopLeftover();
     await installOnce();
-    tellUsers({ port: await startDatabase() });
+    const port = await freePort();
+    await startDatabase(port);
+    tellUsers({ port });
   } catch (error) {
     tellUsers({ error: error instanceof Error ? error.message : String(error) });
     await pause(200);
