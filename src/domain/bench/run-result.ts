@@ -1,0 +1,55 @@
+import type { Verdict } from './types';
+
+/** What the result of a run is computed from: one for each resolved test point. */
+export interface RunPoint {
+  /** As a person reads it: `20 m, 2nd harmonic`. */
+  label: string;
+  required: boolean;
+  verdict: Verdict;
+  /** Why there is a reading but no verdict. */
+  stopped: string | null;
+}
+
+/** The computed result; a person does not choose it. */
+export interface RunResult {
+  result: 'passed' | 'undecided' | 'failed' | 'incomplete';
+  canClose: boolean;
+  /** Sentences for the person: what failed, what is too close, what is missing. */
+  why: string[];
+}
+
+/**
+ * Result of a run. Any point that was measured and failed fails the run, required or not, and lets it close
+ * at once (*failed, stopped here*). Without a failure every required point needs a verdict; one that is too
+ * close to call leaves the run undecided.
+ */
+export function runResult(points: readonly RunPoint[]): RunResult {
+  const failed = points.filter((point) => point.verdict === 'fail');
+  if (failed.length > 0) {
+    return { result: 'failed', canClose: true, why: failed.map((point) => `${point.label} failed.`) };
+  }
+  const required = points.filter((point) => point.required);
+  if (required.length === 0) {
+    return {
+      result: 'incomplete',
+      canClose: false,
+      why: ['The run has no required point to be decided by.'],
+    };
+  }
+  const missing = required.filter((point) => point.verdict === 'not_run');
+  if (missing.length > 0) {
+    const why = missing.map((point) =>
+      point.stopped === null ? `${point.label} has no reading.` : `${point.label}: ${point.stopped}`,
+    );
+    return { result: 'incomplete', canClose: false, why };
+  }
+  const close = required.filter((point) => point.verdict === 'too_close');
+  if (close.length > 0) {
+    return {
+      result: 'undecided',
+      canClose: true,
+      why: close.map((point) => `${point.label} is too close to call.`),
+    };
+  }
+  return { result: 'passed', canClose: true, why: [] };
+}
