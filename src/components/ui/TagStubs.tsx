@@ -1,0 +1,92 @@
+import type { ReactNode } from 'react';
+import type { Verdict } from '~/domain/bench/types';
+import { Button } from './Button';
+import { Tag } from './Tag';
+import { VerdictMark } from './VerdictMark';
+
+interface Happening {
+  /** Shape and colour before the title; a rework is `too_close`'s half ring. */
+  mark?: Verdict | undefined;
+  title?: string | undefined;
+  text?: string | undefined;
+  /** When and by whom, in the monospaced face. */
+  meta?: string | undefined;
+}
+
+interface Stub {
+  key: string;
+  label: string;
+  state: 'torn' | 'present' | 'waiting';
+  /** Under the label: "torn off 2 March", "waits for the certificate". */
+  note?: string | undefined;
+  action?: { label: string; href: string } | undefined;
+  /** What happened at this stub, oldest first. */
+  happenings: readonly Happening[];
+}
+
+interface Props {
+  serial: string;
+  line?: string | undefined;
+  quiet?: readonly string[] | undefined;
+  stubs: readonly Stub[];
+  /** Beneath the tag itself: the parts in it. */
+  children?: ReactNode;
+}
+
+/** A unit's tag with its row of stubs, and beneath each stub what happened there. */
+export function TagStubs({ serial, line, quiet, stubs, children }: Props) {
+  return (
+    <div className="stub-row">
+      <div className="stub-first">
+        <Tag size="l" level={1} serial={serial} line={line} quiet={quiet} />
+        {children !== undefined && (
+          <div className="order-last px-4 pt-3 pb-4 lg:order-none lg:pl-14">{children}</div>
+        )}
+      </div>
+      <ol className="stub-list" aria-label="Work on this unit">
+        {stubs.map((stub) => (
+          <li
+            key={stub.key}
+            className={`stub stub-${stub.state}`}
+            aria-current={stub.state === 'present' ? 'step' : undefined}
+          >
+            <div className="stub-card">
+              <h2 className="leading-tight">{stub.label}</h2>
+              {stub.note !== undefined && (
+                <p className={stub.state === 'present' ? 'mt-1 text-[0.9375rem] leading-snug' : 'quiet'}>
+                  {stub.note}
+                </p>
+              )}
+              {stub.action !== undefined && (
+                <div className="mt-2.5">
+                  <Button href={stub.action.href}>{stub.action.label}</Button>
+                </div>
+              )}
+            </div>
+            <Beneath happenings={stub.happenings} />
+          </li>
+        ))}
+      </ol>
+    </div>
+  );
+}
+
+function Beneath({ happenings }: { happenings: readonly Happening[] }) {
+  if (happenings.length === 0) return <div className="stub-beneath hidden lg:block" />;
+  return (
+    <ul className="stub-beneath grid content-start gap-3 text-[0.9375rem] leading-snug">
+      {happenings.map((happening, index) => (
+        <li key={index}>
+          {happening.mark !== undefined && <VerdictMark verdict={happening.mark} word={happening.title} />}
+          {happening.mark === undefined && happening.title !== undefined && (
+            <p className="font-semibold">{happening.title}</p>
+          )}
+          {happening.text !== undefined && <p>{happening.text}</p>}
+          {happening.meta !== undefined && (
+            <p className="font-mono text-quiet leading-snug text-ink-2">{happening.meta}</p>
+          )}
+        </li>
+      ))}
+    </ul>
+  );
+}
