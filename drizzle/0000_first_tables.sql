@@ -70,6 +70,8 @@ CREATE TABLE `readings` (
 	`entered_text` varchar(60) NOT NULL,
 	`entered_unit` varchar(12) NOT NULL,
 	`value` double NOT NULL,
+	`at_most` boolean NOT NULL DEFAULT false,
+	`attenuation_held` boolean NOT NULL DEFAULT false,
 	`source` enum('typed','sweep','wire','history') NOT NULL,
 	`sweep_id` bigint unsigned,
 	`instrument_revision_id` bigint unsigned,

@@ -153,6 +153,10 @@ export const readings = mysqlTable(
     enteredUnit: varchar({ length: 12 }).notNull(),
     /** At the meter, in the quantity's SI unit or dB. */
     value: double().notNull(),
+    /** Hidden in the noise: the true one is at most this. */
+    atMost: boolean().notNull().default(false),
+    /** The tester showed that the ratio holds with 10 dB more attenuation. */
+    attenuationHeld: boolean().notNull().default(false),
     source: mysqlEnum(['typed', 'sweep', 'wire', 'history']).notNull(),
     sweepId: ref().references(() => sweeps.id),
     instrumentRevisionId: ref().references(() => instrumentRevisions.id),
