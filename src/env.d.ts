@@ -7,7 +7,7 @@ declare namespace App {
     /** For reading; every write goes through a service. */
     db: import('~/server/db/client').Reader;
     now: Date;
-    theme: 'light' | 'dark' | null;
+    works: import('~/server/queries/office/get-works').WorksSummary;
     /** What the person has just done, to be said once. */
     said: string | null;
     /** What a refused form of this page held, and what is wrong with it. */

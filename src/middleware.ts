@@ -11,6 +11,7 @@ import { DomainError, problemOf } from '~/server/errors';
 import { findForm, formReturnCookie } from '~/server/form-return';
 import { passes } from '~/server/rules';
 import { paths } from '~/lib/paths';
+import { getWorks } from '~/server/queries/office/get-works';
 
 export const onRequest = defineMiddleware(async (context, next) => {
   await fillLocals(context);
@@ -41,8 +42,7 @@ async function fillLocals(context: APIContext): Promise<void> {
   locals.said = null;
   locals.formReturn = null;
   locals.person = null;
-  const theme = cookies.get('theme')?.value;
-  locals.theme = theme === 'light' || theme === 'dark' ? theme : null;
+  locals.works = await getWorks(locals.db);
   const token = cookies.get(sessionCookieName)?.value;
   if (token === undefined) return;
   const found = await personOf(token);
