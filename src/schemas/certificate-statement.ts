@@ -30,8 +30,8 @@ const pointSchema = z
     upper: finite.nullable(),
     limitText: z.string(),
     ruleText: z.string(),
-    decision: z.enum(['guarded', 'simple', 'none']),
-    verdict: z.enum(['pass', 'too-close', 'fail', 'none']),
+    decision: z.enum(['guarded', 'simple']),
+    verdict: z.enum(['pass', 'too_close', 'fail', 'not_run']),
     concession: z.string().min(1).nullable(),
   })
   .strict();

@@ -1,5 +1,4 @@
-/** The verdict on one reading, as the run computed it. `none` is a reading without a limit, for information. */
-export type PointVerdict = 'pass' | 'too-close' | 'fail' | 'none';
+import type { Decision, Verdict } from '~/domain/bench/types';
 
 /** How far an instrument can be trusted: the grade that its owner has stated, printed beside its name. */
 export type InstrumentGrade = 'accredited' | 'checked' | 'unchecked';
@@ -46,8 +45,9 @@ export type StatedPoint = {
   /** Where the limit comes from: `works' own`, `ITU-R SM.329 category A`. */
   ruleText: string;
   /** `guarded` keeps U away from the limit, `simple` compares as read, after ILAC-G8:09/2019. */
-  decision: 'guarded' | 'simple' | 'none';
-  verdict: PointVerdict;
+  decision: Decision;
+  /** `not_run` is a reading without a limit, for information. */
+  verdict: Verdict;
   /** The owner's reason for letting a reading outside the works' own limit go; null where none was needed. */
   concession: string | null;
 };

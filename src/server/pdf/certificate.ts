@@ -1,0 +1,205 @@
+import { attachedText } from '~/domain/certificates/canonical';
+import { formatCode } from '~/domain/certificates/code';
+import { fullNumber } from '~/domain/certificates/statement';
+import type {
+  CertificateStatement,
+  StatedInstrument,
+  StatementSignature,
+} from '~/domain/certificates/statement';
+import { formatDay, formatTimeOf } from '~/lib/dates';
+import { drawFacts, drawHead, drawParagraph, drawShortHead, drawTitle } from './blocks';
+import { COLOURS } from './colours';
+import { drawFeet, finish } from './document';
+import { Flow } from './flow';
+import { drawLimitBars, worstBars } from './limit-bar';
+import { drawQr } from './qr';
+import { printedVerdict, readingTables, ruleSentences } from './reading-table';
+import { CONTENT_WIDTH, PAGE } from './sheet';
+import { drawTable } from './table';
+import { layOutTag } from './tag';
+import { style, wrapText } from './text-layout';
+
+const GRADES: Record<StatedInstrument['grade'], string> = {
+  accredited: 'accredited calibration',
+  checked: 'checked against another',
+  unchecked: 'unchecked: its published specification alone',
+};
+
+const BODY = style('text', 9.6);
+const STRONG = style('strong', 9.6);
+const SMALL = style('text', 8.6, COLOURS.quiet);
+const SMALL_STRONG = style('strong', 8.6, COLOURS.quiet);
+const QR_SIDE = 64;
+
+/**
+ * The certificate as a PDF file: one page of A4, more only where the readings need them. Pure of clock and chance: the
+ * same statement and signature give the same bytes. The signed statement is attached as `<number>.json`.
+ */
+export async function renderCertificate(
+  statement: CertificateStatement,
+  signature: StatementSignature,
+): Promise<Uint8Array> {
+  const number = fullNumber(statement);
+  const { works, unit } = statement;
+  const flow = new Flow((next) => drawShortHead(next, works.name, number));
+
+  drawHead(flow, works, 'Certificate', number);
+  drawTitle(flow, 'Final test certificate', 'For one unit, measured before it left the bench.');
+  drawAmendment(flow, statement);
+  drawTag(flow, statement);
+  drawFacts(flow, factsOf(statement));
+  flow.y += 8;
+
+  for (const table of readingTables(statement.points, CONTENT_WIDTH)) {
+    drawTable(flow, table);
+    flow.y += 9;
+  }
+  drawLimitBars(flow, worstBars(statement.points));
+  flow.y += 8;
+  drawWords(flow, statement);
+  drawCheck(flow, statement, signature);
+  drawFeet(
+    flow,
+    `${number}. The results are of unit ${unit.serial} alone. This certificate may be copied only as a whole.`,
+  );
+
+  return finish(flow, {
+    title: `Final test certificate ${number}: ${unit.model}, ${unit.serial}`,
+    author: works.name,
+    subject: `Final test of ${unit.model}, serial number ${unit.serial}`,
+    keywords: [number, unit.serial, formatCode(statement.code)],
+    madeAt: new Date(`${statement.issuedOn}T00:00:00Z`),
+    attachment: {
+      name: `${number}.json`,
+      description: 'The statement of this certificate with all readings, its signature and how to check it',
+      text: attachedText(statement, signature),
+    },
+  });
+}
+
+function drawAmendment(flow: Flow, { replaces }: CertificateStatement): void {
+  if (!replaces) return;
+  const words = `Amendment to certificate ${replaces.number}, which it replaces.`;
+  drawParagraph(
+    flow,
+    [
+      { text: words, style: STRONG },
+      { text: ` Why: ${replaces.reason}`, style: BODY },
+    ],
+    8,
+  );
+}
+
+function drawTag(flow: Flow, { unit, buyer, batchNumber }: CertificateStatement): void {
+  const made = [
+    ...(buyer?.orderNumber ? [`order ${buyer.orderNumber}`] : []),
+    ...(batchNumber ? [`batch ${batchNumber}`] : []),
+    ...(unit.bomRevision ? [`BOM rev ${unit.bomRevision}`] : []),
+  ].join(', ');
+  const tag = layOutTag(
+    {
+      serial: unit.serial,
+      about: [unit.model, unit.options].filter((text) => text !== '').join(' · '),
+      right: [
+        ...(buyer?.callSign ? [{ text: `Built for ${buyer.callSign}`, quiet: false }] : []),
+        ...(made === '' ? [] : [{ text: made, quiet: true }]),
+      ],
+    },
+    PAGE.margin,
+    CONTENT_WIDTH,
+  );
+  flow.need(tag.height);
+  tag.draw(flow.sheet, flow.y);
+  flow.y += tag.height + 13;
+}
+
+function factsOf(statement: CertificateStatement): (readonly [string, string])[] {
+  const { conditions, run, testPlan, unit } = statement;
+  return [
+    ['Tested', formatTimeOf(new Date(statement.testedAt), 'UTC')],
+    ['Supply', conditions.supply],
+    ['By', statement.testedBy],
+    ['Load, air', [conditions.load, conditions.ambient].filter((text) => text !== '').join(', ')],
+    ['Test plan', `${testPlan.name} rev ${testPlan.revision}`],
+    ['Run', run.note === '' ? String(run.number) : `${run.number} (${run.note})`],
+    ['Firmware', unit.firmware],
+    ['Issued', `${formatDay(statement.issuedOn)} by ${statement.issuedBy}`],
+    ['Result', statement.result],
+    ['Alignment', unit.alignment.join('; ')],
+  ];
+}
+
+function instrumentText({ name, grade, gradeNote, calibrationDueOn }: StatedInstrument): string {
+  const details = [
+    gradeNote === '' ? GRADES[grade] : `${grade === 'checked' ? 'checked' : GRADES[grade]} ${gradeNote}`,
+    calibrationDueOn === null ? 'no calibration due date' : `calibration due ${formatDay(calibrationDueOn)}`,
+  ];
+  return `${name} (${details.join(', ')})`;
+}
+
+function concessionSentences({ points }: CertificateStatement): string[] {
+  return points
+    .filter((point) => printedVerdict(point) === 'concession')
+    .map(({ label, band, text, limitText, concession }) => {
+      const what = band === null ? label : `${label}, ${band}`;
+      return `By concession of the owner: ${what}, ${text} where ${limitText} is asked. ${concession}`;
+    });
+}
+
+function drawWords(flow: Flow, statement: CertificateStatement): void {
+  const lead = (text: string) => ({ text: `${text} `, style: STRONG });
+  const body = (sentences: readonly string[]) => ({ text: sentences.join(' '), style: BODY });
+  const [first = '', ...others] = statement.conformity;
+  drawParagraph(flow, [lead('Statement of conformity.'), body([first])], 3);
+  for (const paragraph of others) drawParagraph(flow, [body([paragraph])], 3);
+  drawParagraph(flow, [body(statement.notAssessed)], 3);
+  const departures = [...statement.deviations, ...concessionSentences(statement)];
+  if (departures.length > 0) drawParagraph(flow, [lead('Departures.'), body(departures)], 3);
+
+  flow.y += 2;
+  const small = (name: string, sentences: readonly string[]) => {
+    const text = sentences.filter((sentence) => sentence !== '').join(' ');
+    if (text === '') return;
+    drawParagraph(
+      flow,
+      [
+        { text: `${name} `, style: SMALL_STRONG },
+        { text, style: SMALL },
+      ],
+      2.5,
+    );
+  };
+  small('Decided by:', [statement.decisionRule, ...ruleSentences(statement.points)]);
+  small('Measured with:', [
+    statement.instruments.map(instrumentText).join('; '),
+    statement.path === '' ? '' : `By way of ${statement.path}.`,
+    'Figures are at the unit; what the meters showed is in the attached data.',
+    `Computation ${statement.computationVersion}.`,
+  ]);
+  small('What it does not mean:', statement.cautions);
+}
+
+function drawCheck(
+  flow: Flow,
+  { code, checkUrl, issuedBy, issuedOn }: CertificateStatement,
+  signature: StatementSignature,
+) {
+  const x = PAGE.margin + QR_SIDE + 18;
+  const width = CONTENT_WIDTH - QR_SIDE - 18;
+  const codeStyle = style('mono', 10.4);
+  const lines = [
+    ...wrapText(`Issued by ${issuedBy}, ${formatDay(issuedOn)}`, BODY, width),
+    ...wrapText(`Check it: scan, or type ${formatCode(code)} at`, codeStyle, width),
+    ...wrapText(checkUrl, style('mono', 8.2, COLOURS.quiet), width),
+    ...wrapText(
+      `Signed with the works’ key ${signature.keyId} (${signature.algorithm}). The readings are attached to this file as data.`,
+      SMALL,
+      width,
+    ),
+  ];
+  flow.y += 8;
+  flow.need(QR_SIDE + 6);
+  drawQr(flow.sheet, checkUrl, PAGE.margin, flow.y, QR_SIDE);
+  const end = flow.sheet.lines(lines, x, flow.y + 2);
+  flow.y = Math.max(end, flow.y + QR_SIDE);
+}

@@ -1,0 +1,184 @@
+import type { StatedPoint } from '~/domain/certificates/statement';
+import type { Cell, Table } from './table';
+import { leastWidth } from './table';
+import type { PrintedVerdict } from './verdict-mark';
+
+type BandRow = { band: string; freqHz: number | null; points: Map<string, StatedPoint> };
+type Column = { key: string; heading: string; points: (StatedPoint | undefined)[] };
+
+const SEVERITY: readonly PrintedVerdict[] = ['not_run', 'pass', 'concession', 'too_close', 'fail'];
+
+/** A point as it is printed: a concession is said, and never shown as a pass. */
+export function printedVerdict(point: StatedPoint): PrintedVerdict {
+  return point.concession !== null && point.verdict !== 'pass' ? 'concession' : point.verdict;
+}
+
+function worst(points: readonly StatedPoint[]): PrintedVerdict {
+  const found = Math.max(0, ...points.map((point) => SEVERITY.indexOf(printedVerdict(point))));
+  return SEVERITY[found] ?? 'not_run';
+}
+
+/** A carrier in MHz to 10 Hz, in groups that the eye can count: `7.030 04`. */
+export function formatCarrier(freqHz: number): string {
+  const [whole = '', part = ''] = (freqHz / 1e6).toFixed(5).split('.');
+  return `${whole}.${part.slice(0, 3)}\u00a0${part.slice(3)}`;
+}
+
+function formatK(k: number): string {
+  return Number.isInteger(Math.round(k * 100) / 100) ? k.toFixed(0) : k.toFixed(2);
+}
+
+const allSame = <T>(values: readonly T[]): boolean => values.every((value) => value === values[0]);
+
+/** What a whole column shares stands in a row under it, what differs from band to band beside the value. */
+function sharedLimit({ points }: Column): string | undefined {
+  const limits = points.flatMap((point) => (point ? [point.limitText] : []));
+  return allSame(limits) ? limits[0] : undefined;
+}
+
+function uncertaintyText(point: StatedPoint, commonK: string | undefined): string {
+  if (!point.uncertainty) return '';
+  const { text, k } = point.uncertainty;
+  return commonK === undefined ? `${text}, k = ${formatK(k)}` : text;
+}
+
+function valueCell(point: StatedPoint | undefined, ownUncertainty: string): Cell {
+  if (!point) return null;
+  const under = [
+    ...(point.n > 1 ? [`mean of ${point.n}`] : []),
+    ...(ownUncertainty === '' ? [] : [`± ${ownUncertainty}`]),
+  ];
+  return { text: point.text, under };
+}
+
+function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table {
+  const points = columns.flatMap((column) => column.points.filter((point) => point !== undefined));
+  const factors = points.flatMap((point) => (point.uncertainty ? [formatK(point.uncertainty.k)] : []));
+  const commonK = factors.length > 0 && allSame(factors) ? factors[0] : undefined;
+  const table: Table = {
+    columns: [
+      { heading: 'Band', align: 'start', prose: true },
+      { heading: 'Carrier, MHz', align: 'end', prose: false },
+    ],
+    rows: rows.map(({ band, freqHz }) => ({
+      quiet: false,
+      cells: [{ text: band }, freqHz === null ? null : { text: formatCarrier(freqHz) }],
+    })),
+  };
+  const mustBe: Cell[] = [{ text: 'must be' }, null];
+  const spread: Cell[] = [{ text: commonK === undefined ? '±' : `±, k = ${commonK}` }, null];
+
+  columns.forEach((column, index) => {
+    const limit = sharedLimit(column);
+    const texts = column.points.flatMap((point) => (point ? [uncertaintyText(point, commonK)] : []));
+    const shared = allSame(texts) ? (texts[0] ?? '') : undefined;
+    table.columns.push({ heading: column.heading, align: 'end', prose: false });
+    table.rows.forEach((row, at) => {
+      const point = column.points[at];
+      row.cells.push(valueCell(point, point && shared === undefined ? uncertaintyText(point, commonK) : ''));
+    });
+    mustBe.push(limit === undefined || limit === '' ? null : { text: limit });
+    spread.push(shared === undefined || shared === '' ? null : { text: shared });
+    const next = columns[index + 1];
+    if (limit === undefined && !(next && sameLimits(column, next))) {
+      table.columns.push({ heading: 'Allowed', align: 'end', prose: false });
+      table.rows.forEach((row, at) => row.cells.push({ text: column.points[at]?.limitText ?? '' }));
+      mustBe.push(null);
+      spread.push(null);
+    }
+  });
+
+  table.columns.push({ heading: 'Result', align: 'start', prose: true });
+  table.rows.forEach((row, at) => {
+    const judged = columns.flatMap(({ points: own }) => own[at] ?? []);
+    row.cells.push(judged.length === 0 ? null : { verdict: worst(judged) });
+  });
+  for (const cells of [mustBe, spread]) {
+    if (cells.slice(1).some((cell) => cell !== null))
+      table.rows.push({ quiet: true, cells: [...cells, null] });
+  }
+  return table;
+}
+
+/** Whether two columns are held, band by band, to the same limits, so that one column of limits serves both. */
+function sameLimits(a: Column, b: Column): boolean {
+  return a.points.every((point, at) => point?.limitText === b.points[at]?.limitText);
+}
+
+/** Columns in as few tables as the width allows, each table with its own result. */
+function chunked(rows: readonly BandRow[], columns: readonly Column[], width: number): Table[] {
+  const tables: Table[] = [];
+  let chunk: Column[] = [];
+  for (const column of columns) {
+    if (chunk.length > 0 && leastWidth(bandTable(rows, [...chunk, column])) > width) {
+      tables.push(bandTable(rows, chunk));
+      chunk = [];
+    }
+    chunk.push(column);
+  }
+  return chunk.length > 0 ? [...tables, bandTable(rows, chunk)] : tables;
+}
+
+function singleTable(points: readonly StatedPoint[]): Table {
+  return {
+    columns: [
+      { heading: 'Whole unit', align: 'start', prose: true },
+      { heading: 'Reading', align: 'end', prose: false },
+      { heading: 'Must be', align: 'end', prose: false },
+      { heading: '±', align: 'end', prose: false },
+      { heading: 'Result', align: 'start', prose: true },
+    ],
+    rows: points.map((point) => ({
+      quiet: false,
+      cells: [
+        { text: point.band === null ? point.label : `${point.label}, ${point.band}` },
+        valueCell(point, ''),
+        { text: point.limitText },
+        { text: uncertaintyText(point, undefined) },
+        { verdict: printedVerdict(point) },
+      ],
+    })),
+  };
+}
+
+/**
+ * The readings as tables no wider than `width` points: one row a band and carrier, one column a quantity, in the order
+ * in which the points come; points without a band, and a second point of one quantity at one carrier, in a list below.
+ */
+export function readingTables(points: readonly StatedPoint[], width: number): Table[] {
+  const rows = new Map<string, BandRow>();
+  const headings = new Map<string, string>();
+  const single: StatedPoint[] = [];
+  for (const point of points) {
+    const at = `${point.band}|${point.freqHz}`;
+    const row = rows.get(at);
+    if (point.band === null || row?.points.has(point.quantityKey)) {
+      single.push(point);
+      continue;
+    }
+    if (!headings.has(point.quantityKey)) headings.set(point.quantityKey, point.label);
+    if (row) row.points.set(point.quantityKey, point);
+    else
+      rows.set(at, { band: point.band, freqHz: point.freqHz, points: new Map([[point.quantityKey, point]]) });
+  }
+  const bandRows = [...rows.values()];
+  const columns = [...headings].map(([key, heading]) => ({
+    key,
+    heading,
+    points: bandRows.map((row) => row.points.get(key)),
+  }));
+  const tables = chunked(bandRows, columns, width);
+  return single.length > 0 ? [...tables, singleTable(single)] : tables;
+}
+
+/** Which limits hold and how they are decided, one sentence for each rule, so that no verdict stands without its rule. */
+export function ruleSentences(points: readonly StatedPoint[]): string[] {
+  const groups = new Map<string, Set<string>>();
+  for (const point of points) {
+    if (point.limitText === '') continue;
+    const how = point.decision === 'guarded' ? 'guarded (w = U)' : 'as read (w = 0)';
+    const rule = `${point.ruleText}, ${how}`;
+    groups.set(rule, (groups.get(rule) ?? new Set()).add(point.label));
+  }
+  return [...groups].map(([rule, labels]) => `${[...labels].join('; ')}: ${rule}.`);
+}

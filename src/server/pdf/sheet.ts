@@ -1,0 +1,202 @@
+import {
+  appendBezierCurve,
+  beginText,
+  closePath,
+  endText,
+  fill,
+  fillAndStroke,
+  lineTo,
+  moveTo,
+  PDFDocument,
+  setDashPattern,
+  setFillingRgbColor,
+  setFontAndSize,
+  setLineWidth,
+  setStrokingRgbColor,
+  setTextMatrix,
+  showText,
+  stroke,
+} from 'pdf-lib';
+import type { PDFName, PDFOperator, PDFPage } from 'pdf-lib';
+import type { Colour } from './colours';
+import { FontBook, runWidth, splitRuns } from './fonts';
+import type { FontKey } from './fonts';
+import { lineHeight, textWidth } from './text-layout';
+import type { Line, Style } from './text-layout';
+
+/** A4 in points; y runs down from the top edge. */
+export const PAGE = { width: 595.28, height: 841.89, margin: 40.5 } as const;
+/** Width between the margins. */
+export const CONTENT_WIDTH = PAGE.width - 2 * PAGE.margin;
+
+export type Point = readonly [x: number, y: number];
+type Paint = { fill?: Colour; stroke?: Colour; lineWidth?: number; dash?: readonly [number, number] };
+type Operation =
+  | { kind: 'text'; font: FontKey; text: string; x: number; y: number; style: Style }
+  | { kind: 'path'; shapes: readonly Shape[]; paint: Paint };
+type Shape = { points: readonly Point[]; closed: boolean } | { centre: Point; radius: number; half: boolean };
+
+/**
+ * What will be drawn, page by page. Drawing is put off until all pages are known, so that fonts are embedded only where
+ * they are used and a foot can say how many pages there are.
+ */
+export class Sheet {
+  readonly #pages: Operation[][] = [[]];
+  #current = 0;
+
+  get pageCount(): number {
+    return this.#pages.length;
+  }
+
+  newPage(): void {
+    this.#pages.push([]);
+    this.#current = this.#pages.length - 1;
+  }
+
+  /** Goes back to a page, counted from 0, to add to it. */
+  turnTo(page: number): void {
+    this.#current = page;
+  }
+
+  #add(operation: Operation): void {
+    this.#pages[this.#current]?.push(operation);
+  }
+
+  /** Text on one line with its baseline at y. `end` puts the end of the text at x. @returns its width */
+  text(text: string, x: number, y: number, style: Style, align: 'start' | 'end' = 'start'): number {
+    const width = textWidth(text, style);
+    let at = align === 'end' ? x - width : x;
+    for (const run of splitRuns(text, style.face)) {
+      this.#add({ kind: 'text', ...run, x: at, y, style });
+      at += runWidth(run, style.size);
+    }
+    return width;
+  }
+
+  /** Lines of a paragraph, the first one's top at y. @returns the y under the last line */
+  lines(lines: readonly Line[], x: number, y: number, align: 'start' | 'end' = 'start'): number {
+    let top = y;
+    for (const line of lines) {
+      const height = Math.max(...line.spans.map((span) => lineHeight(span.style)));
+      const size = Math.max(...line.spans.map((span) => span.style.size));
+      let at = align === 'end' ? x - line.width : x;
+      for (const span of line.spans)
+        at += this.text(span.text, at, top + (height + size * 0.68) / 2, span.style);
+      top += height;
+    }
+    return top;
+  }
+
+  rectangle(x: number, y: number, width: number, height: number, colour: Colour): void {
+    this.rectangles([{ x, y, width, height }], colour);
+  }
+
+  /** Many rectangles of one colour as one path. */
+  rectangles(
+    boxes: readonly { x: number; y: number; width: number; height: number }[],
+    colour: Colour,
+  ): void {
+    const shapes = boxes.map(({ x, y, width, height }) => ({
+      closed: true,
+      points: [
+        [x, y],
+        [x + width, y],
+        [x + width, y + height],
+        [x, y + height],
+      ] as const,
+    }));
+    this.#add({ kind: 'path', shapes, paint: { fill: colour } });
+  }
+
+  line(from: Point, to: Point, colour: Colour, lineWidth: number): void {
+    this.#add({
+      kind: 'path',
+      shapes: [{ points: [from, to], closed: false }],
+      paint: { stroke: colour, lineWidth },
+    });
+  }
+
+  polygon(points: readonly Point[], paint: Paint): void {
+    this.#add({ kind: 'path', shapes: [{ points, closed: true }], paint });
+  }
+
+  /** A circle, or its left half. */
+  circle(centre: Point, radius: number, paint: Paint, half = false): void {
+    this.#add({ kind: 'path', shapes: [{ centre, radius, half }], paint });
+  }
+
+  /** Draws everything into a document. */
+  async drawInto(document: PDFDocument): Promise<void> {
+    const fonts = new FontBook(document);
+    for (const operations of this.#pages) {
+      const page = document.addPage([PAGE.width, PAGE.height]);
+      const names = new Map<FontKey, PDFName>();
+      for (const operation of operations) {
+        if (operation.kind === 'path')
+          page.pushOperators(...pathOperators(operation.shapes, operation.paint));
+        else page.pushOperators(...(await textOperators(operation, page, fonts, names)));
+      }
+    }
+  }
+}
+
+async function textOperators(
+  { font, text, x, y, style }: Extract<Operation, { kind: 'text' }>,
+  page: PDFPage,
+  fonts: FontBook,
+  names: Map<FontKey, PDFName>,
+): Promise<PDFOperator[]> {
+  const embedded = await fonts.embed(font);
+  let name = names.get(font);
+  if (!name) {
+    name = page.node.newFontDictionary(font, embedded.ref);
+    names.set(font, name);
+  }
+  return [
+    beginText(),
+    setFillingRgbColor(...style.colour),
+    setFontAndSize(name, style.size),
+    setTextMatrix(1, 0, 0, 1, round(x), round(PAGE.height - y)),
+    showText(embedded.encodeText(text)),
+    endText(),
+  ];
+}
+
+function pathOperators(shapes: readonly Shape[], paint: Paint): PDFOperator[] {
+  const operators: PDFOperator[] = [];
+  if (paint.fill) operators.push(setFillingRgbColor(...paint.fill));
+  if (paint.stroke) operators.push(setStrokingRgbColor(...paint.stroke), setLineWidth(paint.lineWidth ?? 1));
+  if (paint.stroke) operators.push(setDashPattern([...(paint.dash ?? [])], 0));
+  for (const shape of shapes) operators.push(...('points' in shape ? straight(shape) : curved(shape)));
+  operators.push(paint.fill && paint.stroke ? fillAndStroke() : paint.fill ? fill() : stroke());
+  return operators;
+}
+
+function straight({ points, closed }: { points: readonly Point[]; closed: boolean }): PDFOperator[] {
+  const operators = points.map(([x, y], index) =>
+    index === 0 ? moveTo(round(x), round(PAGE.height - y)) : lineTo(round(x), round(PAGE.height - y)),
+  );
+  return closed ? [...operators, closePath()] : operators;
+}
+
+/** Four Bézier curves; 0.5523 is the usual distance of their handles for a circle of radius 1. */
+function curved({ centre: [x, top], radius: r, half }: { centre: Point; radius: number; half: boolean }) {
+  const y = PAGE.height - top;
+  const h = 0.5523 * r;
+  const curve = (...numbers: [number, number, number, number, number, number]) => {
+    const [a, b, c, d, e, f] = numbers;
+    return appendBezierCurve(round(a), round(b), round(c), round(d), round(e), round(f));
+  };
+  const left = [
+    moveTo(round(x), round(y + r)),
+    curve(x - h, y + r, x - r, y + h, x - r, y),
+    curve(x - r, y - h, x - h, y - r, x, y - r),
+  ];
+  const right = [curve(x + h, y - r, x + r, y - h, x + r, y), curve(x + r, y + h, x + h, y + r, x, y + r)];
+  return [...left, ...(half ? [] : right), closePath()];
+}
+
+/** A thousandth of a point: shorter files, and no digits that depend on the machine. */
+function round(value: number): number {
+  return Math.round(value * 1000) / 1000;
+}
