@@ -49,16 +49,20 @@ function cutRows(
   separator: string,
 ): { ok: true; rows: TableRow[] } | { ok: false; reason: string } {
   try {
-    const records: { record: string[]; info: { lines: number } }[] = parse(text, {
+    const lines: number[] = [];
+    const records = parse(text, {
       bom: true,
       delimiter: separator,
-      info: true,
+      on_record: (record, context) => {
+        lines.push(context.lines);
+        return record;
+      },
       // Inch marks stand unescaped in descriptions, and rows end where their last filled cell ends.
       relax_column_count: true,
       relax_quotes: true,
       trim: true,
     });
-    return { ok: true, rows: records.map(({ record, info }) => ({ cells: record, line: info.lines })) };
+    return { ok: true, rows: records.map((cells, index) => ({ cells, line: lines[index] ?? 0 })) };
   } catch (error) {
     if (error instanceof CsvError) {
       return {
