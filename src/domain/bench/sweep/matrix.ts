@@ -1,0 +1,62 @@
+import { numberCell } from './cells';
+import type { DraftResult } from './drafts';
+import { guessFreqUnit } from './drafts';
+import { freqFactor, freqUnitIn, freqUnitOf } from './level-units';
+import type { Table } from './table';
+import type { SweepHints } from './types';
+
+/** Frequencies in the heading of a matrix, one row a time; null where the heading is no such row. */
+function headingFrequencies(table: Table): { values: number[]; unit: string } | null {
+  const { heading, dialect, width } = table;
+  if (heading === null || heading.length !== width || width < 4) return null;
+  if (numberCell(heading[0] ?? '', dialect.decimal) !== null) return null;
+  const cells = heading.slice(1).map((cell) => numberCell(cell, dialect.decimal));
+  const values: number[] = [];
+  for (const cell of cells) {
+    if (cell === null || cell.value <= (values[values.length - 1] ?? -Infinity)) return null;
+    values.push(cell.value);
+  }
+  return { values, unit: cells[0]?.unit ?? '' };
+}
+
+/** True where the file is a matrix: its heading is a rising row of frequencies. */
+export function isMatrix(table: Table): boolean {
+  return headingFrequencies(table) !== null;
+}
+
+/** Reads a matrix; the highest level of each column over all rows is kept. */
+export function readMatrix(table: Table, hints: SweepHints): DraftResult {
+  const found = headingFrequencies(table);
+  if (found === null) return { ok: false, reason: 'The first row is no rising row of frequencies.' };
+  const { values } = found;
+  const questions: string[] = [];
+  const named = hints.freqUnit ?? freqUnitOf(found.unit) ?? freqUnitIn(table.heading?.[0] ?? '');
+  const guess = guessFreqUnit(values[values.length - 1] ?? 0);
+  if (named === null && guess.question !== null) questions.push(guess.question);
+  const unit = named ?? guess.unit;
+  const level = new Float64Array(values.length).fill(-Infinity);
+  for (const row of table.rows) {
+    for (let column = 0; column < values.length; column += 1) {
+      const cell = numberCell(row[column + 1] ?? '', table.dialect.decimal);
+      if (cell !== null && cell.value > (level[column] ?? Infinity)) level[column] = cell.value;
+    }
+  }
+  return {
+    ok: true,
+    draft: {
+      form: 'matrix',
+      columns: table.heading ?? [],
+      freqColumn: null,
+      levelColumn: null,
+      freqHz: Float64Array.from(values, (value) => value * freqFactor(unit)),
+      level,
+      freqUnit: unit,
+      levelUnit: null,
+      calibratedForm: true,
+      questions,
+      notes: [
+        `The frequencies are the heading; of ${String(table.rows.length)} rows the highest level of each column was kept.`,
+      ],
+    },
+  };
+}
