@@ -28,6 +28,8 @@ describe('what was scanned', () => {
     ['VO-0007', 'VO-0007'],
     ['rr 473 124 829 xx', 'RR473124829XX'],
     ['Q0ABC', 'Q0ABC'],
+    ['1O93', '1093'],
+    ['1Q0ABC', '1Q0ABC'],
     ['PSU-ANGLE', 'PSU-ANGLE'],
     ['', ''],
   ])('%j is %j', (text, expected) => {

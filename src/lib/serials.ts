@@ -13,7 +13,7 @@ export function formatCertificateNumber(year: number, n: number): string {
 /**
  * What was scanned or typed, as it stands on labels: capitals, no spaces, plain hyphens. After the first hyphen
  * a group made of digits and their look-alikes (O for 0, I and L for 1) is read as digits; what stands before it
- * is a prefix with letters of its own and stays.
+ * is a prefix with letters of its own and stays. A number without a hyphen that begins with a digit is read the same way.
  */
 export function normaliseScan(text: string): string {
   const [prefix = '', ...groups] = text
@@ -22,6 +22,7 @@ export function normaliseScan(text: string): string {
     .replace(/[\u2010-\u2015\u2212_]/gu, '-')
     .toUpperCase()
     .split('-');
+  if (groups.length === 0) return /^\d/.test(prefix) ? asDigits(prefix) : prefix;
   return [prefix, ...groups.map(asDigits)].join('-');
 }
 
