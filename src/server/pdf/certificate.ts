@@ -14,10 +14,9 @@ import { Flow } from './flow';
 import { drawLimitBars, worstBars } from './limit-bar';
 import { drawQr } from './qr';
 import { printedVerdict, readingTables, ruleSentences } from './reading-table';
-import { CONTENT_WIDTH, PAGE } from './sheet';
 import { drawTable } from './table';
 import { layOutTag } from './tag';
-import { style, wrapText } from './text-layout';
+import { style, wrapSpans, wrapText } from './text-layout';
 
 const GRADES: Record<StatedInstrument['grade'], string> = {
   accredited: 'accredited calibration',
@@ -30,6 +29,8 @@ const STRONG = style('strong', 9.6);
 const SMALL = style('text', 8.6, COLOURS.quiet);
 const SMALL_STRONG = style('strong', 8.6, COLOURS.quiet);
 const QR_SIDE = 64;
+/** The smallest still sets quiet text in more than 6.5 points. */
+const SCALES = [1, 0.93, 0.87, 0.81] as const;
 
 /**
  * The certificate as a PDF file: one page of A4, more only where the readings need them. Pure of clock and chance: the
@@ -41,28 +42,7 @@ export async function renderCertificate(
 ): Promise<Uint8Array> {
   const number = fullNumber(statement);
   const { works, unit } = statement;
-  const flow = new Flow((next) => drawShortHead(next, works.name, number));
-
-  drawHead(flow, works, 'Certificate', number);
-  drawTitle(flow, 'Final test certificate', 'For one unit, measured before it left the bench.');
-  drawAmendment(flow, statement);
-  drawTag(flow, statement);
-  drawFacts(flow, factsOf(statement));
-  flow.y += 8;
-
-  for (const table of readingTables(statement.points, CONTENT_WIDTH)) {
-    drawTable(flow, table);
-    flow.y += 9;
-  }
-  drawLimitBars(flow, worstBars(statement.points));
-  flow.y += 8;
-  drawWords(flow, statement);
-  drawCheck(flow, statement, signature);
-  drawFeet(
-    flow,
-    `${number}. The results are of unit ${unit.serial} alone. This certificate may be copied only as a whole.`,
-  );
-
+  const flow = layOut(statement, signature);
   return finish(flow, {
     title: `Final test certificate ${number}: ${unit.model}, ${unit.serial}`,
     author: works.name,
@@ -75,6 +55,44 @@ export async function renderCertificate(
       text: attachedText(statement, signature),
     },
   });
+}
+
+/** On as few pages as can be, and as large as goes on them. */
+function layOut(statement: CertificateStatement, signature: StatementSignature): Flow {
+  const [full, ...smaller] = SCALES;
+  let best = layOutAt(full, statement, signature);
+  for (const scale of smaller) {
+    if (best.sheet.pageCount === 1) break;
+    const flow = layOutAt(scale, statement, signature);
+    if (flow.sheet.pageCount < best.sheet.pageCount) best = flow;
+  }
+  return best;
+}
+
+function layOutAt(scale: number, statement: CertificateStatement, signature: StatementSignature): Flow {
+  const number = fullNumber(statement);
+  const { works, unit } = statement;
+  const flow = new Flow(scale, (next) => drawShortHead(next, works.name, number));
+  drawHead(flow, works, 'Certificate', number);
+  drawTitle(flow, 'Final test certificate', 'For one unit, measured before it left the bench.');
+  drawAmendment(flow, statement);
+  drawTag(flow, statement);
+  drawFacts(flow, factsOf(statement));
+  flow.y += 8;
+
+  for (const table of readingTables(statement.points, flow.sheet.contentWidth)) {
+    drawTable(flow, table);
+    flow.y += 9;
+  }
+  drawLimitBars(flow, worstBars(statement.points));
+  flow.y += 8;
+  drawWords(flow, statement);
+  drawCheck(flow, statement, signature);
+  drawFeet(
+    flow,
+    `${number}. The results are of unit ${unit.serial} alone. This certificate may be copied only as a whole.`,
+  );
+  return flow;
 }
 
 function drawAmendment(flow: Flow, { replaces }: CertificateStatement): void {
@@ -105,8 +123,8 @@ function drawTag(flow: Flow, { unit, buyer, batchNumber }: CertificateStatement)
         ...(made === '' ? [] : [{ text: made, quiet: true }]),
       ],
     },
-    PAGE.margin,
-    CONTENT_WIDTH,
+    flow.sheet.margin,
+    flow.sheet.contentWidth,
   );
   flow.need(tag.height);
   tag.draw(flow.sheet, flow.y);
@@ -119,12 +137,11 @@ function factsOf(statement: CertificateStatement): (readonly [string, string])[]
     ['Tested', formatTimeOf(new Date(statement.testedAt), 'UTC')],
     ['Supply', conditions.supply],
     ['By', statement.testedBy],
-    ['Load, air', [conditions.load, conditions.ambient].filter((text) => text !== '').join(', ')],
+    ['Load, ambient', [conditions.load, conditions.ambient].filter((text) => text !== '').join(', ')],
     ['Test plan', `${testPlan.name} rev ${testPlan.revision}`],
-    ['Run', run.note === '' ? String(run.number) : `${run.number} (${run.note})`],
+    ['Run', `${run.number}, ${statement.result}${run.note === '' ? '' : ` (${run.note})`}`],
     ['Firmware', unit.firmware],
     ['Issued', `${formatDay(statement.issuedOn)} by ${statement.issuedBy}`],
-    ['Result', statement.result],
     ['Alignment', unit.alignment.join('; ')],
   ];
 }
@@ -171,7 +188,7 @@ function drawWords(flow: Flow, statement: CertificateStatement): void {
   };
   small('Decided by:', [statement.decisionRule, ...ruleSentences(statement.points)]);
   small('Measured with:', [
-    statement.instruments.map(instrumentText).join('; '),
+    statement.instruments.length === 0 ? '' : `${statement.instruments.map(instrumentText).join('; ')}.`,
     statement.path === '' ? '' : `By way of ${statement.path}.`,
     'Figures are at the unit; what the meters showed is in the attached data.',
     `Computation ${statement.computationVersion}.`,
@@ -184,12 +201,18 @@ function drawCheck(
   { code, checkUrl, issuedBy, issuedOn }: CertificateStatement,
   signature: StatementSignature,
 ) {
-  const x = PAGE.margin + QR_SIDE + 18;
-  const width = CONTENT_WIDTH - QR_SIDE - 18;
-  const codeStyle = style('mono', 10.4);
+  const x = flow.sheet.margin + QR_SIDE + 18;
+  const width = flow.sheet.contentWidth - QR_SIDE - 18;
   const lines = [
     ...wrapText(`Issued by ${issuedBy}, ${formatDay(issuedOn)}`, BODY, width),
-    ...wrapText(`Check it: scan, or type ${formatCode(code)} at`, codeStyle, width),
+    ...wrapSpans(
+      [
+        { text: 'Check it: scan, or type ', style: BODY },
+        { text: formatCode(code), style: style('mono', 9.6) },
+        { text: ' on the page', style: BODY },
+      ],
+      width,
+    ),
     ...wrapText(checkUrl, style('mono', 8.2, COLOURS.quiet), width),
     ...wrapText(
       `Signed with the works’ key ${signature.keyId} (${signature.algorithm}). The readings are attached to this file as data.`,
@@ -199,7 +222,7 @@ function drawCheck(
   ];
   flow.y += 8;
   flow.need(QR_SIDE + 6);
-  drawQr(flow.sheet, checkUrl, PAGE.margin, flow.y, QR_SIDE);
+  drawQr(flow.sheet, checkUrl, flow.sheet.margin, flow.y, QR_SIDE);
   const end = flow.sheet.lines(lines, x, flow.y + 2);
   flow.y = Math.max(end, flow.y + QR_SIDE);
 }

@@ -1,7 +1,6 @@
 import { AFRelationship, PDFDocument } from 'pdf-lib';
 import type { Flow } from './flow';
 import { COLOURS } from './colours';
-import { PAGE } from './sheet';
 import { style, wrapText } from './text-layout';
 
 export type DocumentFacts = {
@@ -46,11 +45,11 @@ export async function finish(flow: Flow, facts: DocumentFacts): Promise<Uint8Arr
 export function drawFeet(flow: Flow, sentence: string): void {
   const quiet = style('text', 7.8, COLOURS.quiet);
   flow.onEveryPage((page, count) => {
-    flow.sheet.lines(wrapText(sentence, quiet, 400).slice(0, 2), PAGE.margin, PAGE.height - 52);
+    flow.sheet.lines(wrapText(sentence, quiet, 400).slice(0, 2), flow.sheet.margin, flow.sheet.height - 52);
     flow.sheet.text(
       `page ${page} of ${count}`,
-      PAGE.width - PAGE.margin,
-      PAGE.height - 43,
+      flow.sheet.width - flow.sheet.margin,
+      flow.sheet.height - 43,
       style('text', 9.4),
       'end',
     );

@@ -1,24 +1,29 @@
-import { PAGE, Sheet } from './sheet';
+import { Sheet } from './sheet';
 
-/** The lowest y that content may reach; the foot stands below. */
-const BOTTOM = PAGE.height - 62;
+/** Height that is kept for the foot, the lower margin included. */
+const FOOT = 62;
 
 /** A sheet with the y down to which it is filled; content that does not fit goes on the next page. */
 export class Flow {
-  readonly sheet = new Sheet();
-  y: number = PAGE.margin;
+  readonly sheet: Sheet;
+  y: number;
   readonly #startPage: (flow: Flow) => void;
 
-  /** @param startPage draws the head of every page after the first and moves y below it */
-  constructor(startPage: (flow: Flow) => void) {
+  /**
+   * @param scale see {@link Sheet}
+   * @param startPage draws the head of every page after the first and moves y below it
+   */
+  constructor(scale: number, startPage: (flow: Flow) => void) {
+    this.sheet = new Sheet(scale);
+    this.y = this.sheet.margin;
     this.#startPage = startPage;
   }
 
   /** Makes room for something `height` points tall that must stay together. @returns whether a page was begun */
   need(height: number): boolean {
-    if (this.y + height <= BOTTOM) return false;
+    if (this.y + height <= this.sheet.height - FOOT) return false;
     this.sheet.newPage();
-    this.y = PAGE.margin;
+    this.y = this.sheet.margin;
     this.#startPage(this);
     return true;
   }

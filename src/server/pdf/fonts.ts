@@ -93,11 +93,29 @@ function placed(cluster: string, face: Face): Run[] {
   return [{ font: CHAINS[face][0] ?? 'wide', text: spelledOut(cluster) }];
 }
 
+/** Splitting and measuring ask the shaper, and a page asks for the same words again and again. */
+const splits = new Map<string, Run[]>();
+const widths = new Map<string, number>();
+const REMEMBERED = 20_000;
+
+function remember<T>(memory: Map<string, T>, key: string, make: () => T): T {
+  const known = memory.get(key);
+  if (known !== undefined) return known;
+  if (memory.size >= REMEMBERED) memory.clear();
+  const made = make();
+  memory.set(key, made);
+  return made;
+}
+
 /**
  * Splits text into runs that one font each can draw, in the face asked for where it can. Right-to-left words stand in
  * runs of their own, which the font's shaping turns round; runs follow each other from left to right.
  */
 export function splitRuns(text: string, face: Face): Run[] {
+  return remember(splits, `${face} ${text}`, () => split(text, face));
+}
+
+function split(text: string, face: Face): Run[] {
   const runs: (Run & { rtl: boolean })[] = [];
   for (const { segment } of graphemes.segment(tidy(text))) {
     for (const piece of placed(segment, face)) {
@@ -128,9 +146,11 @@ function joinTurned(runs: (Run & { rtl: boolean })[]): (Run & { rtl: boolean })[
 
 /** Width of a run, as it will be drawn, in points. */
 export function runWidth(run: Run, size: number): number {
-  const font = measuringFont(run.font);
-  const units = font.layout(run.text).glyphs.reduce((sum, glyph) => sum + glyph.advanceWidth, 0);
-  return (units / font.unitsPerEm) * size;
+  const emWidth = remember(widths, `${run.font} ${run.text}`, () => {
+    const font = measuringFont(run.font);
+    return font.layout(run.text).glyphs.reduce((sum, glyph) => sum + glyph.advanceWidth, 0) / font.unitsPerEm;
+  });
+  return emWidth * size;
 }
 
 /** The fonts of one document: each embedded, as a subset, when it is first asked for. */

@@ -4,13 +4,12 @@ import type { LimitBar } from '~/domain/bench/limit-bar';
 import type { StatedPoint } from '~/domain/certificates/statement';
 import { COLOURS } from './colours';
 import type { Flow } from './flow';
-import { CONTENT_WIDTH, PAGE } from './sheet';
 import { lineHeight, style, wrapText } from './text-layout';
 
 type Bar = { band: string; point: StatedPoint; model: LimitBar };
 
 const NAME = style('text', 8.2, COLOURS.quiet);
-const FIGURES = style('mono', 7.6, COLOURS.quiet);
+const FIGURES = style('text', 8.2, COLOURS.quiet);
 const NAME_WIDTH = 42;
 const FIGURES_WIDTH = 160;
 const THICKNESS = 11;
@@ -69,8 +68,8 @@ export function drawLimitBars(flow: Flow, bars: readonly Bar[]): void {
   if (bars.length === 0) return;
   const from = Math.min(...bars.map((bar) => offsetOf(bar, 0)));
   const to = Math.max(...bars.map((bar) => offsetOf(bar, 1)));
-  const left = PAGE.margin + NAME_WIDTH;
-  const width = CONTENT_WIDTH - NAME_WIDTH - FIGURES_WIDTH - 10;
+  const left = flow.sheet.margin + NAME_WIDTH;
+  const width = flow.sheet.contentWidth - NAME_WIDTH - FIGURES_WIDTH - 10;
   const x = (offset: number) => left + ((offset - from) / (to - from)) * width;
 
   for (const bar of bars) {
@@ -105,9 +104,9 @@ export function drawLimitBars(flow: Flow, bars: readonly Bar[]): void {
       sheet.line([x(offsetOf(bar, low)), middle], [x(offsetOf(bar, high)), middle], COLOURS.ink, 1.1);
     }
     sheet.circle([x(offsetOf(bar, model.dot)), middle], 4, { fill: COLOURS.patina });
-    sheet.lines(names, PAGE.margin, middle - (names.length * lineHeight(NAME)) / 2);
+    sheet.lines(names, flow.sheet.margin, middle - (names.length * lineHeight(NAME)) / 2);
     const figuresTop = middle - (figures.length * lineHeight(FIGURES)) / 2;
-    sheet.lines(figures, PAGE.margin + CONTENT_WIDTH, figuresTop, 'end');
+    sheet.lines(figures, flow.sheet.margin + flow.sheet.contentWidth, figuresTop, 'end');
     flow.y += height;
   }
   const caption = 'On each band, the reading nearest to its guarded limit, with its uncertainty';

@@ -42,13 +42,13 @@ function uncertaintyText(point: StatedPoint, commonK: string | undefined): strin
   return commonK === undefined ? `${text}, k = ${formatK(k)}` : text;
 }
 
-function valueCell(point: StatedPoint | undefined, ownUncertainty: string): Cell {
+function valueCell(point: StatedPoint | undefined, ownUncertainty: string, unit?: string): Cell {
   if (!point) return null;
   const under = [
     ...(point.n > 1 ? [`mean of ${point.n}`] : []),
     ...(ownUncertainty === '' ? [] : [`± ${ownUncertainty}`]),
   ];
-  return { text: point.text, under };
+  return { text: withoutUnit(point.text, unit), under };
 }
 
 function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table {
@@ -72,17 +72,27 @@ function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table 
     const limit = sharedLimit(column);
     const texts = column.points.flatMap((point) => (point ? [uncertaintyText(point, commonK)] : []));
     const shared = allSame(texts) ? (texts[0] ?? '') : undefined;
-    table.columns.push({ heading: column.heading, align: 'end', prose: false });
+    const unit = unitForHeading(column.points.flatMap((point) => (point ? [point.text] : [])));
+    table.columns.push({ heading: withUnit(column.heading, unit), align: 'end', prose: false });
     table.rows.forEach((row, at) => {
       const point = column.points[at];
-      row.cells.push(valueCell(point, point && shared === undefined ? uncertaintyText(point, commonK) : ''));
+      row.cells.push(
+        valueCell(point, point && shared === undefined ? uncertaintyText(point, commonK) : '', unit),
+      );
     });
     mustBe.push(limit === undefined || limit === '' ? null : { text: limit });
     spread.push(shared === undefined || shared === '' ? null : { text: shared });
     const next = columns[index + 1];
     if (limit === undefined && !(next && sameLimits(column, next))) {
-      table.columns.push({ heading: 'Allowed', align: 'end', prose: false });
-      table.rows.forEach((row, at) => row.cells.push({ text: column.points[at]?.limitText ?? '' }));
+      const limits = column.points.flatMap((point) =>
+        point && point.limitText !== '' ? [point.limitText] : [],
+      );
+      const limitUnit = unitForHeading(limits);
+      table.columns.push({ heading: withUnit('Allowed', limitUnit), align: 'end', prose: false });
+      table.rows.forEach((row, at) => {
+        const text = column.points[at]?.limitText ?? '';
+        row.cells.push(text === '' ? null : { text: withoutUnit(text, limitUnit) });
+      });
       mustBe.push(null);
       spread.push(null);
     }
@@ -98,6 +108,20 @@ function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table 
       table.rows.push({ quiet: true, cells: [...cells, null] });
   }
   return table;
+}
+
+/** A long unit that a whole column shares stands in its heading, which leaves room for one more quantity. */
+function unitForHeading(texts: readonly string[]): string | undefined {
+  const units = texts.map((text) => /[\s\u00a0](\p{L}{3,})$/u.exec(text)?.[1]);
+  return units.length > 0 && allSame(units) ? units[0] : undefined;
+}
+
+function withUnit(heading: string, unit: string | undefined): string {
+  return unit === undefined ? heading : `${heading}, ${unit}`;
+}
+
+function withoutUnit(text: string, unit: string | undefined): string {
+  return unit === undefined ? text : text.slice(0, -unit.length).trimEnd();
 }
 
 /** Whether two columns are held, band by band, to the same limits, so that one column of limits serves both. */

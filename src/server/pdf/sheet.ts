@@ -2,6 +2,7 @@ import {
   appendBezierCurve,
   beginText,
   closePath,
+  concatTransformationMatrix,
   endText,
   fill,
   fillAndStroke,
@@ -24,10 +25,8 @@ import type { FontKey } from './fonts';
 import { lineHeight, textWidth } from './text-layout';
 import type { Line, Style } from './text-layout';
 
-/** A4 in points; y runs down from the top edge. */
-export const PAGE = { width: 595.28, height: 841.89, margin: 40.5 } as const;
-/** Width between the margins. */
-export const CONTENT_WIDTH = PAGE.width - 2 * PAGE.margin;
+/** A4 in points. */
+const A4 = { width: 595.28, height: 841.89, margin: 40.5 } as const;
 
 export type Point = readonly [x: number, y: number];
 type Paint = { fill?: Colour; stroke?: Colour; lineWidth?: number; dash?: readonly [number, number] };
@@ -41,8 +40,26 @@ type Shape = { points: readonly Point[]; closed: boolean } | { centre: Point; ra
  * they are used and a foot can say how many pages there are.
  */
 export class Sheet {
+  /** Size of the page in the sheet's own units; y runs down from the top edge. */
+  readonly width: number;
+  readonly height: number;
+  readonly margin: number;
+  readonly #scale: number;
   readonly #pages: Operation[][] = [[]];
   #current = 0;
+
+  /** @param scale points on paper for a unit of the sheet: under 1, more goes on a page and all of it is smaller */
+  constructor(scale: number) {
+    this.#scale = scale;
+    this.width = A4.width / scale;
+    this.height = A4.height / scale;
+    this.margin = A4.margin / scale;
+  }
+
+  /** Width between the margins. */
+  get contentWidth(): number {
+    return this.width - 2 * this.margin;
+  }
 
   get pageCount(): number {
     return this.#pages.length;
@@ -129,7 +146,9 @@ export class Sheet {
   async drawInto(document: PDFDocument): Promise<void> {
     const fonts = new FontBook(document);
     for (const operations of this.#pages) {
-      const page = document.addPage([PAGE.width, PAGE.height]);
+      const page = document.addPage([A4.width, A4.height]);
+      // The origin moves to the upper left corner, with y running down as everywhere here.
+      page.pushOperators(concatTransformationMatrix(this.#scale, 0, 0, -this.#scale, 0, A4.height));
       const names = new Map<FontKey, PDFName>();
       for (const operation of operations) {
         if (operation.kind === 'path')
@@ -156,7 +175,7 @@ async function textOperators(
     beginText(),
     setFillingRgbColor(...style.colour),
     setFontAndSize(name, style.size),
-    setTextMatrix(1, 0, 0, 1, round(x), round(PAGE.height - y)),
+    setTextMatrix(1, 0, 0, -1, round(x), round(y)),
     showText(embedded.encodeText(text)),
     endText(),
   ];
@@ -174,14 +193,13 @@ function pathOperators(shapes: readonly Shape[], paint: Paint): PDFOperator[] {
 
 function straight({ points, closed }: { points: readonly Point[]; closed: boolean }): PDFOperator[] {
   const operators = points.map(([x, y], index) =>
-    index === 0 ? moveTo(round(x), round(PAGE.height - y)) : lineTo(round(x), round(PAGE.height - y)),
+    index === 0 ? moveTo(round(x), round(y)) : lineTo(round(x), round(y)),
   );
   return closed ? [...operators, closePath()] : operators;
 }
 
 /** Four Bézier curves; 0.5523 is the usual distance of their handles for a circle of radius 1. */
-function curved({ centre: [x, top], radius: r, half }: { centre: Point; radius: number; half: boolean }) {
-  const y = PAGE.height - top;
+function curved({ centre: [x, y], radius: r, half }: { centre: Point; radius: number; half: boolean }) {
   const h = 0.5523 * r;
   const curve = (...numbers: [number, number, number, number, number, number]) => {
     const [a, b, c, d, e, f] = numbers;

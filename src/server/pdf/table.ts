@@ -1,6 +1,5 @@
 import { COLOURS } from './colours';
 import type { Flow } from './flow';
-import { CONTENT_WIDTH, PAGE } from './sheet';
 import { lineHeight, style, textWidth, wrapText } from './text-layout';
 import type { Line, Style } from './text-layout';
 import { drawVerdict, MARK_ADVANCE, verdictWord } from './verdict-mark';
@@ -14,12 +13,12 @@ export type Table = {
   rows: TableRow[];
 };
 
-const GAP = 11;
+const GAP = 9;
 const INSET = 6;
 const HEAD = style('strong', 8.6, COLOURS.quiet);
-const VALUE = style('mono', 9.2);
+const VALUE = style('mono', 8.9);
 const PROSE = style('text', 9.6);
-const QUIET_VALUE = style('mono', 8.8, COLOURS.quiet);
+const QUIET_VALUE = style('mono', 8.5, COLOURS.quiet);
 const QUIET_PROSE = style('text', 9, COLOURS.quiet);
 const UNDER = style('text', 7.6, COLOURS.quiet);
 const VERDICT_SIZE = 9.6;
@@ -33,13 +32,25 @@ function longestWord(text: string, textStyle: Style): number {
   return Math.max(0, ...text.split(' ').map((word) => textWidth(word, textStyle)));
 }
 
+/** The narrowest in which a heading takes no more than two lines. */
+function twoLineWidth(heading: string): number {
+  const words = heading.split(' ');
+  const splits = words.map((_, at) =>
+    Math.max(
+      textWidth(words.slice(0, at + 1).join(' '), HEAD),
+      textWidth(words.slice(at + 1).join(' '), HEAD),
+    ),
+  );
+  return Math.min(...splits);
+}
+
 /** Widths that the contents ask for, and below which they would have to break words. */
 function naturalWidths(table: Table): { wanted: number[]; least: number[] } {
   const wanted: number[] = [];
   const least: number[] = [];
   table.columns.forEach(({ heading, prose }, index) => {
-    let widest = longestWord(heading, HEAD);
-    let narrowest = widest;
+    let widest = twoLineWidth(heading);
+    let narrowest = longestWord(heading, HEAD);
     for (const row of table.rows) {
       const cell = row.cells[index] ?? null;
       if (cell === null) continue;
@@ -70,17 +81,28 @@ export function leastWidth(table: Table): number {
   return sum(naturalWidths(table).least) + GAP * (table.columns.length - 1) + 2 * INSET;
 }
 
+/** Takes what is too much from the widest columns alone: a narrow one, such as a verdict's, keeps its width. */
+function cappedTo(widths: readonly number[], room: number): number[] {
+  let cap = room / widths.length;
+  for (;;) {
+    const narrow = widths.filter((width) => width <= cap);
+    const next = (room - sum(narrow)) / (widths.length - narrow.length);
+    if (!(next > cap)) return widths.map((width) => Math.min(width, cap));
+    cap = next;
+  }
+}
+
 /** Widths that fill the page: spare room is spread evenly, missing room is taken from where words can be wrapped. */
-function columnWidths(table: Table): number[] {
+function columnWidths(table: Table, width: number): number[] {
   const { wanted, least } = naturalWidths(table);
-  const room = CONTENT_WIDTH - 2 * INSET - GAP * (wanted.length - 1);
+  const room = width - 2 * INSET - GAP * (wanted.length - 1);
   const spare = room - sum(wanted);
   if (spare >= 0) return wanted.map((width) => width + spare / wanted.length);
   const give = wanted.map((width, index) => width - (least[index] ?? width));
   const missing = -spare;
   if (sum(give) >= missing)
     return wanted.map((width, index) => width - (missing * (give[index] ?? 0)) / sum(give));
-  return least.map((width) => (width * room) / sum(least));
+  return cappedTo(least, room);
 }
 
 const tall = (lines: readonly Line[]): number =>
@@ -88,9 +110,9 @@ const tall = (lines: readonly Line[]): number =>
 
 /** Draws a table across the page, its head again on each further page. Rows are never torn apart. */
 export function drawTable(flow: Flow, table: Table): void {
-  const widths = columnWidths(table);
+  const widths = columnWidths(table, flow.sheet.contentWidth);
   const lefts: number[] = [];
-  let at = PAGE.margin + INSET;
+  let at = flow.sheet.margin + INSET;
   for (const width of widths) {
     lefts.push(at);
     at += width + GAP;
@@ -108,7 +130,12 @@ export function drawTable(flow: Flow, table: Table): void {
   const drawHead = () => {
     heads.forEach((lines, column) => put(lines, column, flow.y + headHeight - 6 - tall(lines)));
     flow.y += headHeight;
-    flow.sheet.line([PAGE.margin, flow.y], [PAGE.margin + CONTENT_WIDTH, flow.y], COLOURS.ink, 1.2);
+    flow.sheet.line(
+      [flow.sheet.margin, flow.y],
+      [flow.sheet.margin + flow.sheet.contentWidth, flow.y],
+      COLOURS.ink,
+      1.2,
+    );
   };
 
   const laidRows = table.rows.map((row) => {
@@ -135,6 +162,11 @@ export function drawTable(flow: Flow, table: Table): void {
       }
     });
     flow.y += height;
-    flow.sheet.line([PAGE.margin, flow.y], [PAGE.margin + CONTENT_WIDTH, flow.y], COLOURS.rule, 0.6);
+    flow.sheet.line(
+      [flow.sheet.margin, flow.y],
+      [flow.sheet.margin + flow.sheet.contentWidth, flow.y],
+      COLOURS.rule,
+      0.6,
+    );
   }
 }

@@ -71,16 +71,17 @@ export function wrapSpans(spans: readonly Span[], width: number): Line[] {
   const lines: Line[] = [];
   let line: Line | undefined;
   for (const word of wordsOf(spans, width)) {
-    const blank = line && word.blankBefore ? textWidth(' ', word.style) : 0;
-    if (!line || line.width + blank + word.width > width + 0.01) {
+    const last = line?.spans.at(-1);
+    // The blank is as wide as those of the words before it.
+    const blank = last && word.blankBefore ? textWidth(' ', last.style) : 0;
+    if (!line || !last || line.width + blank + word.width > width + 0.01) {
       line = { spans: [{ text: word.text, style: word.style }], width: word.width };
       lines.push(line);
       continue;
     }
-    const last = line.spans.at(-1);
-    const text = (blank > 0 ? ' ' : '') + word.text;
-    if (last && last.style === word.style) last.text += text;
-    else line.spans.push({ text, style: word.style });
+    if (blank > 0) last.text += ' ';
+    if (last.style === word.style) last.text += word.text;
+    else line.spans.push({ text: word.text, style: word.style });
     line.width += blank + word.width;
   }
   return lines;

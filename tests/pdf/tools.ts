@@ -1,0 +1,86 @@
+import { execFileSync, spawnSync } from 'node:child_process';
+import { mkdtempSync, readFileSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+
+/** Runs a program on a PDF written to a folder of its own, which is removed afterwards. */
+function withFile<T>(program: string, pdf: Uint8Array, use: (file: string, folder: string) => T): T {
+  if (spawnSync(program, ['--version']).error) {
+    throw new Error(`${program} is not installed: these tests need Debian's poppler-utils and qpdf.`);
+  }
+  const folder = mkdtempSync(join(tmpdir(), 'pdf-test-'));
+  try {
+    const file = join(folder, 'file.pdf');
+    writeFileSync(file, pdf);
+    return use(file, folder);
+  } finally {
+    rmSync(folder, { recursive: true });
+  }
+}
+
+/** The text of a PDF, laid out as on the page. */
+export function textOf(pdf: Uint8Array): string {
+  return withFile('pdftotext', pdf, (file) =>
+    execFileSync('pdftotext', ['-layout', '-enc', 'UTF-8', file, '-'], { encoding: 'utf8' }),
+  );
+}
+
+/** Every word of a PDF with its box, in points from the upper left corner, and its page's number from 1. */
+export function wordsOf(
+  pdf: Uint8Array,
+): { page: number; left: number; right: number; bottom: number; text: string }[] {
+  const xml = withFile('pdftotext', pdf, (file) =>
+    execFileSync('pdftotext', ['-bbox', '-enc', 'UTF-8', file, '-'], { encoding: 'utf8' }),
+  );
+  return xml.split('<page ').flatMap((part, page) =>
+    [
+      ...part.matchAll(
+        /<word xMin="([\d.-]+)" yMin="[\d.-]+" xMax="([\d.-]+)" yMax="([\d.-]+)">(.*?)<\/word>/gu,
+      ),
+    ].map(([, left, right, bottom, text]) => ({
+      page,
+      left: Number(left),
+      right: Number(right),
+      bottom: Number(bottom),
+      text: text ?? '',
+    })),
+  );
+}
+
+/** What the syntax checker says; it exits with an error on anything but a clean file. */
+export function syntaxCheck(pdf: Uint8Array): string {
+  return withFile('qpdf', pdf, (file) => execFileSync('qpdf', ['--check', file], { encoding: 'utf8' }));
+}
+
+/** The names and texts of the attached files. */
+export function attachmentsOf(pdf: Uint8Array): Map<string, string> {
+  return withFile('pdfdetach', pdf, (file, folder) => {
+    rmSync(join(folder, 'out'), { recursive: true, force: true });
+    execFileSync('pdfdetach', ['-saveall', '-o', folder, file]);
+    return new Map(
+      readdirSync(folder)
+        .filter((name) => name !== 'file.pdf')
+        .map((name) => [name, readFileSync(join(folder, name), 'utf8')]),
+    );
+  });
+}
+
+/** The document's facts, as `Title: …` lines. */
+export function factsOf(pdf: Uint8Array): string {
+  return withFile('pdfinfo', pdf, (file) => execFileSync('pdfinfo', [file], { encoding: 'utf8' }));
+}
+
+/** Names of the fonts, each with whether it is embedded and a subset. */
+export function fontsOf(pdf: Uint8Array): { name: string; embedded: boolean; subset: boolean }[] {
+  const table = withFile('pdffonts', pdf, (file) => execFileSync('pdffonts', [file], { encoding: 'utf8' }));
+  return table
+    .split('\n')
+    .slice(2)
+    .filter((line) => line !== '')
+    .map((line) => {
+      const [, name = '', flags = ''] =
+        /^(\S+).*?\s((?:yes|no)\s+(?:yes|no)\s+(?:yes|no))\s/u.exec(line) ?? [];
+      const [embedded, subset] = flags.split(/\s+/u);
+      return { name, embedded: embedded === 'yes', subset: subset === 'yes' };
+    });
+}
