@@ -143,4 +143,32 @@ describe.skipIf(!present)(`bills of materials of open hardware${why}`, () => {
     const result = readBom(readFileSync(path.join(folder, 't41_duallo_mangled_semicolon.csv')));
     expect(result.ok ? '' : result.reason).toContain('opened and saved again as one separated by commas');
   });
+
+  describe('changed as other programs would save them', () => {
+    const textOf = (name: string) => readFileSync(path.join(folder, name), 'utf8');
+    const parts = (bytes: Uint8Array) => {
+      const result = readBom(bytes);
+      return result.ok ? result.lines.map(({ fileLine: _, ...line }) => line) : result.reason;
+    };
+
+    it('in UTF-16 with a byte-order mark', () => {
+      const name = 'alexiares_lpf_french_semicolon.csv';
+      const wide = Buffer.from(`\ufeff${textOf(name)}`, 'utf16le');
+      expect(parts(wide)).toEqual(parts(readFileSync(path.join(folder, name))));
+    });
+
+    it('separated by tabs', () => {
+      const name = 'openbeacon2_kicad_space_refs.csv';
+      const tabs = Buffer.from(textOf(name).replaceAll(',', '\t'));
+      expect(parts(tabs)).toEqual(parts(readFileSync(path.join(folder, name))));
+    });
+
+    it('with decimal commas between semicolons', () => {
+      const text = textOf('alexiares_lpf_french_semicolon.csv').replace(/(\d)\.(\d+[a-zA-Z])/g, '$1,$2');
+      const result = readBom(Buffer.from(text));
+      const measures = result.ok ? result.lines.map((line) => line.measure) : [];
+      expect(measures).toEqual(read('alexiares_lpf_french_semicolon.csv').lines.map((line) => line.measure));
+      expect(measures.filter((measure) => measure !== null).length).toBeGreaterThan(30);
+    });
+  });
 });

@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { BomMapping } from './mapping';
 import type { ImportedLine } from './read-bom';
@@ -255,5 +256,75 @@ describe('refused with a sentence', () => {
   ])('%s', (_name, bytes, reason) => {
     const result = readBom(bytes);
     expect(result.ok ? 'read' : result.reason).toContain(reason);
+  });
+});
+
+describe('whatever comes in', () => {
+  it('bytes are read or refused, never thrown at', () => {
+    fc.assert(
+      fc.property(fc.uint8Array({ maxLength: 300 }), (bytes) => {
+        expect(typeof readBom(bytes).ok).toBe('boolean');
+      }),
+    );
+  });
+
+  it('text that resembles a table is read or refused, never thrown at', () => {
+    const scrap = fc.constantFrom(
+      'Ref',
+      'Qty',
+      'Value',
+      'R1',
+      'R1-R9',
+      '4k7',
+      '3',
+      'DNP',
+      '"',
+      '""',
+      ',',
+      ';',
+      '\t',
+      '\n',
+      '#Cmp (',
+      '| ',
+    );
+    fc.assert(
+      fc.property(fc.array(scrap, { maxLength: 60 }), (pieces) => {
+        const result = readBom(utf8(pieces.join('')));
+        if (result.ok) expect(result.lines.every((line) => Number.isSafeInteger(line.quantity))).toBe(true);
+        else expect(result.reason).toMatch(/\.$/);
+      }),
+    );
+  });
+
+  it('a table that was written is read back, in every encoding and with every separator', () => {
+    const row = fc.record({
+      count: fc.integer({ min: 1, max: 6 }),
+      value: fc.constantFrom('4k7', '100n', '1,66uH', 'QX "B" 7', '10 µF; 16 V'),
+    });
+    const encode = {
+      utf8,
+      le: (t: string) => utf16(`\ufeff${t}`, 'le'),
+      be: (t: string) => utf16(`\ufeff${t}`, 'be'),
+    };
+    const quoted = (cell: string) => `"${cell.replaceAll('"', '""')}"`;
+    fc.assert(
+      fc.property(
+        fc.array(row, { minLength: 1, maxLength: 20 }),
+        fc.constantFrom(',', ';', '\t', '|'),
+        fc.constantFrom(...(['utf8', 'le', 'be'] as const)),
+        (rows, separator, encoding) => {
+          let next = 1;
+          const wanted = rows.map(({ count, value }) => {
+            const places = Array.from({ length: count }, () => `R${next++}`).join(' ');
+            return [places, count, value] as const;
+          });
+          const cells = [['Reference', 'Qty', 'Value'], ...wanted.map((one) => one.map(String))];
+          const text = cells.map((one) => one.map(quoted).join(separator)).join('\r\n');
+          const { lines, questions } = read(encode[encoding](text));
+          expect(brief(lines)).toEqual(wanted);
+          expect(questions).toEqual([]);
+        },
+      ),
+    );
   });
 });
