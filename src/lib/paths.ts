@@ -52,7 +52,7 @@ export const paths = {
   shipment: (number: number) => `/works/shipments/${segment(number)}`,
   office: () => '/works/people',
   worksData: () => '/works/office',
-  changes: () => '/works/changes',
+  changes: (beforeId?: number) => withQuery('/works/changes', { before: beforeId?.toString() }),
   // The API
   api: {
     health: () => '/api/health',

@@ -1,0 +1,39 @@
+/** Entries of the ledger of changes in words; one that is missing here is shown by its own name. */
+const words: Readonly<Record<string, string>> = {
+  'person.ask_link': 'asked for a sign-in link',
+  'person.use_link': 'signed in by a link',
+  'person.invite': 'invited a person',
+  'person.change': 'changed a person’s roles',
+  'works.found': 'founded the works',
+  'works.change': 'changed the works’ data',
+  'key.add': 'made a new signing key',
+};
+
+/** What an entry says was done: `run.close` becomes "closed the run". */
+export function changeInWords(action: string): string {
+  return words[action] ?? action.replaceAll('_', ' ').replace('.', ': ');
+}
+
+/** An entry's details on one line: `state: usable → barred, reason: cracked`. */
+export function detailsInWords(details: Record<string, unknown>): string {
+  return Object.entries(details)
+    .flatMap(([name, value]) => (value === null || value === undefined ? [] : [`${spaced(name)}: ${said(value)}`]))
+    .join(', ');
+}
+
+function said(value: unknown): string {
+  if (Array.isArray(value)) return value.length === 0 ? 'none' : value.map(said).join(' + ');
+  if (typeof value === 'object' && value !== null) {
+    if ('from' in value && 'to' in value) return `${said(value.from)} → ${said(value.to)}`;
+    return Object.entries(value)
+      .map(([name, inner]) => `${spaced(name)} ${said(inner)}`)
+      .join(' ');
+  }
+  if (value === true) return 'yes';
+  if (value === false) return 'no';
+  return value === null || value === undefined || value === '' ? 'none' : String(value);
+}
+
+function spaced(name: string): string {
+  return name.replace(/([a-z])([A-Z])/g, (_, before: string, after: string) => `${before} ${after.toLowerCase()}`);
+}
