@@ -44,7 +44,7 @@ export function page({ title, notice, main, policy = ["form-action 'self'"], sta
 <link rel="stylesheet" href="/page.css">
 </head>
 <body>
-<p class="notice" role="note">${escapeHtml(notice)}</p>
+<header class="notice">${escapeHtml(notice)}</header>
 <main>
 ${main}
 </main>
@@ -90,8 +90,8 @@ export function styleSheet(): Answer {
 export async function readBody(request: IncomingMessage, limitBytes = 1_000_000): Promise<string> {
   const chunks: Buffer[] = [];
   let size = 0;
-  for await (const chunk of request) {
-    const bytes = Buffer.from(chunk);
+  const stream: AsyncIterable<Buffer> = request;
+  for await (const bytes of stream) {
     size += bytes.length;
     if (size > limitBytes) throw new Error(`The request is longer than ${limitBytes} bytes`);
     chunks.push(bytes);
@@ -113,7 +113,8 @@ export function send(response: ServerResponse, answer: Answer): void {
   response.writeHead(answer.status, {
     'cache-control': 'no-store',
     'x-content-type-options': 'nosniff',
-    'referrer-policy': 'no-referrer',
+    // Not `no-referrer`: under it browsers send their forms with `Origin: null`, as if from another site.
+    'referrer-policy': 'same-origin',
     ...answer.headers,
   });
   response.end(answer.body);
@@ -136,7 +137,10 @@ export async function listen(server: Server, port: number): Promise<string> {
 /** Ends idle connections at once and waits for requests under way. */
 export async function stop(server: Server): Promise<void> {
   await new Promise<void>((resolve, reject) => {
-    server.close((error) => (error ? reject(error) : resolve()));
+    server.close((error) => {
+      if (error) reject(error);
+      else resolve();
+    });
     server.closeIdleConnections();
   });
 }

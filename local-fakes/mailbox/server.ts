@@ -112,8 +112,12 @@ async function listenSmtp(store: MailStore, port: number): Promise<{ url: string
             rcptTo.map((recipient) => recipient.address),
           )
           .then(
-            () => callback(),
-            (error: unknown) => callback(error instanceof Error ? error : new Error('The mail was not kept')),
+            () => {
+              callback();
+            },
+            (error: unknown) => {
+              callback(error instanceof Error ? error : new Error('The mail was not kept'));
+            },
           );
       });
     },
@@ -131,7 +135,10 @@ async function listenSmtp(store: MailStore, port: number): Promise<{ url: string
   if (address === null || typeof address === 'string') throw new Error('The mail server has no port');
   return {
     url: `smtp://127.0.0.1:${address.port}`,
-    close: () => new Promise<void>((resolve) => smtp.close(() => resolve())),
+    close: () =>
+      new Promise<void>((resolve) => {
+        smtp.close(resolve);
+      }),
   };
 }
 

@@ -81,7 +81,7 @@ export function controlJson(store: Store): Answer {
   return json(200, {
     hold: store.state.hold,
     sessions: Object.values(store.state.sessions),
-    events: Object.values(store.state.events).map(({ body: _body, ...event }) => event),
+    events: Object.values(store.state.events).map((event) => ({ ...event, body: undefined })),
   });
 }
 

@@ -88,6 +88,10 @@ export class Courier {
     this.#timers.clear();
   }
 
+  #isStopping(): boolean {
+    return this.#stopping.signal.aborted;
+  }
+
   #later(event: StoredEvent, attempt: number, delayMs: number): void {
     const timer = setTimeout(() => {
       this.#timers.delete(timer);
@@ -97,10 +101,10 @@ export class Courier {
   }
 
   async #attempt(event: StoredEvent, attempt: number): Promise<void> {
-    if (this.#stopping.signal.aborted) return;
+    if (this.#isStopping()) return;
     if (event.state !== 'delivered') event.state = 'waiting';
     const status = await this.#post(event.body);
-    if (this.#stopping.signal.aborted) return;
+    if (this.#isStopping()) return;
     event.attempts.push({ at: Date.now(), status });
     if (status !== null && status >= 200 && status < 300) {
       event.state = 'delivered';

@@ -97,7 +97,9 @@ export async function startStripeFake(options: StripeFakeOptions): Promise<Runni
 
   const server = createServer((request, response) => {
     answer(request).then(
-      (made) => send(response, made),
+      (made) => {
+        send(response, made);
+      },
       (error: unknown) => {
         console.error('The payment stand-in failed:', error);
         send(response, json(500, { error: { type: 'api_error', message: 'The stand-in failed' } }));
@@ -106,7 +108,9 @@ export async function startStripeFake(options: StripeFakeOptions): Promise<Runni
   });
   url = await listen(server, options.port);
   courier.resume();
-  const expiry = setInterval(() => till.expireDue(), EXPIRY_CHECK_MS);
+  const expiry = setInterval(() => {
+    till.expireDue();
+  }, EXPIRY_CHECK_MS);
   expiry.unref();
 
   return {

@@ -192,7 +192,9 @@ describe('the mailbox page', () => {
       });
       let answer = '';
       socket.on('data', (chunk) => (answer += chunk.toString('utf8')));
-      socket.on('end', () => resolve(answer.slice(0, answer.indexOf('\r\n'))));
+      socket.on('end', () => {
+        resolve(answer.slice(0, answer.indexOf('\r\n')));
+      });
       socket.on('error', reject);
     });
     expect(status).toContain(' 403 ');

@@ -179,6 +179,8 @@ describe('paying', () => {
     expect(html).toContain('&quot;straight&quot; &lt;ring&gt;');
     expect(html).toContain('EUR 448.50'.replace(' ', '\u00a0'));
     expect(html).toContain('Stand-in for the payment provider');
+    // Under `no-referrer` a browser would send this page's own form as if from another site.
+    expect(response.headers.get('referrer-policy')).toBe('same-origin');
     expect(html).not.toMatch(/<script|style=|\son\w+=/);
     expect(response.headers.get('content-security-policy')).toContain("default-src 'none'");
     expect(response.headers.get('content-security-policy')).toContain(
