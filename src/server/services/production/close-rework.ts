@@ -1,0 +1,42 @@
+import { eq } from 'drizzle-orm';
+import type { UnitStage } from '~/domain/production/stages';
+import { reworks } from '~/server/db/schema';
+import { DomainError } from '~/server/errors';
+import { readKit } from '~/server/queries/production/read-kit';
+import { actingUserId, write } from '~/server/write';
+import type { Ctx } from '~/server/write';
+import { lockUnit } from './lock-unit';
+
+/**
+ * Ends a unit's rework with its remedy and the minutes it took; the unit goes on at its final test, or at
+ * the build stage where it was.
+ *
+ * @throws DomainError `not_found`, or `conflict` where no rework is open or a part that was put back is not replaced
+ */
+export async function closeRework(
+  input: { serial: string; remedy: string; minutes?: number | undefined },
+  ctx: Ctx,
+): Promise<{ reworkId: number; serial: string; stage: UnitStage }> {
+  return write(ctx, async (w) => {
+    const { row: unit, openReworkId } = await lockUnit(w.tx, input.serial);
+    if (openReworkId === null) throw new DomainError('conflict', `${unit.serial} is not in rework.`);
+    const lacking = (await readKit(w.tx, unit)).filter(
+      (line) => line.part.trace === 'each' && line.missing > 0,
+    );
+    if (lacking.length > 0) {
+      const parts = lacking.map((line) => `${line.part.partNumber} (${line.missing})`).join(', ');
+      throw new DomainError('conflict', `${unit.serial} lacks ${parts}, which was put back. Pick it first.`);
+    }
+    const minutes = input.minutes ?? null;
+    await w.tx
+      .update(reworks)
+      .set({ remedy: input.remedy, minutes, closedAt: w.now, closedBy: actingUserId(w) })
+      .where(eq(reworks.id, openReworkId));
+    await w.record({
+      action: 'rework.close',
+      subjects: [{ type: 'unit', id: unit.id }],
+      details: { reworkId: openReworkId, remedy: input.remedy, minutes },
+    });
+    return { reworkId: openReworkId, serial: unit.serial, stage: unit.stage };
+  });
+}
