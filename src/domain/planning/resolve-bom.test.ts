@@ -46,6 +46,11 @@ describe('resolving', () => {
     expect(narrow.ok && narrow.lines.map((l) => l.lineNo)).toEqual([10, 30, 50]);
   });
 
+  it('gives the lines in order of their numbers', () => {
+    const result = resolveBom([line(3, ['R3']), line(1, ['R1']), line(2, ['R2'])], new Set());
+    expect(result.ok && result.lines.map((l) => l.lineNo)).toEqual([1, 2, 3]);
+  });
+
   it('refuses a place filled twice and names both lines', () => {
     expect(resolveBom([...lines, line(60, ['R2'], 'band.20m')], new Set(['band.20m']))).toEqual({
       ok: false,
@@ -93,6 +98,22 @@ describe('the check at release', () => {
     if (!narrow || !wide) throw new Error('two options are needed');
     const ruled = { ...apart, options: [{ ...narrow, excludes: ['filter.wide'] }, wide] };
     expect(checkBom(both, [ruled])).toEqual({ ok: true, combinations: 3, complete: true });
+  });
+
+  it('minds rules of other groups, which may forbid what the conditions name', () => {
+    const both = [line(1, ['X1'], 'filter.narrow'), line(2, ['X1'], 'filter.wide')];
+    const filters = group('filter', 0, 2, ['filter.narrow', 'filter.wide']);
+    const ruledBy = (rule: Partial<OptionGroup['options'][number]>): OptionGroup => {
+      const board = group('board', 1, 1, ['board.b']);
+      return { ...board, options: board.options.map((option) => ({ ...option, ...rule })) };
+    };
+    expect(checkBom(both, [filters, ruledBy({})])).toMatchObject({ ok: false });
+    expect(checkBom(both, [filters, ruledBy({ excludes: ['filter.wide'] })])).toEqual({
+      ok: true,
+      combinations: 2,
+      complete: true,
+    });
+    expect(checkBom(both, [filters, ruledBy({ needs: ['filter.wide'] })])).toMatchObject({ ok: false });
   });
 
   it('finds a required place left empty', () => {

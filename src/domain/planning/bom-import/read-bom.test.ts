@@ -55,6 +55,12 @@ describe('encodings and separators', () => {
     expect(understood.notes.join()).toContain('Latin-1');
   });
 
+  it('cuts at the separator of the headings, though another stands oftener in the rows', () => {
+    const { lines, understood } = read(utf8('Ref;Qty;Value\nR1,R2,R3,R4;4;4k7\nC1,C2,C3,C4,C5;5;100n\n'));
+    expect(understood.separator).toBe(';');
+    expect(lines.map((l) => l.quantity)).toEqual([4, 5]);
+  });
+
   it('keeps empty cells in front of tabs in their place', () => {
     const { lines } = read(utf8('Notes\tRef\tValue\n\tR1\t10k\n\tR2\t12k\n'));
     expect(brief(lines)).toEqual([
