@@ -22,7 +22,7 @@ interface Props {
 }
 
 /** How far a leader runs beyond the case towards its words, mm. */
-const REACH = 14;
+const REACH = 12.5;
 /** Height of the leaders at the case's edge, as a part of the case's height. The words' own offsets match it. */
 const LEVEL = { top: 0.2, bottom: 0.8 } as const;
 const LAMP_RADIUS = 1.3;
@@ -32,31 +32,33 @@ export function PanelDrawing({ spec, chosen, callOuts }: Props) {
   const parts = litParts(spec, chosen);
   const shown = callOuts === undefined ? [] : spec.callOuts.filter((callOut) => callOut.key in callOuts);
   const drawing = (
-    <svg
-      viewBox={`0 0 ${spec.widthMm} ${spec.heightMm}`}
-      className="w-full overflow-visible"
-      role="img"
-      aria-label={describe(spec, parts)}
-    >
-      <Case spec={spec} text={parts.displayText} />
-      {spec.lamps.map((lamp) => (
-        <Lamp
-          key={lamp.key}
-          lamp={lamp}
-          lit={parts.lit.has(lamp.key)}
-          active={parts.activeLamp === lamp.key}
-        />
-      ))}
-      {spec.knobs.map((knob) => (
-        <Knob key={knob.key} knob={knob} fitted={parts.fitted.has(knob.key)} />
-      ))}
-      {spec.sockets.map((socket) => (
-        <Socket key={socket.key} socket={socket} fitted={parts.fitted.has(socket.key)} />
-      ))}
-      {shown.map((callOut, index) => (
-        <Leader key={callOut.key} spec={spec} callOut={callOut} number={index + 1} />
-      ))}
-    </svg>
+    <div className="panel-drawing">
+      <svg
+        viewBox={`0 0 ${spec.widthMm} ${spec.heightMm}`}
+        className="block w-full overflow-visible"
+        role="img"
+        aria-label={describe(spec, parts)}
+      >
+        <Case spec={spec} text={parts.displayText} />
+        {spec.lamps.map((lamp) => (
+          <Lamp
+            key={lamp.key}
+            lamp={lamp}
+            lit={parts.lit.has(lamp.key)}
+            active={parts.activeLamp === lamp.key}
+          />
+        ))}
+        {spec.knobs.map((knob) => (
+          <Knob key={knob.key} knob={knob} fitted={parts.fitted.has(knob.key)} />
+        ))}
+        {spec.sockets.map((socket) => (
+          <Socket key={socket.key} socket={socket} fitted={parts.fitted.has(socket.key)} />
+        ))}
+        {shown.map((callOut, index) => (
+          <Leader key={callOut.key} spec={spec} callOut={callOut} number={index + 1} />
+        ))}
+      </svg>
+    </div>
   );
   if (callOuts === undefined) return drawing;
   return (
@@ -219,7 +221,7 @@ function PartLabel({ part, quiet = false }: { part: PanelPart; quiet?: boolean }
       y={part.y + part.r + 4}
       fontSize="2.9"
       textAnchor="middle"
-      className={quiet ? 'fill-engraved-2' : 'fill-engraved'}
+      className={`panel-label ${quiet ? 'fill-engraved-2' : 'fill-engraved'}`}
     >
       {part.label}
     </text>

@@ -18,7 +18,7 @@ export function Checkbox({ name, id, value, label, type = 'checkbox', hint, erro
   const { control, hintId, errorId } = wireField({ name, id: ownId, hint, error });
   return (
     <div>
-      <label className="flex min-h-[max(1.75rem,calc(var(--control)-0.75rem))] items-center gap-2.5">
+      <label className="flex min-h-(--check) items-center gap-2.5">
         <input {...input} {...control} type={type} value={value} className="check-box mt-0" />
         <span className="min-w-0 flex-1 leading-snug">{label}</span>
         {end !== undefined && <span className="font-mono">{end}</span>}

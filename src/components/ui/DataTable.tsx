@@ -62,6 +62,7 @@ export function DataTable<Row extends object>(props: Props<Row>) {
     getRowId: rowId,
     enableSortingRemoval: false,
     enableMultiSort: false,
+    sortDescFirst: false,
     manualSorting: sort !== undefined,
     ...(sort && { state: { sorting: [{ id: sort.by, desc: sort.desc }] } }),
   });

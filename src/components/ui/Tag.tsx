@@ -42,7 +42,7 @@ export function Tag(props: Props) {
   const face =
     serial === undefined ? `font-head ${HEADING[size]}` : `font-mono tracking-tight ${SERIAL[size]}`;
   return (
-    <div className={`tag tag-${size} flex-wrap sm:flex-nowrap`}>
+    <div className={`tag tag-${size} flex-wrap lg:flex-nowrap`}>
       <span className="eyelet" aria-hidden="true" />
       <div className="min-w-0 flex-1">
         {above !== undefined && <p className="quiet">{above}</p>}
@@ -65,7 +65,7 @@ export function Tag(props: Props) {
         ))}
         {children}
       </div>
-      {aside !== undefined && <div className="basis-full sm:basis-auto">{aside}</div>}
+      {aside !== undefined && <div className="basis-full lg:basis-auto">{aside}</div>}
     </div>
   );
 }

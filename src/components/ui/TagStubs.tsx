@@ -39,9 +39,7 @@ export function TagStubs({ serial, line, quiet, stubs, children }: Props) {
     <div className="stub-row">
       <div className="stub-first">
         <Tag size="l" level={1} serial={serial} line={line} quiet={quiet} />
-        {children !== undefined && (
-          <div className="order-last px-4 pt-3 pb-4 lg:order-none lg:pl-14">{children}</div>
-        )}
+        {children !== undefined && <div className="px-4 pt-3 pb-4 xl:pl-14">{children}</div>}
       </div>
       <ol className="stub-list" aria-label="Work on this unit">
         {stubs.map((stub) => (
@@ -72,7 +70,7 @@ export function TagStubs({ serial, line, quiet, stubs, children }: Props) {
 }
 
 function Beneath({ happenings }: { happenings: readonly Happening[] }) {
-  if (happenings.length === 0) return <div className="stub-beneath hidden lg:block" />;
+  if (happenings.length === 0) return <div className="stub-beneath hidden xl:block" />;
   return (
     <ul className="stub-beneath grid content-start gap-3 text-[0.9375rem] leading-snug">
       {happenings.map((happening, index) => (
@@ -83,10 +81,18 @@ function Beneath({ happenings }: { happenings: readonly Happening[] }) {
           )}
           {happening.text !== undefined && <p>{happening.text}</p>}
           {happening.meta !== undefined && (
-            <p className="font-mono text-quiet leading-snug text-ink-2">{happening.meta}</p>
+            <p className="font-mono text-quiet leading-snug text-ink-2">{unbroken(happening.meta)}</p>
           )}
         </li>
       ))}
     </ul>
   );
+}
+
+/** Breaks a line only between its pieces, never inside a time or a name. */
+function unbroken(meta: string): string {
+  return meta
+    .split(' · ')
+    .map((piece) => piece.replaceAll(' ', '\u00a0'))
+    .join(' · ');
 }
