@@ -161,19 +161,20 @@ function limitsOf(
   return { ok: true, lower: point.lower, upper, ruleKey: limit.ruleKey, ruleText: limit.ruleText, extra };
 }
 
-function marginText(verdict: Verdict, margin: number | null, quantity: Quantity): string {
+function marginText(verdict: Verdict, margin: number | null, isUnder: boolean, quantity: Quantity): string {
   if (verdict === 'not_run') return 'no verdict';
   if (quantity.format === 'yes_no') return verdict === 'pass' ? 'yes' : 'no';
   if (margin === null) return 'no limit';
   const size = Math.abs(margin);
+  const side = isUnder ? 'under' : 'over';
   const amount =
     quantity.unit === 'dBc'
       ? `${formatNumber(size, 1)} dB`
       : formatValue(size, quantity.key).replace('+', '');
   if (verdict === 'too_close') {
-    return `too close to call: ${amount} ${margin >= 0 ? 'in hand' : 'over'}, within the uncertainty`;
+    return `too close to call: ${amount} ${margin >= 0 ? 'in hand' : side}, within the uncertainty`;
   }
-  return margin >= 0 ? `${amount} in hand` : `${amount} over the limit`;
+  return margin >= 0 ? `${amount} in hand` : `${amount} ${side} the limit`;
 }
 
 function judgeCheck(readings: readonly Reading[]): PointJudgement {
@@ -285,7 +286,7 @@ function judgeOne(point: TestPoint, readings: readonly Reading[], context: Judge
     ...base,
     ...stated,
     verdict,
-    marginText: marginText(verdict, marginOf(value, lower, upper), quantity),
+    marginText: marginText(verdict, marginOf(value, lower, upper), lower !== null && value < lower, quantity),
     pConform: probabilityOfConformance(scale.value, uc, scale.lower, scale.upper),
   };
 }

@@ -1,0 +1,50 @@
+import { describe, expect, it } from 'vitest';
+import { formatAtMeter, formatFrequency, formatNumber, formatValue, formatWithU } from './format';
+
+describe('formatValue', () => {
+  it.each([
+    [3.1249, 'rf_power', '3.12 W'],
+    [9.996, 'rf_power', '10.0 W'],
+    [0.2534, 'rf_power', '0.253 W'],
+    [123.4, 'rf_power', '123 W'],
+    [3000, 'rf_power', '3000 W'],
+    [250.6e-6, 'rf_power', '251 µW'],
+    [0.00512, 'rf_power', '5.12 mW'],
+    [-51.12, 'harmonic_2', '\u221251.1 dBc'],
+    [-0.02, 'harmonic_2', '0.0 dBc'],
+    [0.612, 'current_key_down', '612 mA'],
+    [1.5, 'current_rest', '1.50 A'],
+    [0.9996, 'current_rest', '1.00 A'],
+    [38.2, 'frequency_error', '+38 Hz'],
+    [-41, 'frequency_error', '\u221241 Hz'],
+    [0.2, 'frequency_error', '0 Hz'],
+    [1, 'check', 'yes'],
+    [0, 'check', 'no'],
+  ])('%d of %s is %s', (value, key, text) => {
+    expect(formatValue(value, key)).toBe(text);
+  });
+
+  it('shows a power at the meter in dBm', () => {
+    expect(formatAtMeter(2.97852e-4, 'rf_power')).toBe('\u22125.26 dBm');
+    expect(formatAtMeter(-51.04, 'harmonic_2')).toBe('\u221251.0 dBc');
+  });
+});
+
+describe('other numbers', () => {
+  it.each([
+    [7.03e6, '7.03 MHz'],
+    [108695.652, '108.696 kHz'],
+    [300, '300 Hz'],
+    [14e6, '14 MHz'],
+    [100e6, '100 MHz'],
+    [1.22, '1.2 Hz'],
+  ])('%d Hz is %s', (freqHz, text) => {
+    expect(formatFrequency(freqHz)).toBe(text);
+  });
+
+  it('has no negative zero and gives an uncertainty two figures', () => {
+    expect(formatNumber(-0.001, 1)).toBe('0.0');
+    expect(formatWithU(-51.12, 0.88)).toBe('\u221251.12 ± 0.88');
+    expect(formatWithU(612.4, 14)).toBe('612 ± 14');
+  });
+});

@@ -1,0 +1,104 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { checkPathPower, partLoss, pathLoss } from './paths';
+import type { PathPart } from './types';
+
+const part = (over: Partial<PathPart> = {}): PathPart => ({
+  name: 'Tap',
+  loss: [
+    [1e6, 40],
+    [10e6, 40.4],
+    [100e6, 41.4],
+  ],
+  uncertaintyDb: 0.2,
+  k: 2,
+  flatnessDb: null,
+  ratingW: null,
+  vswr: null,
+  ...over,
+});
+
+describe('partLoss', () => {
+  it.each([
+    [1e6, 40],
+    [10e6, 40.4],
+    [100e6, 41.4],
+    [Math.sqrt(10) * 1e6, 40.2], // half way in log frequency
+    [Math.sqrt(1000) * 1e6, 40.9],
+  ])('at %d Hz is %d dB', (freqHz, lossDb) => {
+    const loss = partLoss(part(), freqHz);
+    expect(loss.ok && loss.lossDb).toBeCloseTo(lossDb, 9);
+  });
+
+  it.each([0.99e6, 100.1e6, NaN])('refuses to guess at %d Hz', (freqHz) => {
+    expect(partLoss(part(), freqHz)).toMatchObject({
+      ok: false,
+      reason: expect.stringContaining('1 MHz to 100 MHz'),
+    });
+  });
+
+  it('stays between the rows around it', () => {
+    fc.assert(
+      fc.property(fc.double({ min: 1e6, max: 100e6, noNaN: true }), (freqHz) => {
+        const loss = partLoss(part(), freqHz);
+        return loss.ok && loss.lossDb >= 40 && loss.lossDb <= 41.4;
+      }),
+    );
+  });
+});
+
+describe('pathLoss', () => {
+  it('adds its parts and loses nothing without any', () => {
+    expect(pathLoss({ parts: [part(), part()] }, 10e6)).toEqual({ ok: true, lossDb: 80.8 });
+    expect(pathLoss(null, 10e6)).toEqual({ ok: true, lossDb: 0 });
+  });
+
+  it('refuses where one part does', () => {
+    const short = part({
+      name: 'Pad',
+      loss: [
+        [1e6, 10],
+        [5e6, 10],
+      ],
+    });
+    expect(pathLoss({ parts: [part(), short] }, 10e6)).toMatchObject({
+      ok: false,
+      reason: expect.stringContaining('Pad'),
+    });
+  });
+});
+
+describe('checkPathPower', () => {
+  const load = part({ name: 'Load tap', ratingW: 10 });
+  const pad = part({
+    name: 'Pad',
+    ratingW: 0.5,
+    loss: [
+      [1e6, 20],
+      [60e6, 20],
+    ],
+  });
+
+  it('passes a path that stands the power', () => {
+    expect(checkPathPower({ parts: [load, pad] }, 5, 7e6)).toEqual({ ok: true });
+  });
+
+  it('names the part that would burn', () => {
+    const result = checkPathPower({ parts: [pad, load] }, 5, 7e6);
+    expect(result).toMatchObject({
+      ok: false,
+      reason: expect.stringMatching(/Pad is rated for 0\.500 W and would get 5\.00 W/),
+    });
+  });
+
+  it('looks behind a part that loses little', () => {
+    const cable = part({
+      name: 'Cable',
+      loss: [
+        [1e6, 0.1],
+        [60e6, 0.3],
+      ],
+    });
+    expect(checkPathPower({ parts: [cable, pad] }, 5, 7e6)).toMatchObject({ ok: false });
+  });
+});
