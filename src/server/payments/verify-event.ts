@@ -12,6 +12,16 @@ const providerEventSchema = z.object({
   data: z.object({ object: z.record(z.unknown()) }),
 });
 
+/** Reads the envelope of an event that was verified when it came; null where it is none. */
+export function parseKeptEvent(body: string): ProviderEvent | null {
+  try {
+    const parsed = providerEventSchema.safeParse(JSON.parse(body));
+    return parsed.success ? parsed.data : null;
+  } catch {
+    return null;
+  }
+}
+
 export type ProviderEvent = z.infer<typeof providerEventSchema>;
 
 type RefusalReason =
