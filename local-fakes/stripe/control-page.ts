@@ -69,7 +69,7 @@ function sessionPart(store: Store, session: Session): string {
   const table =
     events.length === 0
       ? '<p class="quiet">No events yet.</p>'
-      : `<div class="scroll"><table><thead><tr><th scope="col">Event</th><th scope="col">State</th><th scope="col">Send again</th></tr></thead>
+      : `<div class="scroll"><table class="wide"><thead><tr><th scope="col">Event</th><th scope="col">State</th><th scope="col">Send again</th></tr></thead>
 <tbody>${events.map(eventRow).join('\n')}</tbody></table></div>`;
   return `<section>
 <h2>${escapeHtml(order)}: ${escapeHtml(formatMinor(totalOf(session), session.currency))}, ${escapeHtml(stateOf(store, session))}</h2>

@@ -42,6 +42,9 @@ const MANILA = '#ecdcb6';
 const MANILA_EDGE = '#cdb67f';
 const COPPER = '#a8521f';
 
+/** A sum or a number stays on one line; anything longer may break so that a phone's width holds it. */
+const LONGEST_UNBROKEN = 16;
+
 function escapeHtml(text: string): string {
   return text
     .replaceAll('&', '&amp;')
@@ -80,7 +83,7 @@ function blockHtml(block: Block): string {
 ${block.rows
   .map(
     ([label, value]) =>
-      `<tr><td style="padding:8px 12px 8px 0;border-bottom:1px solid ${RULE};vertical-align:top">${escapeHtml(label)}</td><td align="right" style="padding:8px 0;border-bottom:1px solid ${RULE};vertical-align:top;font-family:${MONO}">${escapeHtml(value)}</td></tr>`,
+      `<tr><td style="padding:8px 12px 8px 0;border-bottom:1px solid ${RULE};vertical-align:top">${escapeHtml(label)}</td><td align="right" style="padding:8px 0;border-bottom:1px solid ${RULE};vertical-align:top;font-family:${MONO};${value.length <= LONGEST_UNBROKEN ? 'white-space:nowrap' : ''}">${escapeHtml(value)}</td></tr>`,
   )
   .join('\n')}
 </table>`;
