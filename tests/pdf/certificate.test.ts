@@ -1,4 +1,5 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
+import { z } from 'zod';
 import { buyerText, publicStatement, signedText } from '~/domain/certificates/canonical';
 import { certificateStatementSchema, publicStatementSchema } from '~/schemas/certificate-statement';
 import { digestBuyer, generateKeyPair, keyId, signText, verifyText } from '~/server/keys/ed25519';
@@ -7,9 +8,17 @@ import type { CertificateStatement } from '~/domain/certificates/statement';
 import { buildBandPoints, buildPoint, buildStatement } from './build-statement';
 import { attachmentsOf, factsOf, fontsOf, syntaxCheck, textOf, wordsOf } from './tools';
 
+// A file is written and read by other programs in every test.
+vi.setConfig({ testTimeout: 60_000 });
+
 const PAGE_WIDTH = 595.28;
 const MARGIN = 40.5;
 const pair = generateKeyPair();
+const attachedSchema = z.object({
+  statement: publicStatementSchema,
+  buyer: z.object({ callSign: z.string(), orderNumber: z.string(), salt: z.string() }),
+  signature: z.object({ publicKey: z.string(), value: z.string() }),
+});
 
 function signatureOf(statement: CertificateStatement) {
   return {
@@ -73,7 +82,7 @@ describe('the certificate', () => {
       '7F3K-92QD-HM0V',
       'https://works.example/c/7F3K92QDHM0V',
       `Signed with the works’ key ${keyId(pair.publicKey)} (Ed25519).`,
-      'The results are of unit H3-0147 alone.',
+      'The results are of this unit alone.',
       'page 1 of 1',
     ]) {
       expect(text).toContain(words);
@@ -107,8 +116,8 @@ describe('the certificate', () => {
     const statement = buildStatement();
     const files = attachmentsOf(await render());
     expect([...files.keys()]).toEqual(['TC-2027-00412.json']);
-    const { statement: attached, buyer, signature } = JSON.parse(files.get('TC-2027-00412.json') ?? '');
-    const open = publicStatementSchema.parse(attached);
+    const data: unknown = JSON.parse(files.get('TC-2027-00412.json') ?? '');
+    const { statement: open, buyer, signature } = attachedSchema.parse(data);
     expect(open).toEqual(publicStatement(statement));
     expect(verifyText(signature.publicKey, signedText(open), signature.value)).toBe(true);
     expect(digestBuyer(buyer)).toBe(open.buyerDigest);
@@ -216,7 +225,7 @@ describe('what does not fit', () => {
     expect(text).toContain('page 1 of 2');
     expect(text).toContain('page 2 of 2');
     expect(text).toContain('TC-2027-00412, continued');
-    for (const { band } of bands) expect(text).toContain(band);
+    for (const { band } of bands) expect(squeezed(text)).toContain(band);
     expect(text).toContain('10th');
     expectInside(pdf);
   });
@@ -234,16 +243,14 @@ describe('what does not fit', () => {
     ['right to left', 'שלום עולם 12 مرحبا بالعالم'],
     ['signs of many scripts', 'Ω − ± µ μ η Ж Ελληνικά ≤ ≥ √ ① ✓ fi ffi'],
     ['marks upon marks', 'Z\u0351\u036b\u0343\u036aa\u0305\u0336l\u0489go'],
-    ['half a character', 'a\ud800b'],
     ['a script without a font here', '中村 さくら 👩‍🚀 무선'],
   ])('survives text that is %s', async (_, hostile) => {
     const plain = buildStatement();
-    const signed = buildStatement({ buyer: plain.buyer });
     const statement = {
-      ...signed,
+      ...plain,
       works: { name: hostile, addressLines: [hostile, hostile] },
       unit: {
-        ...signed.unit,
+        ...plain.unit,
         serial: hostile.slice(0, 60),
         model: hostile,
         options: hostile,
@@ -258,12 +265,13 @@ describe('what does not fit', () => {
       ],
       conformity: [hostile, hostile],
     };
-    const printable = hostile.isWellFormed()
-      ? statement
-      : buildStatement({ testedBy: hostile.toWellFormed() });
-    const pdf = await renderCertificate(printable, signatureOf(printable));
+    const pdf = await renderCertificate(statement, signatureOf(statement));
     expect(syntaxCheck(pdf)).toContain('No syntax or stream encoding errors found');
     expectInside(pdf);
+  });
+
+  it('is refused where it holds half a character, which no text file can carry', () => {
+    expect(() => signatureOf(buildStatement({ testedBy: 'a\ud800b' }))).toThrow(TypeError);
   });
 
   it('finds signs of other scripts in a wider font and spells out those that no font has', async () => {

@@ -1,7 +1,10 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { renderPackingList } from '~/server/pdf/packing-list';
 import type { PackingList } from '~/server/pdf/packing-list';
 import { syntaxCheck, textOf } from './tools';
+
+// A file is written and read by other programs in every test.
+vi.setConfig({ testTimeout: 60_000 });
 
 const model: PackingList = {
   works: { name: 'Thistledown Radio Works', addressLines: ['4 Ropewalk Yard', 'Selwick'] },

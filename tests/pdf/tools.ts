@@ -84,3 +84,16 @@ export function fontsOf(pdf: Uint8Array): { name: string; embedded: boolean; sub
       return { name, embedded: embedded === 'yes', subset: subset === 'yes' };
     });
 }
+
+/** The first page in shades of grey at a resolution: from column and row to 0 (black) to 255 (white). */
+export function pixelsOf(pdf: Uint8Array, dpi: number): (column: number, row: number) => number {
+  const image = withFile('pdftoppm', pdf, (file) =>
+    execFileSync('pdftoppm', ['-r', String(dpi), '-gray', '-f', '1', '-l', '1', file], {
+      maxBuffer: 1 << 28,
+    }),
+  );
+  const head = /^P5\s+(\d+)\s+(\d+)\s+255\s/u.exec(image.subarray(0, 40).toString('latin1'));
+  if (!head) throw new Error('The picture of the page is not in the form that was asked for.');
+  const width = Number(head[1]);
+  return (column, row) => image[head[0].length + Math.floor(row) * width + Math.floor(column)] ?? 255;
+}

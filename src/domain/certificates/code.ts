@@ -52,7 +52,7 @@ export function formatCode(code: string): string {
   return [code.slice(0, 4), code.slice(4, 8), code.slice(8)].join('-');
 }
 
-export type ParsedCode = { ok: true; code: string } | { ok: false; reason: string };
+type ParsedCode = { ok: true; code: string } | { ok: false; reason: string };
 
 /**
  * Reads a code as a person types it: either case, O for 0, I or L for 1, dashes and blanks anywhere or nowhere.

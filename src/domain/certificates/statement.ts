@@ -1,10 +1,10 @@
 import type { Decision, Verdict } from '~/domain/bench/types';
 
 /** How far an instrument can be trusted: the grade that its owner has stated, printed beside its name. */
-export type InstrumentGrade = 'accredited' | 'checked' | 'unchecked';
+type InstrumentGrade = 'accredited' | 'checked' | 'unchecked';
 
 /** Expanded uncertainty of one reading at about 95 % coverage. */
-export type StatedUncertainty = {
+type StatedUncertainty = {
   /** Half width U, in `unit`. A level converted to W keeps its own unequal interval in `low` and `high`. */
   value: number;
   unit: string;

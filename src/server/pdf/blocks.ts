@@ -5,7 +5,7 @@ import type { Span } from './text-layout';
 
 const LABEL = style('text', 9.6, COLOURS.quiet);
 const FACT = style('text', 9.6);
-const LABEL_WIDTHS = [54, 68] as const;
+const LABEL_WIDTHS = [54, 76] as const;
 const COLUMN_GAP = 18;
 
 /** Name and address of the works on the left, what the paper is and its number on the right. */

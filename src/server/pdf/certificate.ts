@@ -35,6 +35,8 @@ const SCALES = [1, 0.93, 0.87, 0.81] as const;
 /**
  * The certificate as a PDF file: one page of A4, more only where the readings need them. Pure of clock and chance: the
  * same statement and signature give the same bytes. The signed statement is attached as `<number>.json`.
+ *
+ * @param signature over `signedText(statement)`; it is printed and attached as given, and not checked here
  */
 export async function renderCertificate(
   statement: CertificateStatement,
@@ -50,7 +52,7 @@ export async function renderCertificate(
     keywords: [number, unit.serial, formatCode(statement.code)],
     madeAt: new Date(`${statement.issuedOn}T00:00:00Z`),
     attachment: {
-      name: `${number}.json`,
+      name: `${number.replace(/[^\p{L}\p{N}._-]/gu, '_')}.json`,
       description: 'The statement of this certificate with all readings, its signature and how to check it',
       text: attachedText(statement, signature),
     },
@@ -71,7 +73,7 @@ function layOut(statement: CertificateStatement, signature: StatementSignature):
 
 function layOutAt(scale: number, statement: CertificateStatement, signature: StatementSignature): Flow {
   const number = fullNumber(statement);
-  const { works, unit } = statement;
+  const { works } = statement;
   const flow = new Flow(scale, (next) => drawShortHead(next, works.name, number));
   drawHead(flow, works, 'Certificate', number);
   drawTitle(flow, 'Final test certificate', 'For one unit, measured before it left the bench.');
@@ -90,7 +92,7 @@ function layOutAt(scale: number, statement: CertificateStatement, signature: Sta
   drawCheck(flow, statement, signature);
   drawFeet(
     flow,
-    `${number}. The results are of unit ${unit.serial} alone. This certificate may be copied only as a whole.`,
+    `${number}. The results are of this unit alone. This certificate may be copied only as a whole.`,
   );
   return flow;
 }

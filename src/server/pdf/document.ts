@@ -3,7 +3,7 @@ import type { Flow } from './flow';
 import { COLOURS } from './colours';
 import { style, wrapText } from './text-layout';
 
-export type DocumentFacts = {
+type DocumentFacts = {
   title: string;
   author: string;
   subject: string;

@@ -29,7 +29,7 @@ const CHAINS: Record<Face, readonly FontKey[]> = {
 };
 
 /** Text that one font can draw whole. */
-export type Run = { font: FontKey; text: string };
+type Run = { font: FontKey; text: string };
 
 type Measuring = ReturnType<typeof fontkit.create>;
 

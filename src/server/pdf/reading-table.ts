@@ -19,9 +19,14 @@ function worst(points: readonly StatedPoint[]): PrintedVerdict {
 }
 
 /** A carrier in MHz to 10 Hz, in groups that the eye can count: `7.030 04`. */
-export function formatCarrier(freqHz: number): string {
+function formatCarrier(freqHz: number): string {
   const [whole = '', part = ''] = (freqHz / 1e6).toFixed(5).split('.');
   return `${whole}.${part.slice(0, 3)}\u00a0${part.slice(3)}`;
+}
+
+/** Short words of a first column stay on one line. */
+function unbroken(text: string): string {
+  return text.length > 12 ? text : text.replaceAll(' ', '\u00a0');
 }
 
 function formatK(k: number): string {
@@ -62,11 +67,11 @@ function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table 
     ],
     rows: rows.map(({ band, freqHz }) => ({
       quiet: false,
-      cells: [{ text: band }, freqHz === null ? null : { text: formatCarrier(freqHz) }],
+      cells: [{ text: unbroken(band) }, freqHz === null ? null : { text: formatCarrier(freqHz) }],
     })),
   };
-  const mustBe: Cell[] = [{ text: 'must be' }, null];
-  const spread: Cell[] = [{ text: commonK === undefined ? '±' : `±, k = ${commonK}` }, null];
+  const mustBe: Cell[] = [{ text: unbroken('must be') }, null];
+  const spread: Cell[] = [{ text: commonK === undefined ? '±' : unbroken(`±, k = ${commonK}`) }, null];
 
   columns.forEach((column, index) => {
     const limit = sharedLimit(column);

@@ -28,7 +28,7 @@ import type { Line, Style } from './text-layout';
 /** A4 in points. */
 const A4 = { width: 595.28, height: 841.89, margin: 40.5 } as const;
 
-export type Point = readonly [x: number, y: number];
+type Point = readonly [x: number, y: number];
 type Paint = { fill?: Colour; stroke?: Colour; lineWidth?: number; dash?: readonly [number, number] };
 type Operation =
   | { kind: 'text'; font: FontKey; text: string; x: number; y: number; style: Style }

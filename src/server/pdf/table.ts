@@ -7,7 +7,7 @@ import type { PrintedVerdict } from './verdict-mark';
 
 /** What stands in one cell: a value with quiet lines under it, or a verdict with its mark. */
 export type Cell = { text: string; under?: string[] } | { verdict: PrintedVerdict } | null;
-export type TableRow = { cells: Cell[]; quiet: boolean };
+type TableRow = { cells: Cell[]; quiet: boolean };
 export type Table = {
   columns: { heading: string; align: 'start' | 'end'; prose: boolean }[];
   rows: TableRow[];

@@ -26,7 +26,8 @@ export function lineHeight({ size }: Style): number {
   return size * 1.38;
 }
 
-type Word = { text: string; style: Style; width: number; blankBefore: boolean };
+/** A word with the style of the blank before it, null where none stands there. */
+type Word = { text: string; style: Style; width: number; blank: Style | null };
 
 /** Breaks a word that is wider than the line, between characters. */
 function breakWord(text: string, wordStyle: Style, width: number): string[] {
@@ -44,19 +45,19 @@ function breakWord(text: string, wordStyle: Style, width: number): string[] {
 
 function wordsOf(spans: readonly Span[], width: number): Word[] {
   const words: Word[] = [];
-  let blankBefore = false;
+  let blank: Style | null = null;
   for (const span of spans) {
     for (const part of span.text.split(/([ \t\r\n]+)/u)) {
       if (part === '') continue;
       if (/^[ \t\r\n]+$/u.test(part)) {
-        blankBefore = true;
+        blank = span.style;
         continue;
       }
       const whole = textWidth(part, span.style);
       const pieces = whole <= width ? [part] : breakWord(part, span.style, width);
       for (const piece of pieces) {
-        words.push({ text: piece, style: span.style, width: textWidth(piece, span.style), blankBefore });
-        blankBefore = false;
+        words.push({ text: piece, style: span.style, width: textWidth(piece, span.style), blank });
+        blank = null;
       }
     }
   }
@@ -71,20 +72,23 @@ export function wrapSpans(spans: readonly Span[], width: number): Line[] {
   const lines: Line[] = [];
   let line: Line | undefined;
   for (const word of wordsOf(spans, width)) {
-    const last = line?.spans.at(-1);
-    // The blank is as wide as those of the words before it.
-    const blank = last && word.blankBefore ? textWidth(' ', last.style) : 0;
-    if (!line || !last || line.width + blank + word.width > width + 0.01) {
+    const blank = word.blank ? textWidth(' ', word.blank) : 0;
+    if (!line || line.width + blank + word.width > width + 0.01) {
       line = { spans: [{ text: word.text, style: word.style }], width: word.width };
       lines.push(line);
       continue;
     }
-    if (blank > 0) last.text += ' ';
-    if (last.style === word.style) last.text += word.text;
-    else line.spans.push({ text: word.text, style: word.style });
+    if (word.blank) append(line.spans, ' ', word.blank);
+    append(line.spans, word.text, word.style);
     line.width += blank + word.width;
   }
   return lines;
+}
+
+function append(spans: Span[], text: string, spanStyle: Style): void {
+  const last = spans.at(-1);
+  if (last && last.style === spanStyle) last.text += text;
+  else spans.push({ text, style: spanStyle });
 }
 
 /** A paragraph in one style. */
