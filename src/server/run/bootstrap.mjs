@@ -35,11 +35,11 @@ async function main() {
   const command = commands[process.argv[2] ?? ''];
   if (!command) throw new PlainError(`Name one of these commands: ${Object.keys(commands).join(', ')}.`);
   process.chdir(root);
-  // Before any package is read: React and Astro choose their fast build by it.
-  if (process.argv[2] === 'start') process.env['NODE_ENV'] ??= 'production';
   process.env['ASTRO_TELEMETRY_DISABLED'] = '1';
   await ensureNpmPackages(root);
   await ensureDebianPackages(root, command.debian);
+  // Before any package is read: React and Astro choose their fast build by it.
+  if (process.argv[2] === 'start') process.env['NODE_ENV'] = 'production';
   const { register } = await import('tsx/esm/api');
   register();
   process.argv.splice(1, 2, join(root, command.script));

@@ -46,15 +46,21 @@ function freePort() {
   });
 }
 
-/** Whether a TCP connection to the port succeeds. @param {number} port @returns {Promise<boolean>} */
-function listens(port) {
+/**
+ * Whether the server greets on the port. It listens before it has run its first statements and greets after.
+ *
+ * @param {number} port
+ * @returns {Promise<boolean>}
+ */
+function greets(port) {
   return new Promise((resolve) => {
     const socket = connect(port, '127.0.0.1');
-    socket.once('connect', () => {
-      socket.destroy();
+    socket.once('data', () => {
       resolve(true);
+      socket.destroy();
     });
     socket.once('error', () => resolve(false));
+    socket.once('close', () => resolve(false));
   });
 }
 
@@ -164,7 +170,7 @@ async function startDatabase(port) {
   await log.close();
   for (let waited = 0; waited < 120_000; waited += 50) {
     if (ended) throw new Error(`mariadbd ended while starting; see ${logFile}`);
-    if (await listens(port)) {
+    if (await greets(port)) {
       await rm(initFile, { force: true });
       return;
     }

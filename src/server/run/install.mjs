@@ -90,7 +90,7 @@ export async function ensureNpmPackages(root) {
   const install = async () => {
     if (packagesMatchLock(root)) return;
     step('Installing the npm packages of the lock (about half a minute)');
-    await runLogged('npm', ['ci', '--ignore-scripts', '--no-audit', '--no-fund'], {
+    await runLogged('npm', ['ci', '--include=dev', '--ignore-scripts', '--no-audit', '--no-fund'], {
       root,
       logFile: join(root, '.build', 'npm-install.log'),
     });

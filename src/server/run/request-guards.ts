@@ -47,6 +47,11 @@ export function isLoopback(baseUrl: URL): boolean {
   return loopbackNames.has(baseUrl.hostname);
 }
 
+/** The address to listen on for a base address of this machine. */
+export function loopbackAddress(baseUrl: URL): string {
+  return baseUrl.hostname === '[::1]' ? '::1' : '127.0.0.1';
+}
+
 /** Refuses a Host other than the base address's; on loopback its other names will do, with the same port. */
 export function refuseHost(host: string | undefined, baseUrl: URL): Refusal | undefined {
   const refusal = { status: 421, reason: `This server answers for ${baseUrl.host} only.` };

@@ -24,5 +24,6 @@ export function step(text) {
 export function sayFailure(error) {
   const text =
     error instanceof PlainError ? error.message : error instanceof Error ? error.stack : String(error);
-  process.stderr.write(`\nRigwright cannot go on. ${text}\n`);
+  const cause = error instanceof Error && error.cause !== undefined ? `\nCause: ${String(error.cause)}` : '';
+  process.stderr.write(`\nRigwright cannot go on. ${text}${cause}\n`);
 }

@@ -4,7 +4,7 @@ import { env } from '~/server/env';
 import { log } from '~/server/log';
 import { createWebServer, type ApplicationHandler } from './http-server';
 import { portInUseExitCode } from './processes';
-import { parseProxies } from './request-guards';
+import { isLoopback, loopbackAddress, parseProxies } from './request-guards';
 import { onStopRequest } from './stop-request';
 
 const graceMs = 10_000;
@@ -30,8 +30,11 @@ web.server.once('error', (error) => {
   log.fatal({ err: error }, 'cannot listen');
   process.exit('code' in error && error.code === 'EADDRINUSE' ? portInUseExitCode : 1);
 });
-web.server.listen(port, () => {
-  log.info({ port }, 'listening');
+// Where people reach it on this machine only, the network does not reach it either.
+const address =
+  process.env['RIGWRIGHT_LISTEN'] ?? (isLoopback(baseUrl) ? loopbackAddress(baseUrl) : undefined);
+web.server.listen(port, address, () => {
+  log.info({ port, address }, 'listening');
   process.send?.('ready');
 });
 
