@@ -98,8 +98,9 @@ function chooseLevel(candidates: readonly Column[], hints: SweepHints): LevelCho
 }
 
 /** Frequencies of each row in Hz; a unit glued to a number counts before that of the column. */
-function frequenciesOf(column: Column, preamble: Preamble, hints: SweepHints) {
-  const named = hints.freqUnit ?? freqUnitIn(column.name) ?? preamble.freqUnit;
+function frequenciesOf(column: Column, preamble: Preamble, table: Table, hints: SweepHints) {
+  const named =
+    hints.freqUnit ?? freqUnitIn(column.name) ?? preamble.freqUnit ?? freqUnitIn(table.headingLine ?? '');
   const glued = freqUnitOf(column.units[0] ?? '');
   const guess = guessFreqUnit(column.values[column.values.length - 1] ?? 0);
   const unit = glued ?? named ?? guess.unit;
@@ -121,7 +122,7 @@ export function readColumnFile(table: Table, preamble: Preamble, hints: SweepHin
   if (level === null) return { ok: false, reason: 'The file has a frequency but no level.' };
   const glued = gluedLevelUnit(level.column);
   if (!glued.ok) return glued;
-  const { unit, freqHz, question } = frequenciesOf(freq, preamble, hints);
+  const { unit, freqHz, question } = frequenciesOf(freq, preamble, table, hints);
   const repeats =
     table.heading !== null &&
     columns.some((column) => column !== level.column && column.name === level.column.name);
@@ -140,7 +141,11 @@ export function readColumnFile(table: Table, preamble: Preamble, hints: SweepHin
       freqHz,
       level: level.column.values,
       freqUnit: unit,
-      levelUnit: glued.unit ?? levelUnitIn(level.column.name) ?? preamble.levelUnit,
+      levelUnit:
+        glued.unit ??
+        levelUnitIn(level.column.name) ??
+        preamble.levelUnit ??
+        levelUnitIn(table.headingLine ?? ''),
       calibratedForm: true,
       questions: [...(question === null ? [] : [question]), ...level.questions],
       notes,

@@ -11,7 +11,7 @@ export interface Table {
   lineNumbers: number[];
   /** Cells of the line of column names; null where there is none. */
   heading: string[] | null;
-  /** The heading line itself; null where there is none. */
+  /** The line above the points, whether or not its cells name the columns; null where there is none. */
   headingLine: string | null;
   preamble: string[];
   /** How many blocks of about this size the file holds. */
@@ -54,6 +54,22 @@ function describe(line: Classified, width: number, dialect: Dialect): string {
     return `has ${String(line.cells.length)} cells where the others have ${String(width)}`;
   }
   return bad === '' ? 'has an empty cell' : `has “${bad.slice(0, 30)}” where a number should be`;
+}
+
+/**
+ * Names of the columns from the line above the points: as many cells as the rows have, none of them a number,
+ * or all but the first (the frequencies of a matrix). Between blanks a name may itself hold a blank.
+ */
+function headingCells(line: string, width: number, dialect: Dialect): string[] | null {
+  const bare = line.replace(/^\s*[#!%;*]+\s*/, '');
+  const splits = [splitLine(bare, dialect), bare.trim().split(/\t|\s{2,}/)];
+  for (const cells of dialect.separator === 'blank' ? splits : splits.slice(0, 1)) {
+    if (cells.length < width || (dialect.separator === 'blank' && cells.length !== width)) continue;
+    const numbers = cells.filter((cell) => numberCell(cell, dialect.decimal) !== null).length;
+    const isMatrix = numbers === cells.length - 1 && numberCell(cells[0] ?? '', dialect.decimal) === null;
+    if (numbers === 0 || (isMatrix && numbers > 1)) return cells;
+  }
+  return null;
 }
 
 /**
@@ -102,8 +118,8 @@ export function findTable(
   const start = (main.lineNumbers[0] ?? 1) - 1;
   let headingAt = start - 1;
   while (headingAt >= 0 && classified[headingAt]?.blank === true) headingAt -= 1;
-  const above = classified[headingAt];
-  const isHeading = above !== undefined && above.cells.length >= width && above.numbers < above.cells.length;
+  const headingLine = lines[headingAt] ?? null;
+  const heading = headingLine === null ? null : headingCells(headingLine, width, dialect);
   const size = main.rows.length;
   return {
     ok: true,
@@ -112,9 +128,9 @@ export function findTable(
       width,
       rows: main.rows,
       lineNumbers: main.lineNumbers,
-      heading: isHeading ? above.cells : null,
-      headingLine: isHeading ? (lines[headingAt] ?? null) : null,
-      preamble: lines.slice(0, isHeading ? headingAt : start),
+      heading,
+      headingLine,
+      preamble: lines.slice(0, heading === null ? start : headingAt),
       blocks: blocks.filter((block) => block.rows.length > 2 && block.rows.length >= size / 2).length,
     },
   };
