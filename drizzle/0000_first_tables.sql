@@ -293,6 +293,14 @@ CREATE TABLE `test_points` (
 	CONSTRAINT `test_points_legal_check` CHECK(`test_points`.`limit_rule` = 'fixed' or `test_points`.`decision` = 'guarded')
 );
 --> statement-breakpoint
+CREATE TABLE `certificate_buyers` (
+	`certificate_id` bigint unsigned NOT NULL,
+	`call_sign` varchar(20),
+	`order_number` varchar(20),
+	`salt` varchar(64) character set ascii collate ascii_bin NOT NULL,
+	CONSTRAINT `certificate_buyers_certificate_id` PRIMARY KEY(`certificate_id`)
+);
+--> statement-breakpoint
 CREATE TABLE `certificates` (
 	`id` bigint unsigned AUTO_INCREMENT NOT NULL,
 	`number` varchar(20) character set ascii collate ascii_bin NOT NULL,
@@ -848,6 +856,7 @@ ALTER TABLE `spares` ADD CONSTRAINT `spares_part_id_parts_id_fk` FOREIGN KEY (`p
 ALTER TABLE `test_plan_revisions` ADD CONSTRAINT `test_plan_revisions_model_id_models_id_fk` FOREIGN KEY (`model_id`) REFERENCES `models`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `test_plan_revisions` ADD CONSTRAINT `test_plan_revisions_released_by_users_id_fk` FOREIGN KEY (`released_by`) REFERENCES `users`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `test_points` ADD CONSTRAINT `test_points_test_plan_revision_id_test_plan_revisions_id_fk` FOREIGN KEY (`test_plan_revision_id`) REFERENCES `test_plan_revisions`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE `certificate_buyers` ADD CONSTRAINT `certificate_buyers_certificate_id_certificates_id_fk` FOREIGN KEY (`certificate_id`) REFERENCES `certificates`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `certificates` ADD CONSTRAINT `certificates_unit_id_units_id_fk` FOREIGN KEY (`unit_id`) REFERENCES `units`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `certificates` ADD CONSTRAINT `certificates_test_run_id_test_runs_id_fk` FOREIGN KEY (`test_run_id`) REFERENCES `test_runs`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE `certificates` ADD CONSTRAINT `certificates_contact_id_contacts_id_fk` FOREIGN KEY (`contact_id`) REFERENCES `contacts`(`id`) ON DELETE no action ON UPDATE no action;--> statement-breakpoint

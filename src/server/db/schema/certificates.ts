@@ -46,3 +46,14 @@ export const certificates = mysqlTable(
     index('certificates_test_run_id_idx').on(table.testRunId),
   ],
 );
+
+/** The buyer's part of a certificate, which the paper bears and the public page does not: erasable. */
+export const certificateBuyers = mysqlTable('certificate_buyers', {
+  certificateId: ref()
+    .primaryKey()
+    .references(() => certificates.id),
+  callSign: varchar({ length: 20 }),
+  orderNumber: varchar({ length: 20 }),
+  /** Hex; without it the digest in the signed statement cannot be guessed back to a call sign. */
+  salt: code(64).notNull(),
+});
