@@ -1,0 +1,140 @@
+import { asc, eq, inArray } from 'drizzle-orm';
+import { BAND_KEYS, regionOf } from '~/domain/bench/bands';
+import type { RunReading, RunSheet } from '~/domain/bench/judge-run';
+import { ruleForDestination } from '~/domain/bench/limit-rules';
+import { resolvePoints } from '~/domain/bench/resolve-points';
+import type { BandKey, TestPoint } from '~/domain/bench/types';
+import { invariant } from '~/lib/invariant';
+import { dayOf } from '~/lib/dates';
+import { instrumentSpecSchema, pathSpecSchema } from '~/schemas/bench-specs';
+import type { Reader } from '~/server/db/client';
+import {
+  instrumentRevisions,
+  instruments,
+  pathRevisions,
+  paths,
+  readings,
+  testPoints,
+  testRuns,
+  units,
+} from '~/server/db/schema';
+import { getWorks } from '~/server/queries/office/get-works';
+
+/** A reading as it stands in the database, beside what the computation needs of it. */
+export interface StoredReading extends RunReading {
+  id: number;
+  readingNo: number;
+  source: 'typed' | 'sweep' | 'wire' | 'history';
+  instrumentRevisionId: number | null;
+  pathRevisionId: number | null;
+  instrumentNumber: string | null;
+  pathNumber: string | null;
+  at: Date;
+  byUserId: number | null;
+  voidReason: string | null;
+  version: number;
+}
+
+export interface StoredSheet extends RunSheet {
+  readings: StoredReading[];
+}
+
+/** One of our band keys; anything else would be a fault in the plan. */
+export function asBand(text: string | null): BandKey | null {
+  if (text === null) return null;
+  const band = BAND_KEYS.find((key) => key === text);
+  invariant(band !== undefined, `"${text}" is a band`);
+  return band;
+}
+
+/** The points of a test plan revision as the bench computes with them. */
+export async function listTestPoints(reader: Reader, testPlanRevisionId: number): Promise<TestPoint[]> {
+  const rows = await reader
+    .select()
+    .from(testPoints)
+    .where(eq(testPoints.testPlanRevisionId, testPlanRevisionId))
+    .orderBy(asc(testPoints.position));
+  return rows.map(({ lowerLimit: lower, upperLimit: upper, band, ...row }) => ({
+    ...row,
+    band: asBand(band),
+    lower,
+    upper,
+  }));
+}
+
+/** Everything that a run's verdicts rest on, for the station, for closing it and for its certificate. */
+export async function readRunSheet(reader: Reader, runId: number): Promise<StoredSheet> {
+  const [run] = await reader
+    .select({
+      testPlanRevisionId: testRuns.testPlanRevisionId,
+      destinationCountry: testRuns.destinationCountry,
+      supplyV: testRuns.supplyV,
+      openedAt: testRuns.openedAt,
+      options: units.options,
+    })
+    .from(testRuns)
+    .innerJoin(units, eq(units.id, testRuns.unitId))
+    .where(eq(testRuns.id, runId));
+  invariant(run !== undefined, 'the run is there');
+  const [points, stored, { timeZone }] = await Promise.all([
+    listTestPoints(reader, run.testPlanRevisionId),
+    listReadings(reader, runId),
+    getWorks(reader),
+  ]);
+  const resolved = resolvePoints(points, new Set(run.options));
+  invariant(resolved.ok, 'a released test plan resolves');
+  const { destinationCountry } = run;
+  return {
+    points: resolved.points,
+    readings: stored,
+    ruleKey: ruleForDestination(destinationCountry),
+    context: {
+      destinationCountry,
+      region: destinationCountry === null ? null : regionOf(destinationCountry),
+      supplyV: run.supplyV,
+      testedOn: dayOf(run.openedAt, timeZone),
+    },
+  };
+}
+
+async function listReadings(reader: Reader, runId: number): Promise<StoredReading[]> {
+  const rows = await reader
+    .select({
+      reading: readings,
+      instrumentSpec: instrumentRevisions.spec,
+      instrumentNumber: instruments.number,
+      pathSpec: pathRevisions.spec,
+      pathNumber: paths.number,
+    })
+    .from(readings)
+    .leftJoin(instrumentRevisions, eq(instrumentRevisions.id, readings.instrumentRevisionId))
+    .leftJoin(instruments, eq(instruments.id, instrumentRevisions.instrumentId))
+    .leftJoin(pathRevisions, eq(pathRevisions.id, readings.pathRevisionId))
+    .leftJoin(paths, eq(paths.id, pathRevisions.pathId))
+    .where(eq(readings.testRunId, runId))
+    .orderBy(asc(readings.testPointId), asc(readings.readingNo));
+  return rows.map(({ reading, instrumentSpec, instrumentNumber, pathSpec, pathNumber }) => {
+    const { band, voidedAt, ...rest } = reading;
+    return {
+      ...rest,
+      band: asBand(band),
+      voided: voidedAt !== null,
+      instrument: instrumentSpec === null ? null : instrumentSpecSchema.parse(instrumentSpec),
+      path: pathSpec === null ? null : pathSpecSchema.parse(pathSpec),
+      instrumentNumber,
+      pathNumber,
+    };
+  });
+}
+
+/** The instruments and paths of these revisions, for a certificate. */
+export async function listUsedInstruments(reader: Reader, revisionIds: number[]) {
+  if (revisionIds.length === 0) return [];
+  const rows = await reader
+    .select({ number: instruments.number, name: instruments.name, spec: instrumentRevisions.spec })
+    .from(instrumentRevisions)
+    .innerJoin(instruments, eq(instruments.id, instrumentRevisions.instrumentId))
+    .where(inArray(instrumentRevisions.id, revisionIds))
+    .orderBy(asc(instruments.number));
+  return rows.map(({ spec, ...row }) => ({ ...row, spec: instrumentSpecSchema.parse(spec) }));
+}
