@@ -1,8 +1,11 @@
 import type { LetterWriter } from './letter';
 import { writeInvitation, writeSignInLink } from './link-letters';
+import { writeOrderReceived, writeOrderWithoutPlace } from './order-received';
 
 /** Every letter that an outbox row can ask for, by its name there. */
 export const letters: Readonly<Record<string, LetterWriter>> = {
   invitation: writeInvitation,
+  order_received: writeOrderReceived,
+  order_without_place: writeOrderWithoutPlace,
   sign_in_link: writeSignInLink,
 };

@@ -1,0 +1,17 @@
+import { z } from 'zod';
+import { modelReading } from '~/schemas/order-reading';
+import { door } from '~/server/door';
+import { listRigs } from '~/server/queries/catalog/read-rig';
+import { anyone } from '~/server/rules';
+
+export const GET = door({
+  rule: anyone,
+  summary: 'The rigs that are for sale, with options, prices and places left',
+  output: z.object({ models: z.array(modelReading) }),
+  run: async ({ ctx }) => ({
+    models: (await listRigs(ctx.db)).map(({ groups, ...rig }) => ({
+      ...rig,
+      options: groups.map(({ key, label, min, max, options }) => ({ group: key, label, min, max, options })),
+    })),
+  }),
+});
