@@ -6,7 +6,7 @@ import mysql, { type Connection, type RowDataPacket } from 'mysql2/promise';
 import { paths } from '~/lib/paths';
 import { db } from '~/server/db/client';
 import { migrateDatabase } from '~/server/db/migrate';
-import { demoSignIns, seedDemo } from './demo/seed';
+import { demoSignIns, seedDemo } from '~/server/run/demo/seed';
 import { withLock } from './machine-lock.mjs';
 import { isLoopback } from './request-guards';
 import { root } from './root';
