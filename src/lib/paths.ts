@@ -33,11 +33,16 @@ export const paths = {
   plan: () => '/works/batches',
   batch: (number: number) => `/works/batches/${segment(number)}`,
   worksModels: () => '/works/models',
-  worksModel: (slug: string) => `/works/models/${segment(slug)}`,
-  bomImport: (slug: string) => `/works/models/${segment(slug)}/bom-import`,
-  stores: () => '/works/parts',
+  worksModel: (slug: string, query: { show?: string; letter?: string } = {}) =>
+    withQuery(`/works/models/${segment(slug)}`, query),
+  bomImport: (slug: string, fileId?: number) =>
+    withQuery(`/works/models/${segment(slug)}/bom-import`, {
+      file: fileId === undefined ? undefined : String(fileId),
+    }),
+  stores: (query: { q?: string | undefined; page?: string | undefined } = {}) =>
+    withQuery('/works/parts', query),
   part: (number: string) => `/works/parts/${segment(number)}`,
-  receive: () => '/works/lots/receive',
+  receive: (part?: string) => withQuery('/works/lots/receive', { part }),
   lot: (number: string) => `/works/lots/${segment(number)}`,
   floor: () => '/works/floor',
   unit: (serial: string) => `/works/units/${segment(serial)}`,

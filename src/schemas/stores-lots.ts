@@ -62,4 +62,4 @@ export const lotCount = z.object({
 
 export type LotCount = z.infer<typeof lotCount>;
 
-export const entryReversal = z.object({ reason });
+export const entryReversal = z.object({ entryId: z.coerce.number().int().positive(), reason });
