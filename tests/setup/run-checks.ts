@@ -11,9 +11,18 @@ const checks: readonly { name: string; args: string[] }[] = [
   { name: 'unused', args: [binary('knip/bin/knip.js'), '--no-progress'] },
   {
     name: 'types',
-    args: ['--max-old-space-size=4096', binary('astro/astro.js'), 'check', '--minimumFailingSeverity', 'warning'],
+    args: [
+      '--max-old-space-size=4096',
+      binary('astro/astro.js'),
+      'check',
+      '--minimumFailingSeverity',
+      'warning',
+    ],
   },
-  { name: 'lint', args: ['--max-old-space-size=4096', binary('eslint/bin/eslint.js'), '--max-warnings=0', '.'] },
+  {
+    name: 'lint',
+    args: ['--max-old-space-size=4096', binary('eslint/bin/eslint.js'), '--max-warnings=0', '.'],
+  },
 ];
 
 function run(args: string[]): Promise<number | null> {
