@@ -6,7 +6,7 @@ import { analyseSweep } from '~/domain/bench/sweep/analyse-sweep';
 import { readSweep } from '~/domain/bench/sweep/read-sweep';
 
 const repository = fileURLToPath(new URL('../..', import.meta.url));
-const samples = process.env['RIGWRIGHT_SAMPLES'] ?? path.resolve(repository, '../shared/samples');
+const samples = process.env.RIGWRIGHT_SAMPLES ?? path.resolve(repository, '../shared/samples');
 const folder = path.join(samples, 'sweep');
 const present = existsSync(folder);
 const reason = present ? '' : ` (skipped: no sample files; set RIGWRIGHT_SAMPLES to their folder)`;
@@ -19,6 +19,10 @@ function read(bytes: Uint8Array, hints = {}) {
   if (!result.ok) throw new Error(result.reason);
   return result;
 }
+
+/** The sentence of a refusal; empty where it is none. */
+const reasonOf = (result: { ok: true } | { ok: false; reason: string }): string =>
+  result.ok ? '' : result.reason;
 
 function expectTrace001(bytes: Uint8Array): void {
   const sweep = read(bytes);
@@ -83,10 +87,7 @@ describe.skipIf(!present)(`sweep files of other tools${reason}`, () => {
     expect(sweep.notes.join(' ')).toMatch(/not calibrated: no verdict/);
     const dbm = read(bytesOf('rtl_power_small.csv'), { levelUnit: 'dBm' });
     expect(dbm.understood.levelCalibrated).toBe(false);
-    expect(analyseSweep(dbm, { testFreqHz: 895e6, path: null })).toMatchObject({
-      ok: false,
-      reason: expect.stringMatching(/not calibrated/),
-    });
+    expect(reasonOf(analyseSweep(dbm, { testFreqHz: 895e6, path: null }))).toMatch(/not calibrated/);
   });
 
   it('rtl_power_small.csv comes out the same whatever the order of its blocks', () => {
@@ -125,9 +126,8 @@ describe.skipIf(!present)(`sweep files of other tools${reason}`, () => {
     });
     expect(sweep.questions.join(' ')).toMatch(/network analyser/);
     expect(sweep.notes.join(' ')).toMatch(/More than one column is called “Formatted Data”/);
-    expect(analyseSweep(sweep, { testFreqHz: 7e6, path: null })).toMatchObject({
-      ok: false,
-      reason: expect.stringMatching(/unit of the level is not known/),
-    });
+    expect(reasonOf(analyseSweep(sweep, { testFreqHz: 7e6, path: null }))).toMatch(
+      /unit of the level is not known/,
+    );
   });
 });

@@ -42,11 +42,6 @@ export function bandLabel(band: BandKey): string {
   return band.replace('m', ' m');
 }
 
-/** Edges of a band in a Region, Hz, both inside the band. */
-export function bandEdges(band: BandKey, region: Region): Edges {
-  return EDGES[band][region];
-}
-
 /** Band that holds the frequency in the Region; null where none does. @param freqHz Hz */
 export function bandOf(freqHz: number, region: Region): BandKey | null {
   return (

@@ -17,13 +17,13 @@ import type { Combined } from './uncertainty';
 const OWN_DISTORTION_CLEARANCE_DB = 6;
 
 /** A budget in `unit`, with its sum. */
-export interface Budget extends Combined {
+interface Budget extends Combined {
   unit: 'dB' | 'A' | 'Hz';
   components: UncertaintyComponent[];
 }
 
 /** What a budget is built from. */
-export interface BudgetInput {
+interface BudgetInput {
   quantityKey: string;
   /** At the meter, in the unit of the quantity. */
   value: number;
@@ -40,9 +40,12 @@ export interface BudgetInput {
   extra: readonly UncertaintyComponent[];
 }
 
+/** Key under which an instrument's specification covers every ratio. */
+const ANY_HARMONIC = 'harmonic';
+
 function specOf(instrument: InstrumentSpec, quantity: Quantity): QuantitySpec | undefined {
   const own = instrument.quantities[quantity.key];
-  return own ?? (quantity.unit === 'dBc' ? instrument.quantities['harmonic'] : undefined);
+  return own ?? (quantity.unit === 'dBc' ? instrument.quantities[ANY_HARMONIC] : undefined);
 }
 
 /** A relative change in power as dB, at first order: 10/ln 10 dB each. */
@@ -169,16 +172,19 @@ type LinesResult = { ok: true; lines: UncertaintyComponent[] } | { ok: false; re
 
 function ratioLines(quantity: Quantity, input: BudgetInput): LinesResult {
   const { instrument, path } = input;
-  if (instrument.linearityDb === null) {
+  if (instrument.linearityDb === null || instrument.flatnessDb === null) {
+    const missing = instrument.linearityDb === null ? 'linearity' : 'flatness';
     return {
       ok: false,
-      reason: 'The linearity of the instrument is not stated, so a ratio has no uncertainty.',
+      reason: `The ${missing} of the instrument is not stated, so a ratio has no uncertainty.`,
     };
   }
   const distortion = ownDistortion(input);
   if (!distortion.ok) return distortion;
-  const lines = [component('Linearity', instrument.linearityDb, 'rectangular')];
-  if (instrument.flatnessDb !== null) lines.push(component('Flatness', instrument.flatnessDb, 'rectangular'));
+  const lines = [
+    component('Linearity', instrument.linearityDb, 'rectangular'),
+    component('Flatness', instrument.flatnessDb, 'rectangular'),
+  ];
   for (const part of path?.parts ?? []) {
     const line = pathLineInRatio(part, input);
     if (line !== null) lines.push(line);

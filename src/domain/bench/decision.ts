@@ -12,7 +12,7 @@ function atMost(a: number, b: number): boolean {
 }
 
 /** What is decided on: value, expanded uncertainty and limits in one unit. */
-export interface DecisionInput {
+interface DecisionInput {
   value: number;
   /** Expanded uncertainty, 0 or more. */
   U: number;

@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { parseEntry } from './entry';
 import type { EntryOptions } from './entry';
@@ -61,5 +62,26 @@ describe('parseEntry', () => {
     const result = parseEntry(text, key, options);
     expect(result).toMatchObject({ ok: false, ask });
     if (!result.ok) expect(result.reason).toMatch(reason);
+  });
+});
+
+describe('parseEntry, its laws', () => {
+  const keys = fc.constantFrom('rf_power', 'harmonic_2', 'current_rest', 'frequency_error', 'check');
+
+  it('never throws, whatever is typed', () => {
+    fc.assert(fc.property(fc.string(), keys, (text, key) => typeof parseEntry(text, key).ok === 'boolean'));
+  });
+
+  it('reads a comma as it reads a point', () => {
+    fc.assert(
+      fc.property(fc.integer({ min: 1, max: 99_999 }), (hundredths) => {
+        const text = (hundredths / 100).toFixed(2);
+        const options = { columnUnit: 'mA' };
+        return (
+          JSON.stringify(parseEntry(text, 'current_rest', options)) ===
+          JSON.stringify(parseEntry(text.replace('.', ','), 'current_rest', options))
+        );
+      }),
+    );
   });
 });

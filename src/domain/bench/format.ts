@@ -26,7 +26,7 @@ export function formatPower(powerW: number): string {
 }
 
 /** A current with three significant figures, in mA under 1 A. @param currentA A */
-export function formatCurrent(currentA: number): string {
+function formatCurrent(currentA: number): string {
   return Math.abs(currentA) < 0.9995
     ? `${significant(currentA * 1e3, 3)} mA`
     : `${significant(currentA, 3)} A`;
@@ -81,7 +81,7 @@ export function formatAtMeter(value: number, quantityKey: string): string {
 }
 
 /** Decimals that leave an uncertainty two significant figures (JCGM 100, 7.2.6). */
-export function decimalsForU(uncertainty: number): number {
+function decimalsForU(uncertainty: number): number {
   if (!(uncertainty > 0) || !Number.isFinite(uncertainty)) return 1;
   const exponent = Number(uncertainty.toExponential(1).split('e')[1] ?? '0');
   return Math.min(6, Math.max(0, 1 - exponent));

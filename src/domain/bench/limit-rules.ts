@@ -5,10 +5,10 @@ import { dbmToW, wToDbm } from './units';
 export type LimitRuleKey = 'us_97_307' | 'itu_category_a' | 'at_afv_17' | 'strictest';
 
 /** How sure we are of a rule's text. */
-export type TextCertainty = 'read' | 'read in quotation' | 'from memory';
+type TextCertainty = 'read' | 'read in quotation' | 'from memory';
 
 /** A rule as data; `clauses` are tried in order and the first that covers the frequencies applies. */
-export interface LimitRule {
+interface LimitRule {
   key: LimitRuleKey;
   title: string;
   source: string;
@@ -28,7 +28,7 @@ interface Clause {
 }
 
 /** Measured mean power of the fundamental (W), the transmit and the product's frequency (Hz). */
-export interface LimitArgs {
+interface LimitArgs {
   powerW: number;
   txFreqHz: number;
   /** Null where the product's frequency is not known. */
@@ -36,7 +36,7 @@ export interface LimitArgs {
 }
 
 /** The limit that applies: the reading in dBc must not exceed `limitDbc`. */
-export type LimitResult =
+type LimitResult =
   | {
       ok: true;
       limitDbc: number;

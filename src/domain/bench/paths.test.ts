@@ -18,6 +18,10 @@ const part = (over: Partial<PathPart> = {}): PathPart => ({
   ...over,
 });
 
+/** The sentence of a refusal; empty where it is none. */
+const reasonOf = (result: { ok: true } | { ok: false; reason: string }): string =>
+  result.ok ? '' : result.reason;
+
 describe('partLoss', () => {
   it.each([
     [1e6, 40],
@@ -31,10 +35,7 @@ describe('partLoss', () => {
   });
 
   it.each([0.99e6, 100.1e6, NaN])('refuses to guess at %d Hz', (freqHz) => {
-    expect(partLoss(part(), freqHz)).toMatchObject({
-      ok: false,
-      reason: expect.stringContaining('1 MHz to 100 MHz'),
-    });
+    expect(reasonOf(partLoss(part(), freqHz))).toMatch('1 MHz to 100 MHz');
   });
 
   it('stays between the rows around it', () => {
@@ -61,10 +62,7 @@ describe('pathLoss', () => {
         [5e6, 10],
       ],
     });
-    expect(pathLoss({ parts: [part(), short] }, 10e6)).toMatchObject({
-      ok: false,
-      reason: expect.stringContaining('Pad'),
-    });
+    expect(reasonOf(pathLoss({ parts: [part(), short] }, 10e6))).toMatch('Pad');
   });
 });
 
@@ -85,10 +83,7 @@ describe('checkPathPower', () => {
 
   it('names the part that would burn', () => {
     const result = checkPathPower({ parts: [pad, load] }, 5, 7e6);
-    expect(result).toMatchObject({
-      ok: false,
-      reason: expect.stringMatching(/Pad is rated for 0\.500 W and would get 5\.00 W/),
-    });
+    expect(reasonOf(result)).toMatch(/Pad is rated for 0\.500 W and would get 5\.00 W/);
   });
 
   it('looks behind a part that loses little', () => {

@@ -2,7 +2,7 @@ import tQuantile from '@stdlib/stats-base-dists-t-quantile';
 import type { Distribution, UncertaintyComponent } from './types';
 
 /** Coverage probability of every expanded uncertainty here. */
-export const COVERAGE = 0.9545;
+const COVERAGE = 0.9545;
 
 /** From here on the t distribution is taken as normal, k = 2. */
 const NU_LARGE = 100;

@@ -65,8 +65,8 @@ function unusable(sweep: Sweep, stepHz: number): string | null {
     return 'The unit of the level is not known: say whether it is dBm before the sweep is used.';
   }
   if (!levelCalibrated) return 'The level of this sweep is not calibrated: no verdict can rest on it.';
-  const missesPeaks =
-    detector !== null && rbwHz !== null && stepHz > rbwHz && !/peak|pos|max/i.test(detector);
+  const isPeak = detector !== null && /peak|pos|max/i.test(detector) && !/neg|min/i.test(detector);
+  const missesPeaks = detector !== null && rbwHz !== null && stepHz > rbwHz && !isPeak;
   if (missesPeaks) {
     return (
       `Points lie ${formatFrequency(stepHz)} apart, wider than the resolution bandwidth, and the detector was ` +

@@ -7,7 +7,7 @@ export interface Dialect {
 }
 
 /** A number with the unit glued to it, if any. */
-export interface NumberCell {
+interface NumberCell {
   value: number;
   unit: string;
 }

@@ -8,14 +8,12 @@ import type { SweepHints } from './types';
 /** Frequencies in the heading of a matrix, one row a time; null where the heading is no such row. */
 function headingFrequencies(table: Table): { values: number[]; unit: string } | null {
   const { heading, dialect, width } = table;
-  if (heading === null || heading.length !== width || width < 4) return null;
+  if (heading?.length !== width || width < 4) return null;
   if (numberCell(heading[0] ?? '', dialect.decimal) !== null) return null;
   const cells = heading.slice(1).map((cell) => numberCell(cell, dialect.decimal));
-  const values: number[] = [];
-  for (const cell of cells) {
-    if (cell === null || cell.value <= (values[values.length - 1] ?? -Infinity)) return null;
-    values.push(cell.value);
-  }
+  const values = cells.flatMap((cell) => (cell === null ? [] : [cell.value]));
+  const rises = values.every((value, index) => index === 0 || value > (values[index - 1] ?? Infinity));
+  if (values.length !== cells.length || !rises) return null;
   return { values, unit: cells[0]?.unit ?? '' };
 }
 

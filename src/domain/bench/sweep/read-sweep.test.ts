@@ -67,7 +67,7 @@ describe('separators, decimals and preambles', () => {
 describe('encodings', () => {
   const text = 'Fréq (Hz);dBµV\n7000000;86.5\n14000000;36.9\n21000000;27\n';
   const utf16 = (littleEndian: boolean, mark: boolean): Uint8Array => {
-    const units = [...(mark ? '\ufeff' : ''), ...text].map((letter) => letter.charCodeAt(0));
+    const units = Array.from(mark ? `\ufeff${text}` : text, (letter) => letter.charCodeAt(0));
     const bytes = new Uint8Array(units.length * 2);
     const view = new DataView(bytes.buffer);
     for (const [index, unit] of units.entries()) view.setUint16(2 * index, unit, littleEndian);
