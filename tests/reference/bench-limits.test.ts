@@ -195,4 +195,12 @@ describe('band edges', () => {
     expect(bandOfEmission(14_348_000, 14_350_800, 2)).toBeNull();
     expect(bandOfEmission(14_347_000, 14_349_800, 2)).toBe('20m');
   });
+
+  it.each<Region>([1, 2, 3])(
+    'holds the mixing product of 11.059 and 4.032 MHz in 40 m, Region %i (common practice)',
+    (region) => {
+      expect(bandOf(11_059_000 - 4_032_000, region)).toBe('40m');
+      expect(bandOf(11_059_000 + 4_032_000, region)).toBeNull();
+    },
+  );
 });
