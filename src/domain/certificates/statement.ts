@@ -4,7 +4,7 @@ import type { Decision, Verdict } from '~/domain/bench/types';
 type InstrumentGrade = 'accredited' | 'checked' | 'unchecked';
 
 /** Expanded uncertainty of one reading at about 95 % coverage. */
-type StatedUncertainty = {
+export type StatedUncertainty = {
   /** Half width U, in `unit`. A level converted to W keeps its own unequal interval in `low` and `high`. */
   value: number;
   unit: string;

@@ -1,9 +1,11 @@
+import { writeCertificateIssued } from './certificate-letter';
 import type { LetterWriter } from './letter';
 import { writeInvitation, writeSignInLink } from './link-letters';
 import { writeOrderReceived, writeOrderWithoutPlace } from './order-received';
 
 /** Every letter that an outbox row can ask for, by its name there. */
 export const letters: Readonly<Record<string, LetterWriter>> = {
+  certificate_issued: writeCertificateIssued,
   invitation: writeInvitation,
   order_received: writeOrderReceived,
   order_without_place: writeOrderWithoutPlace,
