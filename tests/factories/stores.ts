@@ -1,0 +1,45 @@
+import type { Receipt } from '~/schemas/stores-lots';
+import type { NewPart } from '~/schemas/stores-parts';
+import type { Db } from '~/server/db/client';
+import { userProfiles, userRoles, users } from '~/server/db/schema';
+import { createPart } from '~/server/services/stores/create-part';
+import { receiveLot } from '~/server/services/stores/receive-lot';
+import type { CallContext } from '~/server/write';
+import { at } from './catalog';
+
+export function buildPart(changes: Partial<NewPart> = {}): NewPart {
+  return {
+    number: 'R-0805-4K7',
+    description: 'Resistor, 1 %',
+    value: '4k7',
+    footprint: '0805',
+    unit: 'piece',
+    trace: 'batch',
+    ...changes,
+  };
+}
+
+export function buildReceipt(changes: Partial<Receipt> = {}): Receipt {
+  return { part: 'R-0805-4K7', quantity: 100, state: 'usable', ...changes };
+}
+
+/** Receives a part that is entered first, and gives the lot's number. */
+export async function seedLot(
+  ctx: CallContext,
+  part: Partial<NewPart> = {},
+  receipt: Partial<Receipt> = {},
+): Promise<string> {
+  const { number } = await createPart(buildPart(part), ctx);
+  return (await receiveLot(buildReceipt({ part: number, ...receipt }), ctx)).number;
+}
+
+/** A builder, and the context in which they do things. */
+export async function seedBuilder(
+  db: Db,
+  { name = 'Ruth Osei', email = 'ruth@thistledown.example', now = at } = {},
+): Promise<CallContext> {
+  const [{ insertId: userId }] = await db.insert(users).values({ createdAt: at });
+  await db.insert(userProfiles).values({ userId, email, name });
+  await db.insert(userRoles).values({ userId, role: 'builder' });
+  return { db, now, actor: { kind: 'user', userId } };
+}
