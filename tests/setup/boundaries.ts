@@ -34,7 +34,7 @@ function importsOf(path: string, text: string): Import[] {
         ts.isNamedImports(named) &&
         named.elements.length > 0 &&
         named.elements.every((element) => element.isTypeOnly);
-      add(node.moduleSpecifier, clause?.isTypeOnly === true || allTypes);
+      add(node.moduleSpecifier, clause?.phaseModifier === ts.SyntaxKind.TypeKeyword || allTypes);
     } else if (ts.isExportDeclaration(node)) add(node.moduleSpecifier, node.isTypeOnly);
     else if (ts.isImportTypeNode(node) && ts.isLiteralTypeNode(node.argument))
       add(node.argument.literal, true);

@@ -117,9 +117,9 @@ function plant(copy: string, { file, text }: Planted): () => void {
 }
 
 const copy = copyTree();
-let isAllWell = true;
+const unwell: string[] = [];
 function say(isWell: boolean, outcome: string, name: string): void {
-  if (!isWell) isAllWell = false;
+  if (!isWell) unwell.push(name);
   process.stdout.write(`${isWell ? 'ok ' : 'NO '} ${outcome.padEnd(6)} ${name}\n`);
 }
 try {
@@ -136,4 +136,4 @@ try {
 } finally {
   rmSync(copy, { recursive: true, force: true });
 }
-process.exitCode = isAllWell ? 0 : 1;
+process.exitCode = unwell.length === 0 ? 0 : 1;

@@ -28,6 +28,7 @@ const server = [
   'files',
   'keys',
   'door',
+  'rules',
   'run',
 ];
 const forPages = [
@@ -39,6 +40,7 @@ const forPages = [
   'auth',
   'door',
   'errors',
+  'keys',
   'lib',
   'styles',
 ];
@@ -64,6 +66,7 @@ export const layers: readonly Layer[] = [
     matches: /^pages\/api\//,
     imports: [
       'door',
+      'rules',
       'schemas',
       'services',
       'queries',
@@ -82,7 +85,7 @@ export const layers: readonly Layer[] = [
   {
     name: 'middleware',
     matches: /^(middleware|env\.d)$/,
-    imports: ['auth', 'db', 'door', 'env', 'errors', 'lib', 'log', 'domain', 'queries'],
+    imports: ['auth', 'db', 'door', 'env', 'errors', 'lib', 'log', 'domain', 'queries', 'rules'],
   },
   { name: 'env', matches: /^server\/env$/, imports: [] },
   { name: 'log', matches: /^server\/log$/, imports: [] },
@@ -90,15 +93,16 @@ export const layers: readonly Layer[] = [
   { name: 'write', matches: /^server\/write$/, imports: ['db', 'errors', 'domain', 'lib', 'types:auth'] },
   {
     name: 'door',
-    matches: /^server\/(door|doors|rules|body|form-return|api-routes)$/,
-    imports: ['auth', 'db', 'domain', 'env', 'errors', 'lib', 'log', 'schemas', 'write'],
+    matches: /^server\/(door|doors|body|form-return|api-routes)$/,
+    imports: ['auth', 'db', 'domain', 'env', 'errors', 'lib', 'log', 'rules', 'schemas', 'write'],
   },
+  { name: 'rules', matches: /^server\/rules$/, imports: ['domain'] },
   { name: 'db', matches: /^server\/db\//, imports: ['domain', 'lib', 'env'] },
   { name: 'pdf', matches: /^server\/pdf\//, imports: ['domain', 'lib'] },
   { name: 'mail', matches: /^server\/mail\//, imports: ['domain', 'lib'] },
   { name: 'keys', matches: /^server\/keys\//, imports: ['domain', 'lib'] },
   { name: 'files', matches: /^server\/files\//, imports: ['db', 'domain', 'lib', 'errors', 'write'] },
-  { name: 'queries', matches: /^server\/queries\//, imports: ['errors', 'domain', 'schemas', 'lib', 'db'] },
+  { name: 'queries', matches: /^server\/queries\//, imports: ['errors', 'domain', 'schemas', 'lib', 'db', 'keys'] },
   {
     name: 'services',
     matches: /^server\/services\//,
@@ -119,6 +123,7 @@ export const layers: readonly Layer[] = [
       'files',
       'types:db',
       'errors',
+      'rules',
     ],
   },
   {

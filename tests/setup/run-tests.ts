@@ -7,7 +7,7 @@ import { lifetime } from '../../src/server/run/lifetime';
 import { freePort } from '../../src/server/run/ports';
 import { root } from '../../src/server/run/root';
 import { sayFailure, step } from '../../src/server/run/step.mjs';
-import { sum, tallyPlaywright, type Tally } from './tally';
+import { sum, tallyPlaywright, type PlaywrightReport, type Tally } from './tally';
 
 const life = lifetime(60_000, () => step('Stopping'));
 const testFolder = join(root, '.test');
@@ -84,7 +84,7 @@ async function runPlaywright(args: string[]): Promise<Tally> {
     RIGWRIGHT_E2E_PAYMENTS: application.paymentsPage,
     RIGWRIGHT_E2E_REPORT: file,
   });
-  return readTally(code, file, (text) => tallyPlaywright(JSON.parse(text)));
+  return readTally(code, file, (text) => tallyPlaywright(JSON.parse(text) as PlaywrightReport));
 }
 
 function hasBrowserTests(): boolean {

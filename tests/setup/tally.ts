@@ -15,8 +15,15 @@ interface PlaywrightSuite {
   }[];
 }
 
+/** What Playwright's JSON reporter writes, as far as it is counted. */
+export interface PlaywrightReport {
+  suites: PlaywrightSuite[];
+  /** Errors outside of tests. */
+  errors: unknown[];
+}
+
 /** Counts a Playwright JSON report; errors outside of tests count as failed. */
-export function tallyPlaywright(report: { suites: PlaywrightSuite[]; errors: unknown[] }): Tally {
+export function tallyPlaywright(report: PlaywrightReport): Tally {
   const tally: Tally = { passed: 0, failed: report.errors.length, skipped: [] };
   const walk = (suite: PlaywrightSuite, path: string): void => {
     for (const spec of suite.specs ?? []) {
