@@ -8,7 +8,10 @@ function isDoor(handler: unknown): handler is Door {
 }
 
 function patternOf(file: string): string {
-  return file.replace(/^\/src\/pages/, '').replace(/\.ts$/, '');
+  return file
+    .replace(/^\/src\/pages/, '')
+    .replace(/\.ts$/, '')
+    .replace(/\/index$/, '');
 }
 
 const loaders = new Map(Object.entries(files).map(([file, load]) => [patternOf(file), load]));

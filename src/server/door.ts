@@ -1,9 +1,10 @@
-import { createHash } from 'node:crypto';
+import { createHash, createHmac } from 'node:crypto';
 import type { APIContext, APIRoute } from 'astro';
 import { z } from 'zod';
 import { sessionCookieName } from '~/server/auth/sessions';
 import type { SignedIn } from '~/server/auth/sessions';
 import { db } from '~/server/db/client';
+import { env } from '~/server/env';
 import { DomainError, problemOf } from '~/server/errors';
 import type { FieldErrors } from '~/server/errors';
 import { log } from '~/server/log';
@@ -34,7 +35,12 @@ export interface DoorCall<Params, Query, Input> {
   rawBody: string;
 }
 
-interface DoorSpec<P extends z.ZodTypeAny, Q extends z.ZodTypeAny, I extends z.ZodTypeAny, O extends z.ZodTypeAny> {
+interface DoorSpec<
+  P extends z.ZodTypeAny,
+  Q extends z.ZodTypeAny,
+  I extends z.ZodTypeAny,
+  O extends z.ZodTypeAny,
+> {
   rule: Rule;
   /** One line for the API's description. */
   summary: string;
@@ -51,9 +57,7 @@ interface DoorSpec<P extends z.ZodTypeAny, Q extends z.ZodTypeAny, I extends z.Z
   next?: (output: z.output<O>, call: { params: z.output<P>; input: z.output<I> }) => string;
   /** The sentence that the page says afterwards. */
   said?: (output: z.output<O>) => string;
-  run: (
-    call: DoorCall<z.output<P>, z.output<Q>, z.output<I>>,
-  ) => Promise<z.input<O> | FileAnswer | Response>;
+  run: (call: DoorCall<z.output<P>, z.output<Q>, z.output<I>>) => Promise<z.input<O> | FileAnswer | Response>;
 }
 
 /** What the API's description and the tests read off a door. */
@@ -64,11 +68,16 @@ export interface DoorDescription {
   query: z.ZodTypeAny | undefined;
   input: z.ZodTypeAny | undefined;
   output: z.ZodTypeAny | 'file' | 'stream';
+  /** Of the body. */
+  maxBytes: number;
+  /** The body is taken as text, whatever it is. */
+  raw: boolean;
 }
 
 export type Door = APIRoute & { description: DoorDescription };
 
 const safeMethods = new Set(['GET', 'HEAD']);
+const defaultMaxBytes = 64 * 1024;
 
 /**
  * Makes one API route: who may pass, Zod in, one service or query or document, Zod out. JSON for islands
@@ -109,8 +118,10 @@ export function door<
       return refusal(api, error, form.data);
     }
   };
-  const { rule, summary, params, query, input, output } = spec;
-  return Object.assign(route, { description: { rule, summary, params, query, input, output } });
+  const { rule, summary, params, query, input, output, maxBytes = defaultMaxBytes, raw = false } = spec;
+  return Object.assign(route, {
+    description: { rule, summary, params, query, input, output, maxBytes, raw },
+  });
 }
 
 function checkOrigin({ request, cookies }: APIContext): void {
@@ -138,14 +149,14 @@ async function readRequest(
   form: { data: FormData | undefined },
 ): Promise<{ fields: unknown; text: string }> {
   if (safeMethods.has(api.request.method)) return { fields: undefined, text: '' };
-  const bytes = await readBody(api.request, spec.maxBytes ?? 64 * 1024);
+  const bytes = await readBody(api.request, spec.maxBytes ?? defaultMaxBytes);
   const type = api.request.headers.get('content-type') ?? '';
   if (spec.raw === true) return { fields: undefined, text: new TextDecoder().decode(bytes) };
   if (/^(application\/x-www-form-urlencoded|multipart\/form-data)/i.test(type)) {
     form.data = await new Response(bytes, { headers: { 'content-type': type } }).formData().catch(() => {
       throw new DomainError('invalid', 'The form could not be read.');
     });
-    return { fields: formFields(form.data), text: createHash('sha256').update(bytes).digest('hex') };
+    return { fields: formFields(form.data), text: await formDigest(form.data) };
   }
   const text = new TextDecoder().decode(bytes);
   if (spec.input === undefined || text === '') return { fields: undefined, text };
@@ -157,6 +168,19 @@ async function readRequest(
   } catch {
     throw new DomainError('invalid', 'The body is not JSON.');
   }
+}
+
+/** Of what a form holds: a multipart body differs at every sending, by its boundary. */
+async function formDigest(form: FormData): Promise<string> {
+  const digest = createHash('sha256');
+  for (const [name, value] of form) {
+    const isText = typeof value === 'string';
+    const content = isText ? value : Buffer.from(await value.arrayBuffer());
+    const kind = isText ? 'text' : `file ${value.type} ${value.name}`;
+    const field = [name, kind, createHash('sha256').update(content).digest('hex')];
+    digest.update(JSON.stringify(field));
+  }
+  return digest.digest('hex');
 }
 
 function queryFields(url: URL): Record<string, unknown> {
@@ -194,7 +218,8 @@ function callContext(api: APIContext, form: FormData | undefined, body: string):
     throw new DomainError('invalid', 'An Idempotency-Key has 1 to 200 visible ASCII characters.');
   }
   const route = `${api.request.method} ${api.url.pathname}`.slice(0, 200);
-  const requestHash = createHash('sha256').update(body).digest('hex');
+  // Keyed, because a body may hold a password, and this is kept.
+  const requestHash = createHmac('sha256', env().secret).update(body).digest('hex');
   const actor = person === null ? 'visitor' : `user:${person.id}`;
   return { ...ctx, idempotency: { actor, route, key, requestHash, steps: 0 } };
 }
@@ -215,7 +240,9 @@ function fileResponse(answer: unknown): Response {
 }
 
 function isFileAnswer(answer: unknown): answer is FileAnswer {
-  return typeof answer === 'object' && answer !== null && 'bytes' in answer && answer.bytes instanceof Uint8Array;
+  return (
+    typeof answer === 'object' && answer !== null && 'bytes' in answer && answer.bytes instanceof Uint8Array
+  );
 }
 
 function wantsPage(request: Request): boolean {
