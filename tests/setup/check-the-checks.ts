@@ -21,8 +21,8 @@ const verdictTests = [
   'node_modules/vitest/vitest.mjs',
   'run',
   '--project=unit',
-  'src/domain/bench',
-  'tests/reference',
+  'src/domain/bench/decision',
+  'tests/reference/bench-decision',
 ];
 const doorTests = ['node_modules/vitest/vitest.mjs', 'run', '--project=unit', 'tests/doors'];
 const decision = 'src/domain/bench/decision.ts';

@@ -102,7 +102,11 @@ export const layers: readonly Layer[] = [
   { name: 'mail', matches: /^server\/mail\//, imports: ['domain', 'lib'] },
   { name: 'keys', matches: /^server\/keys\//, imports: ['domain', 'lib'] },
   { name: 'files', matches: /^server\/files\//, imports: ['db', 'domain', 'lib', 'errors', 'write'] },
-  { name: 'queries', matches: /^server\/queries\//, imports: ['errors', 'domain', 'schemas', 'lib', 'db', 'keys'] },
+  {
+    name: 'queries',
+    matches: /^server\/queries\//,
+    imports: ['errors', 'domain', 'schemas', 'lib', 'db', 'keys'],
+  },
   {
     name: 'services',
     matches: /^server\/services\//,
