@@ -1,6 +1,7 @@
 import { setTimeout as pause } from 'node:timers/promises';
 import { db } from '~/server/db/client';
 import type { Db } from '~/server/db/client';
+import { stopCertificateThread } from '~/server/documents/certificate-pdf';
 import { log } from '~/server/log';
 import { handlers } from './handlers';
 import { NeverPossible } from './job';
@@ -30,6 +31,7 @@ export async function runWorker(signal: AbortSignal): Promise<void> {
     }
     if (done === 0) await pause(idleMs, undefined, { signal }).catch(() => undefined);
   }
+  await stopCertificateThread();
   await database.close();
 }
 

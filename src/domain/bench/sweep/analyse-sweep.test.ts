@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import type { PathSpec } from '../types';
+import type { PathSpec } from '~/domain/bench/types';
 import { analyseSweep } from './analyse-sweep';
 import type { SweepTest } from './analyse-sweep';
 import { readSweep } from './read-sweep';

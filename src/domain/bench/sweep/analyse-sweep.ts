@@ -1,7 +1,7 @@
-import { formatDbm, formatFrequency } from '../format';
-import { pathLoss } from '../paths';
-import { MAX_HARMONIC } from '../quantities';
-import type { PathSpec } from '../types';
+import { formatDbm, formatFrequency } from '~/domain/bench/format';
+import { pathLoss } from '~/domain/bench/paths';
+import { MAX_HARMONIC } from '~/domain/bench/quantities';
+import type { PathSpec } from '~/domain/bench/types';
 import { findPeaks, medianOf, medianStep, strongestIn } from './peaks';
 import type { Peak } from './peaks';
 import type { Sweep } from './types';

@@ -1,4 +1,4 @@
-import { dbUvToDbm, vRmsToW, wToDbm } from '../units';
+import { dbUvToDbm, vRmsToW, wToDbm } from '~/domain/bench/units';
 import type { FreqUnit, LevelUnit } from './types';
 
 /** Load across which voltage levels of analysers stand, Ω. */

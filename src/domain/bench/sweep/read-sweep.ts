@@ -1,4 +1,4 @@
-import { formatFrequency } from '../format';
+import { formatFrequency } from '~/domain/bench/format';
 import { findDialect } from './cells';
 import type { Dialect } from './cells';
 import { readColumnFile } from './columns';

@@ -1,4 +1,4 @@
-import { formatFrequency } from '../format';
+import { formatFrequency } from '~/domain/bench/format';
 import { numberCell, splitLine } from './cells';
 import type { Dialect } from './cells';
 import type { DraftResult } from './drafts';

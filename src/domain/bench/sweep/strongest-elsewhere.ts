@@ -1,0 +1,31 @@
+import { MAX_HARMONIC } from '~/domain/bench/quantities';
+import { medianStep, strongestIn } from './peaks';
+import type { Peak } from './peaks';
+import type { Sweep } from './types';
+
+/** Left out around the carrier and at 0 Hz, Hz. */
+const SKIRT_HZ = 10e3;
+/** Left out around each harmonic, as a part of its frequency. */
+const HARMONIC_WINDOW = 0.01;
+
+/**
+ * The strongest point of a sweep away from 0 Hz, the carrier and its harmonics: where no line stands over the
+ * noise, no product is stronger than this. Null where the sweep has no such point.
+ */
+export function strongestElsewhere({ points, understood }: Sweep, carrierHz: number): Peak | null {
+  const { freqHz, level } = points;
+  const spacing = Math.max(3 * (understood.rbwHz ?? 0), 1.5 * medianStep(freqHz));
+  const skirtHz = Math.max(SKIRT_HZ, spacing);
+  const [, highestHz] = understood.spanHz;
+  let fromHz = Math.min(skirtHz, carrierHz / 2);
+  let best: Peak | null = null;
+  for (let order = 1; order <= MAX_HARMONIC + 1; order += 1) {
+    const centreHz = order * carrierHz;
+    const half = order === 1 ? skirtHz : Math.max(spacing, HARMONIC_WINDOW * centreHz);
+    const toHz = order > MAX_HARMONIC ? highestHz : Math.min(highestHz, centreHz - half);
+    const peak = toHz > fromHz ? strongestIn(freqHz, level, fromHz, toHz) : null;
+    if (peak !== null && (best === null || peak.level > best.level)) best = peak;
+    fromHz = centreHz + half;
+  }
+  return best;
+}
