@@ -53,3 +53,15 @@ export function runResult(points: readonly RunPoint[]): RunResult {
   }
   return { result: 'passed', canClose: true, why: [] };
 }
+
+const WORDS: Record<string, string> = {
+  passed: 'Passed',
+  passed_by_concession: 'Passed by concession',
+  undecided: 'Undecided',
+  failed: 'Failed',
+};
+
+/** A run's result as a person reads it; `Open` while it has none. */
+export function resultInWords(result: string | null): string {
+  return result === null ? 'Open' : (WORDS[result] ?? result);
+}
