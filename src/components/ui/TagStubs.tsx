@@ -19,7 +19,8 @@ interface Stub {
   state: 'torn' | 'present' | 'waiting';
   /** Under the label: "torn off 2 March", "waits for the certificate". */
   note?: string | undefined;
-  action?: { label: string; href: string } | undefined;
+  /** A link, or, with `postKey`, a form that is posted once. */
+  action?: { label: string; href: string; postKey?: string | undefined } | undefined;
   /** What happened at this stub, oldest first. */
   happenings: readonly Happening[];
 }
@@ -29,16 +30,19 @@ interface Props {
   line?: string | undefined;
   quiet?: readonly string[] | undefined;
   stubs: readonly Stub[];
+  /** Level of the serial number's heading; 1 unless the page has another. */
+  level?: 1 | 2 | undefined;
   /** Beneath the tag itself: the parts in it. */
   children?: ReactNode;
 }
 
 /** A unit's tag with its row of stubs, and beneath each stub what happened there. */
-export function TagStubs({ serial, line, quiet, stubs, children }: Props) {
+export function TagStubs({ serial, line, quiet, stubs, level = 1, children }: Props) {
+  const StubTitle = level === 1 ? 'h2' : 'h3';
   return (
     <div className="stub-row">
       <div className="stub-first">
-        <Tag size="l" level={1} serial={serial} line={line} quiet={quiet} />
+        <Tag size="l" level={level} serial={serial} line={line} quiet={quiet} />
         {children !== undefined && <div className="px-4 pt-3 pb-4 xl:pl-14">{children}</div>}
       </div>
       <ol className="stub-list" aria-label="Work on this unit">
@@ -49,7 +53,7 @@ export function TagStubs({ serial, line, quiet, stubs, children }: Props) {
             aria-current={stub.state === 'present' ? 'step' : undefined}
           >
             <div className="stub-card">
-              <h2 className="leading-tight">{stub.label}</h2>
+              <StubTitle className="leading-tight">{stub.label}</StubTitle>
               {stub.note !== undefined && (
                 <p className={stub.state === 'present' ? 'mt-1 text-[0.9375rem] leading-snug' : 'quiet'}>
                   {stub.note}
@@ -57,7 +61,14 @@ export function TagStubs({ serial, line, quiet, stubs, children }: Props) {
               )}
               {stub.action !== undefined && (
                 <div className="mt-2.5">
-                  <Button href={stub.action.href}>{stub.action.label}</Button>
+                  {stub.action.postKey === undefined ? (
+                    <Button href={stub.action.href}>{stub.action.label}</Button>
+                  ) : (
+                    <form action={stub.action.href} method="post">
+                      <input type="hidden" name="_key" value={stub.action.postKey} />
+                      <Button>{stub.action.label}</Button>
+                    </form>
+                  )}
                 </div>
               )}
             </div>

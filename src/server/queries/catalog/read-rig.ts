@@ -104,3 +104,19 @@ function nextBatch(open: readonly (typeof batches.$inferSelect)[]): ShopBatch | 
   }));
   return seen.find(({ placesLeft }) => placesLeft > 0) ?? seen[0] ?? null;
 }
+
+/** The rig of a batch that takes orders, with this batch; null where there is none of this number. */
+export async function readRigOfBatch(
+  reader: Reader,
+  number: number,
+): Promise<(Rig & { batch: ShopBatch }) | null> {
+  const [row] = await reader
+    .select({ batch: batches, slug: models.slug })
+    .from(batches)
+    .innerJoin(models, eq(models.id, batches.modelId))
+    .where(eq(batches.number, number));
+  if (row === undefined || !batchTakesOrders(row.batch.state)) return null;
+  const rig = await readRig(reader, row.slug);
+  const batch = nextBatch([row.batch]);
+  return rig === null || batch === null ? null : { ...rig, batch };
+}

@@ -1,5 +1,5 @@
-import { and, asc, desc, eq } from 'drizzle-orm';
-import { balanceDueMinor } from '~/domain/orders/status';
+import { and, asc, desc, eq, gt } from 'drizzle-orm';
+import { balanceDueMinor, orderCan } from '~/domain/orders/status';
 import type { OrderState } from '~/domain/orders/status';
 import type { Reader } from '~/server/db/client';
 import {
@@ -61,19 +61,18 @@ export interface OrderView {
   refunds: { amountMinor: number; reason: string; state: 'wanted' | 'done' | 'refused'; createdAt: Date }[];
   /** The provider's page that is open now. */
   paymentUrl: string | null;
+  /** What is paid there. */
+  openCheckoutMinor: number | null;
+  /** Whether a payment page may be asked for now. */
+  isPayable: boolean;
   units: OrderUnit[];
 }
 
-type Whose = { id: number } | { number: number } | { linkHash: string };
+type Whose = { id: number } | { number: number };
 
-/** An order by its id, its number, or the hash of the token in its buyer's link; null where there is none. */
+/** An order by its id or its number; null where there is none. */
 export async function readOrder(reader: Reader, whose: Whose, now: Date): Promise<OrderView | null> {
-  const one =
-    'id' in whose
-      ? eq(orders.id, whose.id)
-      : 'number' in whose
-        ? eq(orders.number, whose.number)
-        : eq(orders.linkHash, whose.linkHash);
+  const one = 'id' in whose ? eq(orders.id, whose.id) : eq(orders.number, whose.number);
   const [found] = await reader
     .select({ order: orders, contact: contacts })
     .from(orders)
@@ -118,14 +117,15 @@ export async function readOrder(reader: Reader, whose: Whose, now: Date): Promis
     .where(eq(payments.orderId, order.id))
     .orderBy(asc(refunds.id));
   const [checkout] = await reader
-    .select({ url: checkouts.url, expiresAt: checkouts.expiresAt })
+    .select({ url: checkouts.url, amountMinor: checkouts.amountMinor })
     .from(checkouts)
-    .where(and(eq(checkouts.orderId, order.id), eq(checkouts.state, 'open')))
+    .where(and(eq(checkouts.orderId, order.id), eq(checkouts.state, 'open'), gt(checkouts.expiresAt, now)))
     .orderBy(desc(checkouts.id))
     .limit(1);
   const held = lines.flatMap(({ holdState, heldUntil }) =>
     holdState === 'held' && heldUntil ? [heldUntil] : [],
   );
+  const balanceMinor = balanceDueMinor({ ...order, ...sums });
   return {
     id: order.id,
     number: order.number,
@@ -135,7 +135,7 @@ export async function readOrder(reader: Reader, whose: Whose, now: Date): Promis
     totalMinor: order.totalMinor,
     dueNowMinor: order.dueNowMinor,
     ...sums,
-    balanceMinor: balanceDueMinor({ ...order, ...sums }),
+    balanceMinor,
     promisedOn: order.promisedOn,
     estimatedOn: lines.find(({ estimatedOn }) => estimatedOn !== null)?.estimatedOn ?? null,
     placedAt: order.placedAt,
@@ -153,7 +153,11 @@ export async function readOrder(reader: Reader, whose: Whose, now: Date): Promis
     heldUntil: held[0] ?? null,
     payments: paid,
     refunds: sentBack,
-    paymentUrl: checkout !== undefined && checkout.expiresAt > now ? checkout.url : null,
+    paymentUrl: checkout?.url ?? null,
+    openCheckoutMinor: checkout?.amountMinor ?? null,
+    isPayable:
+      (orderCan.pay(order.state).ok && held.length > 0) ||
+      (orderCan.payBalance(order.state).ok && balanceMinor > 0),
     units: await listOrderUnits(reader, order.id),
   };
 }
