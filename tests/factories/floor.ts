@@ -31,13 +31,17 @@ export async function seedFloor(ctx: CallContext): Promise<SeededFloor> {
   const lots = {
     transistors: await seedLot(
       ctx,
-      { number: 'Q-RD16', trace: 'each', value: 'RD16' },
+      { number: 'Q-RD16', trace: 'each', footprint: '', value: 'RD16' },
       { quantity: 5, bin: 'B-2' },
     ),
-    alternates: await seedLot(ctx, { number: 'Q-RD15', trace: 'each', value: 'RD15' }, { quantity: 5 }),
+    alternates: await seedLot(
+      ctx,
+      { number: 'Q-RD15', trace: 'each', footprint: '', value: 'RD15' },
+      { quantity: 5 },
+    ),
     crystals: await seedLot(
       ctx,
-      { number: 'X-4915', trace: 'each', value: '4.9152MHz' },
+      { number: 'X-4915', trace: 'each', footprint: '', value: '4.9152MHz' },
       { quantity: 40, bin: 'A-1' },
     ),
     resistors: await seedLot(ctx, { number: 'R-0805-4K7' }, { quantity: 200 }),

@@ -7,6 +7,29 @@ const words: Readonly<Record<string, string>> = {
   'works.found': 'founded the works',
   'works.change': 'changed the works’ data',
   'key.add': 'made a new signing key',
+  'part.create': 'entered a part',
+  'lot.receive': 'received a lot',
+  'lot.bar': 'barred the lot',
+  'lot.set_state': 'changed the lot’s state',
+  'lot.count': 'counted the lot',
+  'lot.reverse_entry': 'reversed a store entry',
+  'kit.pick': 'picked a part',
+  'kit.undo_pick': 'put a part back',
+  'kit.finish': 'finished the kit',
+  'batch.issue': 'issued parts to the batch',
+  'step.tick': 'ticked a build step',
+  'hold.place': 'placed a hold',
+  'hold.end': 'ended a hold',
+  'rework.open': 'put it into rework',
+  'rework.close': 'closed the rework',
+  'unit.spawn': 'made the unit',
+  'bom.upload': 'sent in a bill of materials',
+  'bom.accept_upload': 'accepted a bill of materials',
+  'bom.draft': 'drafted a BOM',
+  'bom.change_line': 'changed a line of a draft BOM',
+  'bom.release': 'released a BOM',
+  'build_sheet.release': 'released a build sheet',
+  'test_plan.release': 'released a test plan',
 };
 
 /** What an entry says was done: `run.close` becomes "closed the run". */
@@ -17,7 +40,9 @@ export function changeInWords(action: string): string {
 /** An entry's details on one line: `state: usable → barred, reason: cracked`. */
 export function detailsInWords(details: Record<string, unknown>): string {
   return Object.entries(details)
-    .flatMap(([name, value]) => (value === null || value === undefined ? [] : [`${spaced(name)}: ${said(value)}`]))
+    .flatMap(([name, value]) =>
+      value === null || value === undefined ? [] : [`${spaced(name)}: ${said(value)}`],
+    )
     .join(', ');
 }
 
@@ -35,5 +60,8 @@ function said(value: unknown): string {
 }
 
 function spaced(name: string): string {
-  return name.replace(/([a-z])([A-Z])/g, (_, before: string, after: string) => `${before} ${after.toLowerCase()}`);
+  return name.replace(
+    /([a-z])([A-Z])/g,
+    (_, before: string, after: string) => `${before} ${after.toLowerCase()}`,
+  );
 }

@@ -1,10 +1,10 @@
-import { eq } from 'drizzle-orm';
+import { and, eq, isNotNull } from 'drizzle-orm';
 import type { UnitStage } from '~/domain/production/stages';
-import { reworks } from '~/server/db/schema';
+import { picks, reworks } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
 import { readKit } from '~/server/queries/production/read-kit';
 import { actingUserId, write } from '~/server/write';
-import type { Ctx } from '~/server/write';
+import type { Ctx, WriteContext } from '~/server/write';
 import { lockUnit } from './lock-unit';
 
 /**
@@ -20,8 +20,9 @@ export async function closeRework(
   return write(ctx, async (w) => {
     const { row: unit, openReworkId } = await lockUnit(w.tx, input.serial);
     if (openReworkId === null) throw new DomainError('conflict', `${unit.serial} is not in rework.`);
+    const putBack = await linesPutBack(w, unit.id);
     const lacking = (await readKit(w.tx, unit)).filter(
-      (line) => line.part.trace === 'each' && line.missing > 0,
+      (line) => putBack.has(line.lineId) && line.missing > 0,
     );
     if (lacking.length > 0) {
       const parts = lacking.map((line) => `${line.part.partNumber} (${line.missing})`).join(', ');
@@ -39,4 +40,13 @@ export async function closeRework(
     });
     return { reworkId: openReworkId, serial: unit.serial, stage: unit.stage };
   });
+}
+
+/** Lines of which a part was once picked and put back. */
+async function linesPutBack(w: WriteContext, unitId: number): Promise<Set<number | null>> {
+  const rows = await w.tx
+    .select({ lineId: picks.bomLineId })
+    .from(picks)
+    .where(and(eq(picks.unitId, unitId), isNotNull(picks.undoneByEntryId)));
+  return new Set(rows.map(({ lineId }) => lineId));
 }

@@ -1,0 +1,9 @@
+/** What a refused form held, to be shown again: the text of a field, or the fallback where nothing came back. */
+export function typedIn(
+  form: { values: Record<string, string | string[]> } | null,
+): (name: string, fallback?: string) => string | undefined {
+  return (name, fallback) => {
+    const value = form?.values[name];
+    return typeof value === 'string' ? value : fallback;
+  };
+}
