@@ -82,3 +82,21 @@ export const batchChange = z
   .transform(inMinor);
 
 export const batchNumberParam = z.object({ number: z.coerce.number().int().positive() });
+
+export const batchListing = z.array(
+  z.object({
+    number: z.number().int(),
+    modelName: z.string(),
+    modelSlug: z.string(),
+    state: z.enum(batchStates),
+    places: z.number().int(),
+    taken: z.number().int(),
+    held: z.number().int(),
+    free: z.number().int(),
+    estimatedOn: z.string().nullable(),
+    /** Null for people who do not see prices. */
+    price: z.object({ minor: z.number().int(), currency: z.string() }).nullable(),
+    stages: z.array(z.object({ stage: z.string(), count: z.number().int() })),
+    holds: z.number().int(),
+  }),
+);

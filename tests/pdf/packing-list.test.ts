@@ -17,6 +17,7 @@ const model: PackingList = {
     { serial: 'H3-0148', model: 'Holm 3', options: '', certificateNumber: 'TC-2027-00413A' },
   ],
   spares: [{ name: 'Output transistor', partNumber: 'Q-0012', quantity: 2 }],
+  customs: null,
   carrier: 'Parcel post',
   trackingNumber: 'PP 123 456',
   parcels: 2,
@@ -45,6 +46,28 @@ describe('the packing list', () => {
       expect(text).toContain(words);
     }
     expect(syntaxCheck(pdf)).toContain('No syntax or stream encoding errors found');
+  });
+
+  it('says what customs asks for, with the sums, only where there is a border', async () => {
+    const customs = {
+      lines: [
+        {
+          description: 'Amateur radio transceiver',
+          quantity: 2,
+          hsCode: '8525.60',
+          origin: 'Ireland',
+          netWeight: '1.24 kg',
+          value: '€ 874.00',
+        },
+      ],
+      netWeight: '1.24 kg',
+      value: '€ 874.00',
+    };
+    const text = textOf(await renderPackingList({ ...model, customs })).replace(/\s+/gu, ' ');
+    expect(text).toContain('For customs');
+    expect(text).toContain('Amateur radio transceiver 2 8525.60 Ireland 1.24 kg € 874.00');
+    expect(text).toContain('In all 1.24 kg € 874.00');
+    expect(textOf(await renderPackingList(model))).not.toContain('For customs');
   });
 
   it('comes out the same twice', async () => {

@@ -43,3 +43,16 @@ export function customsLines(
 export function formatWeight(grams: number): string {
   return `${(Math.ceil(grams / 10) / 100).toFixed(2)}\u00a0kg`;
 }
+
+export interface CustomsTotal {
+  netWeightG: number;
+  valueMinor: number;
+}
+
+/** Net weight and value of a whole declaration. */
+export function customsTotal(lines: readonly CustomsLine[]): CustomsTotal {
+  return {
+    netWeightG: lines.reduce((sum, { netWeightG }) => sum + netWeightG, 0),
+    valueMinor: lines.reduce((sum, { valueMinor }) => sum + valueMinor, 0),
+  };
+}

@@ -18,6 +18,19 @@ export type PackingList = {
   units: { serial: string; model: string; options: string; certificateNumber: string }[];
   /** Loose parts that go with the units; quantities in pieces. */
   spares: { name: string; partNumber: string; quantity: number }[];
+  /** What customs asks for, as printed; null where the parcel stays in the country. */
+  customs: {
+    lines: {
+      description: string;
+      quantity: number;
+      hsCode: string;
+      origin: string;
+      netWeight: string;
+      value: string;
+    }[];
+    netWeight: string;
+    value: string;
+  } | null;
   carrier: string;
   /** Empty while there is none. */
   trackingNumber: string;
@@ -81,6 +94,7 @@ export async function renderPackingList(model: PackingList): Promise<Uint8Array>
       })),
     });
   }
+  if (model.customs !== null) drawCustoms(flow, model.customs);
   flow.y += 14;
   drawParagraph(
     flow,
@@ -100,6 +114,37 @@ export async function renderPackingList(model: PackingList): Promise<Uint8Array>
     keywords: model.units.map(({ serial }) => serial),
     madeAt: new Date(`${model.packedOn}T00:00:00Z`),
     attachment: null,
+  });
+}
+
+function drawCustoms(flow: Flow, customs: NonNullable<PackingList['customs']>): void {
+  drawHeading(flow, 'For customs');
+  drawTable(flow, {
+    columns: [
+      { heading: 'Contents', align: 'start', prose: true },
+      { heading: 'Pieces', align: 'end', prose: false },
+      { heading: 'HS code', align: 'start', prose: false },
+      { heading: 'Origin', align: 'start', prose: true },
+      { heading: 'Net weight', align: 'end', prose: false },
+      { heading: 'Value', align: 'end', prose: false },
+    ],
+    rows: [
+      ...customs.lines.map(({ description, quantity, hsCode, origin, netWeight, value }) => ({
+        quiet: false,
+        cells: [
+          { text: description },
+          { text: String(quantity) },
+          { text: hsCode },
+          { text: origin },
+          { text: netWeight },
+          { text: value },
+        ],
+      })),
+      {
+        quiet: true,
+        cells: [{ text: 'In all' }, null, null, null, { text: customs.netWeight }, { text: customs.value }],
+      },
+    ],
   });
 }
 
