@@ -165,7 +165,10 @@ export async function startApplication(options: Options): Promise<Application> {
   ] as const) {
     const onRestart = (code: number | null): void =>
       step(`The ${name} process ended by itself (${code ?? 'signal'}); starting it again`);
-    const supervised = await startProcess({ name, env: processEnv, logFolder, onRestart }, port);
+    const supervised = await startProcess(
+      { name, env: processEnv, logFolder, onRestart, signal: options.signal },
+      port,
+    );
     options.onStop(() => supervised.stop(graceMs));
   }
   return {

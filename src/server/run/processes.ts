@@ -32,6 +32,8 @@ interface Options {
   /** Where its log lines go: a file, or undefined for this process's own output. */
   logFolder: string | undefined;
   onRestart: (exitCode: number | null) => void;
+  /** Once aborted, a process that ends stays ended: a service manager may ask all of them at once. */
+  signal?: AbortSignal;
 }
 
 const largestLogBytes = 20 * 1024 * 1024;
@@ -76,7 +78,7 @@ export function supervise(options: Options): Supervised {
       gone = new Promise((done) => {
         started.once('exit', (code) => {
           done();
-          if (isStopping) return;
+          if (isStopping || options.signal?.aborted === true) return;
           if (!wasReady) {
             reject(new EndedEarly(options.name, code));
             return;
