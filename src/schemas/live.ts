@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { formList } from './form-list';
 
 /** Things whose changes a page can follow. */
 const liveTypes = [
@@ -32,7 +33,7 @@ const subject = z
 
 export const liveSchema = z.object({
   subject: z.preprocess(
-    (value) => (Array.isArray(value) ? value : [value]),
+    formList,
     z.array(subject).min(1, 'Name what to follow.').max(20, 'At most 20 things can be followed at once.'),
   ),
 });

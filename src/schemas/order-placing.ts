@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { formList } from './form-list';
 import { isCallSignShape } from '~/domain/orders/checkout';
 import { isCountryCode } from '~/lib/countries';
 
@@ -51,7 +52,7 @@ const addressLines = z
 export const orderPlacing = z.object({
   batch: z.coerce.number({ message: 'Choose a batch.' }).int('Choose a batch.').positive('Choose a batch.'),
   option: z.preprocess(
-    (value) => (value === undefined ? [] : Array.isArray(value) ? value : [value]),
+    formList,
     z.array(z.string().max(60)).max(100, 'Those are more options than a model has.'),
   ),
   quantity: z.coerce

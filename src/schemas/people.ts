@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { staffRoles } from '~/domain/people/roles';
+import { formList } from './form-list';
 
 const email = z
   .string({ required_error: 'Give an e-mail address.' })
@@ -21,7 +22,7 @@ const newPassword = z
 
 /** A list that a form sends as one value, several, or none. */
 const roles = z.preprocess(
-  (value) => (value === undefined ? [] : Array.isArray(value) ? value : [value]),
+  formList,
   z.array(z.enum(staffRoles)).transform((list) => [...new Set(list)]),
 );
 

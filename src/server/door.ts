@@ -1,6 +1,6 @@
 import { createHash, createHmac } from 'node:crypto';
 import type { APIContext, APIRoute } from 'astro';
-import { z } from 'zod';
+import type { z } from 'zod';
 import { sessionCookieName } from '~/server/auth/sessions';
 import type { SignedIn } from '~/server/auth/sessions';
 import { db } from '~/server/db/client';
@@ -110,7 +110,8 @@ export function door<
       });
       if (result instanceof Response) return result;
       if (spec.output === 'file' || spec.output === 'stream') return fileResponse(result);
-      const output: z.output<O> = spec.output.parse(result);
+      // A schema's output is its own inferred type; Zod's generic signature loses it.
+      const output = spec.output.parse(result) as z.output<O>;
       if (form.data === undefined || !wantsPage(api.request)) return Response.json(output ?? null);
       if (spec.said !== undefined) saySo(api, spec.said(output));
       return seeOther(spec.next?.(output, { params, input }) ?? pageOf(api));
@@ -193,9 +194,9 @@ function queryFields(url: URL): Record<string, unknown> {
 }
 
 function parse<S extends z.ZodTypeAny>(schema: S | undefined, value: unknown, what: string): z.output<S> {
-  if (schema === undefined) return undefined;
-  const parsed = schema.safeParse(value);
-  if (parsed.success) return parsed.data;
+  const parsed = schema === undefined ? { success: true as const, data: undefined } : schema.safeParse(value);
+  // As above.
+  if (parsed.success) return parsed.data as z.output<S>;
   const fields: FieldErrors = {};
   for (const issue of parsed.error.issues) fields[issue.path.join('.')] ??= issue.message;
   const first = parsed.error.issues[0];

@@ -39,7 +39,8 @@ function assertReproducible(value: unknown): void {
  * asks to be forgotten, erasing the part and its salt leaves a digest that says nothing and a signature that still holds.
  */
 export function publicStatement(statement: CertificateStatement): PublicStatement {
-  const { buyer: _leftOut, ...open } = statement;
+  const open: PublicStatement & { buyer?: unknown } = { ...statement };
+  delete open.buyer;
   return open;
 }
 

@@ -65,7 +65,7 @@ describe('certificate code', () => {
         for (let a = 0; a < 12; a += 1) {
           for (let b = a + 1; b < 12; b += 1) {
             if (code[a] === code[b]) continue;
-            const symbols = [...code];
+            const symbols = Array.from(code);
             [symbols[a], symbols[b]] = [symbols[b] ?? '', symbols[a] ?? ''];
             expect(parseCode(symbols.join('')).ok).toBe(false);
           }

@@ -64,7 +64,7 @@ export function parseCode(typed: string): ParsedCode {
     .replace(/[\s\u2010-\u2015\u2212_.-]/gu, '')
     .replaceAll('O', '0')
     .replace(/[IL]/gu, '1');
-  const stranger = [...code].find((symbol) => !ALPHABET.includes(symbol));
+  const stranger = Array.from(code).find((symbol) => !ALPHABET.includes(symbol));
   if (stranger !== undefined) {
     return {
       ok: false,
@@ -74,7 +74,7 @@ export function parseCode(typed: string): ParsedCode {
   if (code.length !== LENGTH) {
     return { ok: false, reason: `A code has ${LENGTH} digits and letters; this one has ${code.length}.` };
   }
-  if (weightedSum([...code].map((symbol) => ALPHABET.indexOf(symbol))) !== 0) {
+  if (weightedSum(Array.from(code).map((symbol) => ALPHABET.indexOf(symbol))) !== 0) {
     return { ok: false, reason: 'This code has a slip in it: compare it with the paper, symbol by symbol.' };
   }
   return { ok: true, code };

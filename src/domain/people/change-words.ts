@@ -56,7 +56,8 @@ function said(value: unknown): string {
   }
   if (value === true) return 'yes';
   if (value === false) return 'no';
-  return value === null || value === undefined || value === '' ? 'none' : String(value);
+  if (value === null || value === undefined || value === '') return 'none';
+  return typeof value === 'number' || typeof value === 'string' ? String(value) : 'something';
 }
 
 function spaced(name: string): string {
