@@ -2,9 +2,7 @@ import type { StaffRole } from '~/domain/people/roles';
 
 /** Who may pass a door. The owner may pass every door of the works. */
 export type Rule =
-  | { kind: 'anyone' }
-  | { kind: 'signed_in' }
-  | { kind: 'staff'; roles: readonly StaffRole[] };
+  { kind: 'anyone' } | { kind: 'signed_in' } | { kind: 'staff'; roles: readonly StaffRole[] };
 
 export const anyone: Rule = { kind: 'anyone' };
 export const signedIn: Rule = { kind: 'signed_in' };

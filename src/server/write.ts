@@ -5,10 +5,7 @@ import { DomainError } from '~/server/errors';
 
 /** On whose behalf something is done. */
 export type Actor =
-  | { kind: 'user'; userId: number }
-  | { kind: 'visitor' }
-  | { kind: 'provider' }
-  | { kind: 'system' };
+  { kind: 'user'; userId: number } | { kind: 'visitor' } | { kind: 'provider' } | { kind: 'system' };
 
 export type SubjectType =
   | 'user'
@@ -94,7 +91,9 @@ export async function write<T>(ctx: Ctx, work: (tx: WriteContext) => Promise<T>)
   const step = ctx.idempotency === undefined ? 0 : (ctx.idempotency.steps += 1);
   for (let attempt = 1; ; attempt += 1) {
     try {
-      return await ctx.db.transaction((tx) => outermost(tx, ctx, step, work), { isolationLevel: 'read committed' });
+      return await ctx.db.transaction((tx) => outermost(tx, ctx, step, work), {
+        isolationLevel: 'read committed',
+      });
     } catch (error) {
       if (attempt >= attempts || !mayPass(error)) throw error;
     }

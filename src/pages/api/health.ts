@@ -8,7 +8,11 @@ export const GET = door({
   summary: 'The state of database and outbox',
   output: z.object({
     database: z.literal('up'),
-    outbox: z.object({ waiting: z.number().int(), gaveUp: z.number().int(), oldestSeconds: z.number().nullable() }),
+    outbox: z.object({
+      waiting: z.number().int(),
+      gaveUp: z.number().int(),
+      oldestSeconds: z.number().nullable(),
+    }),
   }),
   run: ({ ctx }) => readHealth(ctx.db, ctx.now),
 });

@@ -17,7 +17,10 @@ export const POST = door({
   next: ({ next }) => next,
   run: async ({ input, ctx, api }) => {
     if (isTooMany(input.email, ctx.now)) {
-      throw new DomainError('too_many', 'That was tried too often. Wait a quarter of an hour, or ask for a link.');
+      throw new DomainError(
+        'too_many',
+        'That was tried too often. Wait a quarter of an hour, or ask for a link.',
+      );
     }
     const found = await findSignIn(ctx.db, input.email);
     const fits = await passwordFits(found?.passwordHash ?? null, input.password);
@@ -29,7 +32,10 @@ export const POST = door({
     forgetTries(input.email);
     const cookie = await openSession(found.userId);
     api.cookies.set(cookie.name, cookie.value, cookie.attributes);
-    return { signedIn: true as const, next: ownPath(input.next) ?? (found.isStaff ? paths.works() : paths.myOrders()) };
+    return {
+      signedIn: true as const,
+      next: ownPath(input.next) ?? (found.isStaff ? paths.works() : paths.myOrders()),
+    };
   },
 });
 

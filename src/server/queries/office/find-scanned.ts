@@ -76,7 +76,11 @@ export async function findScanned(reader: Reader, text: string): Promise<ScanMat
       label: `shipment ${number}`,
       href: paths.shipment(number),
     })),
-    ...binRows.map(({ lot }) => ({ kind: 'bin' as const, label: `${lot} in bin ${scanned}`, href: paths.lot(lot) })),
+    ...binRows.map(({ lot }) => ({
+      kind: 'bin' as const,
+      label: `${lot} in bin ${scanned}`,
+      href: paths.lot(lot),
+    })),
   ];
 }
 

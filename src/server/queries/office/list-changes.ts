@@ -19,7 +19,12 @@ interface Wanted {
   limit: number;
 }
 
-const others = { visitor: 'a visitor', provider: 'the payment provider', system: 'the program', user: 'somebody' };
+const others = {
+  visitor: 'a visitor',
+  provider: 'the payment provider',
+  system: 'the program',
+  user: 'somebody',
+};
 
 /** The ledger of changes, newest first. Names are looked up, so that an erased person's are gone here too. */
 export async function listChanges(reader: Reader, { subject, beforeId, limit }: Wanted): Promise<Change[]> {
@@ -47,7 +52,11 @@ export async function listChanges(reader: Reader, { subject, beforeId, limit }: 
           .innerJoin(ledgerEntries, eq(ledgerEntries.id, ledgerSubjects.ledgerEntryId))
           .leftJoin(userProfiles, eq(userProfiles.userId, ledgerEntries.actorUserId))
           .where(
-            and(eq(ledgerSubjects.subjectType, subject.type), eq(ledgerSubjects.subjectId, subject.id), older),
+            and(
+              eq(ledgerSubjects.subjectType, subject.type),
+              eq(ledgerSubjects.subjectId, subject.id),
+              older,
+            ),
           )
           .orderBy(desc(ledgerEntries.id))
           .limit(limit);
@@ -65,7 +74,10 @@ export async function listChanges(reader: Reader, { subject, beforeId, limit }: 
 async function subjectsOf(reader: Reader, entryIds: number[]): Promise<Map<number, Change['subjects']>> {
   const found = new Map<number, Change['subjects']>();
   if (entryIds.length === 0) return found;
-  const rows = await reader.select().from(ledgerSubjects).where(inArray(ledgerSubjects.ledgerEntryId, entryIds));
+  const rows = await reader
+    .select()
+    .from(ledgerSubjects)
+    .where(inArray(ledgerSubjects.ledgerEntryId, entryIds));
   for (const { ledgerEntryId, subjectType: type, subjectId: id } of rows) {
     found.set(ledgerEntryId, [...(found.get(ledgerEntryId) ?? []), { type, id }]);
   }

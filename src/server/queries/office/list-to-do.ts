@@ -35,7 +35,9 @@ export async function listToDo(
   limit: number,
 ): Promise<{ rows: ToDoRow[]; count: number }> {
   const newest = (column: typeof testRuns.runNo | typeof testRuns.state | typeof testRuns.result) =>
-    sql<string | null>`(select ${column} from ${testRuns} where ${testRuns.unitId} = ${units.id} order by ${testRuns.runNo} desc limit 1)`;
+    sql<
+      string | null
+    >`(select ${column} from ${testRuns} where ${testRuns.unitId} = ${units.id} order by ${testRuns.runNo} desc limit 1)`;
   const rows = await reader
     .select({
       serial: units.serial,
@@ -83,7 +85,10 @@ export async function listToDo(
 export async function countOwnersMatters(reader: Reader) {
   const counted = sql<number>`count(*)`;
   const [gaveUp, keptEvents, openHolds] = await Promise.all([
-    reader.select({ n: counted }).from(outbox).where(and(isNull(outbox.doneAt), sql`${outbox.gaveUpAt} is not null`)),
+    reader
+      .select({ n: counted })
+      .from(outbox)
+      .where(and(isNull(outbox.doneAt), sql`${outbox.gaveUpAt} is not null`)),
     reader.select({ n: counted }).from(providerEvents).where(eq(providerEvents.state, 'kept')),
     reader.select({ n: counted }).from(holds).where(isNull(holds.endedAt)),
   ]);

@@ -8,9 +8,10 @@ export async function readHealth(reader: Reader, now: Date) {
     .select({
       waiting: sql<string>`coalesce(sum(${outbox.doneAt} is null and ${outbox.gaveUpAt} is null), 0)`,
       gaveUp: sql<string>`coalesce(sum(${outbox.gaveUpAt} is not null), 0)`,
-      oldest: sql<Date | null>`min(case when ${outbox.doneAt} is null and ${outbox.gaveUpAt} is null then ${outbox.createdAt} end)`.mapWith(
-        outbox.createdAt,
-      ),
+      oldest:
+        sql<Date | null>`min(case when ${outbox.doneAt} is null and ${outbox.gaveUpAt} is null then ${outbox.createdAt} end)`.mapWith(
+          outbox.createdAt,
+        ),
     })
     .from(outbox);
   const oldest = row?.oldest ?? null;
@@ -19,7 +20,8 @@ export async function readHealth(reader: Reader, now: Date) {
     outbox: {
       waiting: Number(row?.waiting ?? 0),
       gaveUp: Number(row?.gaveUp ?? 0),
-      oldestSeconds: oldest === null ? null : Math.max(0, Math.round((now.getTime() - oldest.getTime()) / 1000)),
+      oldestSeconds:
+        oldest === null ? null : Math.max(0, Math.round((now.getTime() - oldest.getTime()) / 1000)),
     },
   };
 }

@@ -1,12 +1,6 @@
 import { and, eq, desc } from 'drizzle-orm';
 import type { Reader } from '~/server/db/client';
-import {
-  ledgerEntries,
-  ledgerSubjects,
-  signInLinks,
-  userProfiles,
-  userRoles,
-} from '~/server/db/schema';
+import { ledgerEntries, ledgerSubjects, signInLinks, userProfiles, userRoles } from '~/server/db/schema';
 
 /** What the letter that carries a one-time link needs; null where the link or its person is gone. */
 export async function readLinkLetter(reader: Reader, signInLinkId: number) {

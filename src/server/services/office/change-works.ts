@@ -8,10 +8,7 @@ import type { Ctx } from '~/server/write';
 import { write } from '~/server/write';
 
 /** Changes the works' own data: name, address, zone, currency, and whether a unit's tester may be its builder. */
-export async function changeWorks(
-  input: z.output<typeof worksSchema>,
-  ctx: Ctx,
-): Promise<{ changed: true }> {
+export async function changeWorks(input: z.output<typeof worksSchema>, ctx: Ctx): Promise<{ changed: true }> {
   if (minorDigitsOf(input.currency) === null) {
     throw new DomainError('invalid', 'This currency is not known here.', {
       currency: 'This currency is not known here; use its three letters of ISO 4217.',

@@ -25,7 +25,10 @@ export async function changePerson(
     if ((disabled || !roles.includes('owner')) && !(await hasOtherOwner(w, userId))) {
       throw new DomainError('conflict', 'Somebody has to stay owner. Make another person owner first.');
     }
-    const before = await w.tx.select({ role: userRoles.role }).from(userRoles).where(eq(userRoles.userId, userId));
+    const before = await w.tx
+      .select({ role: userRoles.role })
+      .from(userRoles)
+      .where(eq(userRoles.userId, userId));
     await w.tx.delete(userRoles).where(eq(userRoles.userId, userId));
     if (roles.length > 0) await w.tx.insert(userRoles).values(roles.map((role) => ({ userId, role })));
     await w.tx

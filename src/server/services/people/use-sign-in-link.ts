@@ -17,7 +17,10 @@ type Use = z.output<typeof linkUseSchema>;
  *
  * @throws DomainError `not_found` where the link is unknown, used or too old
  */
-export async function useSignInLink(input: Use & { token: string }, ctx: CallContext): Promise<{ userId: number; isStaff: boolean }> {
+export async function useSignInLink(
+  input: Use & { token: string },
+  ctx: CallContext,
+): Promise<{ userId: number; isStaff: boolean }> {
   const { password } = input;
   const passwordHash = password === undefined ? undefined : await hashPassword(password);
   return write(ctx, async (w) => {
@@ -34,14 +37,18 @@ export async function useSignInLink(input: Use & { token: string }, ctx: CallCon
     }
     const userId = link.purpose === 'first_owner' ? await makeFirstOwner(w, input) : link.userId;
     if (userId === null) throw new Error(`Sign-in link ${link.id} belongs to nobody.`);
-    if (link.purpose !== 'sign_in') await w.tx.update(users).set({ passwordHash }).where(eq(users.id, userId));
+    if (link.purpose !== 'sign_in')
+      await w.tx.update(users).set({ passwordHash }).where(eq(users.id, userId));
     await w.tx.update(signInLinks).set({ usedAt: w.now, userId }).where(eq(signInLinks.id, link.id));
     await w.record({
       action: link.purpose === 'first_owner' ? 'works.found' : 'person.use_link',
       subjects: [{ type: 'user', id: userId }],
       details: { purpose: link.purpose },
     });
-    const roles = await w.tx.select({ role: userRoles.role }).from(userRoles).where(eq(userRoles.userId, userId));
+    const roles = await w.tx
+      .select({ role: userRoles.role })
+      .from(userRoles)
+      .where(eq(userRoles.userId, userId));
     return { userId, isStaff: roles.length > 0 };
   });
 }
