@@ -51,7 +51,7 @@ export function PlaceTag({ batch, priceMinor, problem }: Props) {
               <p className="font-mono text-[1.75rem] leading-tight font-bold" aria-live="polite">
                 {formatMoney({ minor: priceMinor, currency })}
               </p>
-              <p className="quiet max-w-80">
+              <p className="quiet max-w-[27rem]">
                 {depositMinor !== null &&
                   depositMinor < priceMinor &&
                   `${formatMoney({ minor: depositMinor, currency })} now, the rest when it passes its test. `}
