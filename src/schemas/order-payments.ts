@@ -1,14 +1,29 @@
 import { z } from 'zod';
+import { parseMoney } from '~/domain/money/parse-money';
 
-/** Money that came by hand, written down by the owner. */
-export const handPayment = z.object({
-  kind: z.enum(['transfer', 'cash'], { message: 'Say how it was paid: by transfer or in cash.' }),
-  amountMinor: z.coerce
-    .number({ message: 'Enter the amount in whole minor units.' })
-    .int('Enter the amount in whole minor units.')
-    .positive('An amount is above zero.')
-    .max(100_000_000_000, 'That is more than an order can cost.'),
-});
+/** A form sends the amount as people type it, with its currency. */
+const typedAmount = z.object({ amount: z.string().max(20), currency: z.string() }).passthrough();
+
+function inMinorUnits(value: unknown): unknown {
+  const typed = typedAmount.safeParse(value);
+  if (!typed.success) return value;
+  const { amount, currency, ...rest } = typed.data;
+  const read = parseMoney(amount, currency);
+  return { ...rest, amountMinor: read.ok ? read.money.minor : Number.NaN };
+}
+
+/** Money that came by hand, written down by the owner: `amountMinor`, or `amount` with `currency`. */
+export const handPayment = z.preprocess(
+  inMinorUnits,
+  z.object({
+    kind: z.enum(['transfer', 'cash'], { message: 'Say how it was paid: by transfer or in cash.' }),
+    amountMinor: z.coerce
+      .number({ message: 'Enter an amount in the currency of the order, such as 437 or 437.50.' })
+      .int('Enter the amount in whole minor units.')
+      .positive('An amount is above zero.')
+      .max(100_000_000_000, 'That is more than an order can cost.'),
+  }),
+);
 
 export const handPaymentRecorded = z.object({
   paymentId: z.number().int(),

@@ -60,3 +60,8 @@ export function balanceDueMinor(order: {
 }): number {
   return Math.max(0, order.totalMinor - (order.paidMinor - order.refundedMinor));
 }
+
+/** Whether an order of this state still has to be paid for, as far as it is not. */
+export function orderOwes(state: OrderState): boolean {
+  return orderCan.pay(state).ok || orderCan.payBalance(state).ok;
+}

@@ -1,6 +1,6 @@
 import { and, desc, eq, lt, or, sql } from 'drizzle-orm';
 import type { SQL } from 'drizzle-orm';
-import { balanceDueMinor } from '~/domain/orders/status';
+import { balanceDueMinor, orderOwes } from '~/domain/orders/status';
 import type { OrderState } from '~/domain/orders/status';
 import type { CounterFilter } from '~/schemas/counter-orders';
 import type { Reader } from '~/server/db/client';
@@ -20,7 +20,8 @@ export interface CounterOrder {
   totalMinor: number;
   /** What was paid less what went back. */
   keptMinor: number;
-  balanceMinor: number;
+  /** What is still to be paid; nothing for an order that is cancelled. */
+  owesMinor: number;
 }
 
 const paidMinor = sql<number>`(select coalesce(sum(${payments.amountMinor}), 0) from ${payments} where ${payments.orderId} = ${orders.id})`;
@@ -61,7 +62,7 @@ export async function listCounterOrders(
   return rows.map((row) => ({
     ...row,
     keptMinor: row.paidMinor - row.refundedMinor,
-    balanceMinor: balanceDueMinor(row),
+    owesMinor: orderOwes(row.state) ? balanceDueMinor(row) : 0,
   }));
 }
 
