@@ -49,3 +49,6 @@ export const release = z.object({
   kind: z.enum(revisionKinds, { message: 'Choose what is to be released.' }),
   letter: z.string().regex(/^[A-Z]{1,2}$/, 'A revision has one or two capital letters.'),
 });
+
+/** `?file=`: the upload whose reading is shown. */
+export const shownUpload = z.object({ file: z.coerce.number().int().positive().optional().catch(undefined) });

@@ -34,6 +34,8 @@ export const receipt = z.object({
     .optional(),
   dateCode: optional(30),
   costMinor,
+  /** The same as people type it, `437.50`. */
+  cost: optional(20),
   currency: z
     .string()
     .regex(/^[A-Z]{3}$/, 'A currency has three capital letters.')

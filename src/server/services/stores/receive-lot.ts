@@ -1,4 +1,5 @@
 import { eq } from 'drizzle-orm';
+import { parseMoney } from '~/domain/money/parse-money';
 import type { Receipt } from '~/schemas/stores-lots';
 import type { Tx } from '~/server/db/client';
 import { bins, lots, parts, suppliers, works } from '~/server/db/schema';
@@ -36,8 +37,7 @@ export async function receiveLot(
       state: input.state,
       quantityReceived: input.quantity,
       onHand: 0,
-      costMinor: input.costMinor ?? null,
-      currency: input.costMinor === undefined ? null : (input.currency ?? (await worksCurrency(w.tx))),
+      ...(await costOf(w.tx, input)),
       receivedAt: w.now,
     });
     const lot = { id: inserted.insertId, number, onHand: 0 };
@@ -66,6 +66,16 @@ async function binId(tx: Tx, code: string): Promise<number> {
   const [row] = await tx.select({ id: bins.id }).from(bins).where(eq(bins.code, code));
   if (row === undefined) throw new Error('A bin that was just entered was not found.');
   return row.id;
+}
+
+/** Of the whole lot, in whole minor units of the works' currency unless another is named. */
+async function costOf(tx: Tx, input: Receipt): Promise<{ costMinor: number | null; currency: string | null }> {
+  if (input.costMinor === undefined && input.cost === undefined) return { costMinor: null, currency: null };
+  const currency = input.currency ?? (await worksCurrency(tx));
+  if (input.costMinor !== undefined) return { costMinor: input.costMinor, currency };
+  const read = parseMoney(input.cost ?? '', currency);
+  if (!read.ok) throw new DomainError('refused', read.reason, { cost: read.reason });
+  return { costMinor: read.money.minor, currency };
 }
 
 async function worksCurrency(tx: Tx): Promise<string> {
