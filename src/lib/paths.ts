@@ -62,7 +62,7 @@ export const paths = {
   api: {
     health: () => '/api/health',
     openApi: () => '/api/openapi.json',
-    live: (subject: string) => withQuery('/api/live', { subject }),
+    live: (subjects: readonly string[]) => withQuery('/api/live', { subject: subjects }),
     signIn: () => '/api/sign-in',
     signOut: () => '/api/sign-out',
     signInLinks: () => '/api/sign-in-links',
