@@ -85,7 +85,7 @@ export async function readShipment(
     // Rigs are made where the works stands.
     originCountry: works.country,
     netWeightG: unit.netWeightG,
-    valueMinor: unit.unitPriceMinor,
+    valueMinor: unit.unitPriceMinor ?? 0,
     currency: order.currency,
   }));
   const ofSpares = goods.flatMap(({ quantity, unitPriceMinor, name, hsCode, originCountry, netWeightG }) =>
@@ -119,7 +119,7 @@ export async function readShipment(
     units: contents.map(({ serial, modelName, options, code, certificateNumber, letter, fileId }) => ({
       serial,
       modelName,
-      options: options.map(({ label }) => label),
+      options: (options ?? []).map(({ label }) => label),
       certificate: { code, number: certificateNumber + letter, fileId },
     })),
     spares: goods.map(({ name, number, quantity }) => ({ name, partNumber: number, quantity })),
@@ -136,8 +136,8 @@ async function listContents(reader: Reader, shipmentId: number) {
       customsDescription: models.customsDescription,
       hsCode: models.hsCode,
       netWeightG: models.netWeightG,
-      options: sql<{ label: string }[]>`coalesce(${orderLines.options}, '[]')`.mapWith(orderLines.options),
-      unitPriceMinor: sql<number>`coalesce(${orderLines.unitPriceMinor}, 0)`.mapWith(Number),
+      options: orderLines.options,
+      unitPriceMinor: orderLines.unitPriceMinor,
       code: certificates.code,
       certificateNumber: certificates.number,
       letter: certificates.letter,
