@@ -12,7 +12,7 @@ export const whole = () => bigint({ mode: 'number' });
 /** A moment, UTC, with milliseconds. */
 export const moment = () => datetime({ mode: 'date', fsp: 3 });
 
-/** Codes and hashes: compared byte for byte, trailing blanks and case included. */
+/** Codes and hashes: compared byte for byte, so by case too; only trailing blanks do not count. */
 export const code = (length: number) =>
   customType<{ data: string }>({
     dataType: () => `varchar(${length}) character set ascii collate ascii_bin`,
