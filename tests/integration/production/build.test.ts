@@ -109,8 +109,7 @@ describe('build steps', () => {
     expect(rows[1]?.details).toMatchObject({
       step: 'Fit the crystals',
       minutes: 5,
-      from: 'boards',
-      to: 'align',
+      stage: { from: 'boards', to: 'align' },
     });
     expect(rows[1]?.user).not.toBeNull();
   });

@@ -139,32 +139,28 @@ describe('build sheets and test plans', () => {
     await expect(releaseBuildSheetRevision({ model, letter: 'Z' }, ctx)).rejects.toMatchObject({
       code: 'not_found',
     });
-    await database.db
-      .insert(testPlanRevisions)
-      .values({
-        modelId: floor.model.modelId,
-        letter: 'B',
-        state: 'draft',
-        supplyV: 13.8,
-        loadOhm: 50,
-        createdAt: at,
-      });
+    await database.db.insert(testPlanRevisions).values({
+      modelId: floor.model.modelId,
+      letter: 'B',
+      state: 'draft',
+      supplyV: 13.8,
+      loadOhm: 50,
+      createdAt: at,
+    });
     await expect(releaseTestPlanRevision({ model, letter: 'B' }, ctx)).rejects.toThrow(
       'The test plan has no point.',
     );
   });
 
   it('a test plan with its limits is released, and its points then stand', async () => {
-    const [{ insertId: testPlanRevisionId }] = await database.db
-      .insert(testPlanRevisions)
-      .values({
-        modelId: floor.model.modelId,
-        letter: 'B',
-        state: 'draft',
-        supplyV: 13.8,
-        loadOhm: 50,
-        createdAt: at,
-      });
+    const [{ insertId: testPlanRevisionId }] = await database.db.insert(testPlanRevisions).values({
+      modelId: floor.model.modelId,
+      letter: 'B',
+      state: 'draft',
+      supplyV: 13.8,
+      loadOhm: 50,
+      createdAt: at,
+    });
     const point = {
       testPlanRevisionId,
       quantityKey: 'rf_power',

@@ -208,7 +208,10 @@ describe('rule 9: who did what, when, from what to what', () => {
     expect(rows.map(({ user }) => user)).toEqual(
       Array(3).fill(ctx.actor.kind === 'user' ? ctx.actor.userId : null),
     );
-    expect(rows[1]?.details).toMatchObject({ from: 10, to: 8, reason: 'two were broken' });
-    expect(rows[2]?.details).toMatchObject({ from: 'usable', to: 'barred', reason: 'legs break off' });
+    expect(rows[1]?.details).toMatchObject({ onHand: { from: 10, to: 8 }, reason: 'two were broken' });
+    expect(rows[2]?.details).toMatchObject({
+      state: { from: 'usable', to: 'barred' },
+      reason: 'legs break off',
+    });
   });
 });

@@ -37,7 +37,7 @@ export async function getKitPage(reader: Reader, serial: string) {
           .map((lot) => ({ ...lot, isAlternate: true })),
       ),
     ];
-    return { ...line, lots, bin: lots[0]?.bin ?? null };
+    return { ...line, lots, bin: lots[0]?.bin ?? line.picks[0]?.bin ?? null };
   });
   lines.sort((a, b) => compareBins(a.bin, b.bin) || a.lineNo - b.lineNo);
   const steps = await readSteps(reader, unit);

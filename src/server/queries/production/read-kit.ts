@@ -5,7 +5,7 @@ import { progressOf } from '~/domain/production/kit';
 import type { LineProgress } from '~/domain/production/kit';
 import { isPast } from '~/domain/production/stages';
 import type { Reader } from '~/server/db/client';
-import { lots, parts, picks, units } from '~/server/db/schema';
+import { bins, lots, parts, picks, units } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
 import { readBomLines } from './read-bom';
 import type { LineOfPart } from './read-bom';
@@ -15,6 +15,8 @@ export interface KitPick {
   id: number;
   lineId: number | null;
   lotNumber: string;
+  /** Where the lot lies. */
+  bin: string | null;
   partId: number;
   partNumber: string;
   quantity: number;
@@ -73,6 +75,7 @@ async function readPicks(reader: Reader, unitId: number): Promise<KitPick[]> {
       id: picks.id,
       lineId: picks.bomLineId,
       lotNumber: lots.number,
+      bin: bins.code,
       partId: lots.partId,
       partNumber: parts.number,
       quantity: picks.quantity,
@@ -82,6 +85,7 @@ async function readPicks(reader: Reader, unitId: number): Promise<KitPick[]> {
     .from(picks)
     .innerJoin(lots, eq(lots.id, picks.lotId))
     .innerJoin(parts, eq(parts.id, lots.partId))
+    .leftJoin(bins, eq(bins.id, lots.binId))
     .where(and(eq(picks.unitId, unitId), isNull(picks.undoneByEntryId)))
     .orderBy(picks.id);
 }

@@ -36,7 +36,7 @@ export async function closeRework(
     await w.record({
       action: 'rework.close',
       subjects: [{ type: 'unit', id: unit.id }],
-      details: { reworkId: openReworkId, remedy: input.remedy, minutes },
+      details: { remedy: input.remedy, minutes },
     });
     return { reworkId: openReworkId, serial: unit.serial, stage: unit.stage };
   });

@@ -50,8 +50,7 @@ export async function finishKit(
       action: 'kit.finish',
       subjects: [{ type: 'unit', id: unit.id }],
       details: {
-        from: unit.stage,
-        to: stage,
+        stage: { from: unit.stage, to: stage },
         lines: kit.length,
         minutes: input.minutes ?? null,
         alternates: kit.flatMap((line) => line.picks.filter((pick) => pick.alternateReason !== null)).length,

@@ -34,7 +34,10 @@ export async function openRework(
         { type: 'unit', id: unit.id },
         ...(input.testRunId === undefined ? [] : [{ type: 'run' as const, id: input.testRunId }]),
       ],
-      details: { reworkId: rework.insertId, cause: input.cause, from: unit.stage, to: stage },
+      details: {
+        cause: input.cause,
+        ...(stage === unit.stage ? {} : { stage: { from: unit.stage, to: stage } }),
+      },
     });
     return { reworkId: rework.insertId, serial: unit.serial };
   });

@@ -59,7 +59,7 @@ export async function tickStep(
       subjects: [{ type: 'unit', id: unit.row.id }],
       details: {
         ...{ step: step.title, round, entry: entry.entry, minutes: input.minutes ?? null },
-        ...(stage === unit.row.stage ? {} : { from: unit.row.stage, to: stage }),
+        ...(stage === unit.row.stage ? {} : { stage: { from: unit.row.stage, to: stage } }),
       },
     });
     return { serial, title: step.title, round, stage };

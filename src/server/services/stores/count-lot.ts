@@ -31,7 +31,7 @@ export async function countLot(
         { type: 'lot', id: lot.id },
         { type: 'part', id: lot.partId },
       ],
-      details: { lot: lot.number, from: before, to: input.counted, reason: input.reason },
+      details: { lot: lot.number, onHand: { from: before, to: input.counted }, reason: input.reason },
     });
     return { entryId, number: lot.number, difference, onHand: lot.onHand };
   });

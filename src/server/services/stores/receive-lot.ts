@@ -69,7 +69,10 @@ async function binId(tx: Tx, code: string): Promise<number> {
 }
 
 /** Of the whole lot, in whole minor units of the works' currency unless another is named. */
-async function costOf(tx: Tx, input: Receipt): Promise<{ costMinor: number | null; currency: string | null }> {
+async function costOf(
+  tx: Tx,
+  input: Receipt,
+): Promise<{ costMinor: number | null; currency: string | null }> {
   if (input.costMinor === undefined && input.cost === undefined) return { costMinor: null, currency: null };
   const currency = input.currency ?? (await worksCurrency(tx));
   if (input.costMinor !== undefined) return { costMinor: input.costMinor, currency };

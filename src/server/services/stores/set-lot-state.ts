@@ -31,7 +31,7 @@ export async function setLotState(
         { type: 'lot', id: lot.id },
         { type: 'part', id: lot.partId },
       ],
-      details: { lot: lot.number, from: lot.state, to: input.state, reason: input.reason ?? null },
+      details: { lot: lot.number, state: { from: lot.state, to: input.state }, reason: input.reason ?? null },
     });
     return { lotId: lot.id, number: lot.number, state: input.state };
   });
