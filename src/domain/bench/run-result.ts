@@ -65,3 +65,10 @@ const WORDS: Record<string, string> = {
 export function resultInWords(result: string | null): string {
   return result === null ? 'Open' : (WORDS[result] ?? result);
 }
+
+/** The verdict whose mark a result is shown with. */
+export function verdictOfResult(result: string | null): Verdict {
+  if (result === 'passed' || result === 'passed_by_concession') return 'pass';
+  if (result === 'failed') return 'fail';
+  return result === 'undecided' ? 'too_close' : 'not_run';
+}

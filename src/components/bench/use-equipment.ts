@@ -1,0 +1,64 @@
+import { useEffect, useState } from 'react';
+import { z } from 'zod';
+import { quantityOf } from '~/domain/bench/quantities';
+import type { StationReading } from '~/schemas/bench-station';
+import type { Equipment } from './run-sheet';
+
+/** What a column is read with. */
+export interface Chosen {
+  instrumentRevisionId: number | null;
+  pathRevisionId: number | null;
+}
+
+const rememberedSchema = z.record(
+  z.object({ instrumentRevisionId: z.number().nullable(), pathRevisionId: z.number().nullable() }),
+);
+const storageName = 'rigwright-bench-equipment';
+
+function remembered(): Record<string, Chosen> {
+  try {
+    return rememberedSchema.parse(JSON.parse(localStorage.getItem(storageName) ?? '{}'));
+  } catch {
+    return {};
+  }
+}
+
+/** Instrument and path by quantity: as last chosen on this bench, as last read in this run, or the first that fits. */
+export function useEquipment(
+  equipment: Equipment,
+  readings: readonly StationReading[],
+): { chosenFor: (quantityKey: string) => Chosen; choose: (quantityKey: string, chosen: Chosen) => void } {
+  const [byQuantity, setByQuantity] = useState<Record<string, Chosen>>({});
+  useEffect(() => setByQuantity(remembered()), []);
+
+  const isInUse = ({ instrumentRevisionId, pathRevisionId }: Chosen): boolean =>
+    (instrumentRevisionId === null ||
+      equipment.instruments.some((each) => each.revisionId === instrumentRevisionId)) &&
+    (pathRevisionId === null || equipment.paths.some((each) => each.revisionId === pathRevisionId));
+
+  const chosenFor = (quantityKey: string): Chosen => {
+    const quantity = quantityOf(quantityKey);
+    const kept = byQuantity[quantityKey];
+    if (kept !== undefined && isInUse(kept)) return kept;
+    const read = readings.findLast((reading) => reading.quantityKey === quantityKey);
+    if (read !== undefined && isInUse(read)) {
+      return { instrumentRevisionId: read.instrumentRevisionId, pathRevisionId: read.pathRevisionId };
+    }
+    const fits = equipment.instruments.find(({ spec }) =>
+      quantity?.unit === 'dBc' ? spec.linearityDb !== null : spec.quantities[quantityKey] !== undefined,
+    );
+    return {
+      instrumentRevisionId: fits?.revisionId ?? null,
+      pathRevisionId: quantity?.pathApplies === true ? (equipment.paths[0]?.revisionId ?? null) : null,
+    };
+  };
+
+  return {
+    chosenFor,
+    choose: (quantityKey, chosen) => {
+      const next = { ...byQuantity, [quantityKey]: chosen };
+      setByQuantity(next);
+      localStorage.setItem(storageName, JSON.stringify(next));
+    },
+  };
+}
