@@ -4,6 +4,7 @@ import { isCallSignShape } from '~/domain/orders/checkout';
 import { isCountryCode } from '~/lib/countries';
 
 /** Control characters, and the marks that turn the direction of what stands around them. */
+// eslint-disable-next-line no-control-regex -- control characters are what is looked for
 const UNPRINTABLE = /[\u0000-\u0009\u000b-\u001f\u007f-\u009f\u200e\u200f\u202a-\u202e\u2066-\u2069\ufeff]/gu;
 
 function line(max: number) {

@@ -18,7 +18,7 @@ export async function findOrMakeBuyer(w: WriteContext, contactId: number): Promi
     .values({
       userId,
       email: contact.email,
-      name: [...contact.name].slice(0, 100).join(''),
+      name: Array.from(contact.name).slice(0, 120).join(''),
       callSign: contact.callSign,
     });
   if (made.affectedRows === 1) return userId;
