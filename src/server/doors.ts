@@ -35,7 +35,7 @@ export const pageRules: Readonly<Record<string, Rule>> = {
   '/works/units/[serial]': everyStaff,
   '/works/units/[serial]/kit': staff('builder', 'tester', 'shipper'),
   '/works/units/[serial]/build': staff('builder', 'tester', 'shipper'),
-  '/works/units/[serial]/runs/[runNo]': staff('builder', 'tester'),
+  '/works/units/[serial]/runs/[run]': staff('builder', 'tester'),
   '/works/bench': staff('tester', 'builder'),
   '/works/instruments': staff('tester', 'builder'),
   '/works/certificates/[number]': staff('builder', 'tester', 'shipper'),
