@@ -1,4 +1,5 @@
 import { defineConfig } from 'playwright/test';
+import { chromiumAt } from './tests/setup/chromium';
 
 /** The application's address; `npm test` starts one and names it. */
 const baseURL = process.env['RIGWRIGHT_E2E_URL'];
@@ -18,17 +19,6 @@ export default defineConfig({
     baseURL,
     trace: 'retain-on-failure',
     screenshot: 'only-on-failure',
-    launchOptions: {
-      executablePath: '/usr/bin/chromium',
-      args: [
-        '--no-sandbox',
-        '--disable-gpu',
-        '--disable-quic',
-        '--no-first-run',
-        '--disable-background-networking',
-        '--disable-component-update',
-        '--disable-sync',
-      ],
-    },
+    launchOptions: chromiumAt,
   },
 });
