@@ -45,7 +45,8 @@ export function tailLedger({ reader, everyMs, rereadMs, onError }: Options): Tai
   async function follow(signal: AbortSignal, started: () => void): Promise<void> {
     const looks: { at: number; highest: number }[] = [];
     let known: Set<number> | undefined;
-    while (!signal.aborted) {
+    const isOver = () => signal.aborted;
+    while (!isOver()) {
       try {
         const at = performance.now();
         if (looks.length === 0) looks.push({ at, highest: await firstFloor(reader()) });
@@ -56,7 +57,7 @@ export function tailLedger({ reader, everyMs, rereadMs, onError }: Options): Tai
         const highest = changes.at(-1)?.id;
         if (highest !== undefined) looks.push({ at, highest });
         if (earlier === undefined) started();
-        else if (!signal.aborted) for (const change of changes) if (!earlier.has(change.id)) tell(change);
+        else if (!isOver()) for (const change of changes) if (!earlier.has(change.id)) tell(change);
       } catch (error) {
         onError(error);
       }

@@ -96,7 +96,7 @@ function operationOf({ pattern, method, description }: DescribedDoor): Operation
 
 function operationId(method: string, pattern: string): string {
   const words = pattern.split(/[^A-Za-z0-9]+/).filter((word) => word !== '' && word !== 'api');
-  return method.toLowerCase() + words.map((word) => word[0]?.toUpperCase() + word.slice(1)).join('');
+  return method.toLowerCase() + words.map((word) => word.slice(0, 1).toUpperCase() + word.slice(1)).join('');
 }
 
 function pathParameters(pattern: string, schema: z.ZodTypeAny | undefined): unknown[] {

@@ -9,7 +9,8 @@ export type JsonSchema = Record<string, unknown>;
  * Fields that are not named are left out on both ways, so they are not forbidden here.
  */
 export function jsonSchemaOf(schema: z.ZodTypeAny, direction: 'input' | 'output'): JsonSchema {
-  const { $schema: _, ...converted } = zodToJsonSchema(schema, {
+  // Which inner types a schema has does not matter here.
+  const converted: unknown = zodToJsonSchema(schema as z.ZodType<unknown>, {
     target: 'jsonSchema7',
     $refStrategy: 'none',
     pipeStrategy: direction,
@@ -23,6 +24,7 @@ export function jsonSchemaOf(schema: z.ZodTypeAny, direction: 'input' | 'output'
 /** Draft 7 lists a tuple's places under `items`; 2020-12 does under `prefixItems`. */
 function withPrefixItems(schema: JsonSchema): JsonSchema {
   const entries = Object.entries(schema).flatMap(([name, value]): [string, unknown][] => {
+    if (name === '$schema') return [];
     if (name === 'items' && Array.isArray(value)) return [['prefixItems', convert(value)]];
     if (name === 'additionalItems') return [['items', convert(value)]];
     return [[name, convert(value)]];

@@ -42,7 +42,7 @@ function openTail(onLook: () => void = () => undefined) {
 /** Listens, and waits for as many changes as a test expects. */
 function listen(tail: ReturnType<typeof openTail>) {
   const heard: Change[] = [];
-  let check = () => undefined as void;
+  let check: () => void = () => undefined;
   const { started, stop } = tail.listen((one) => {
     heard.push(one);
     check();

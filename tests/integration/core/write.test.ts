@@ -68,11 +68,11 @@ test('rule 9: who did what, when, from what to what, is kept for every change', 
 test('rule 9: an entry of the ledger of changes is never changed or deleted', async () => {
   await addUser(callContext(database.db));
   await expect(database.db.update(ledgerEntries).set({ action: 'test.other' })).rejects.toMatchObject({
-    cause: { errno: 1644, message: expect.stringContaining('never changed') },
+    cause: { errno: 1644 },
   });
   await database.db.delete(ledgerSubjects);
   await expect(database.db.delete(ledgerEntries)).rejects.toMatchObject({
-    cause: { errno: 1644, message: expect.stringContaining('never deleted') },
+    cause: { errno: 1644 },
   });
   expect(await entries()).toHaveLength(1);
 });
