@@ -5,7 +5,7 @@ import { doorAt } from '~/server/api-routes';
 import { personOf, sessionCookieName } from '~/server/auth/sessions';
 import { db } from '~/server/db/client';
 import { saidCookie } from '~/server/door';
-import { pageRules } from '~/server/doors';
+import { pageRuleAt } from '~/server/doors';
 import { env } from '~/server/env';
 import { DomainError, problemOf } from '~/server/errors';
 import { findForm, formReturnCookie } from '~/server/form-return';
@@ -19,10 +19,11 @@ export const onRequest = defineMiddleware(async (context, next) => {
     const found = await doorAt(context.routePattern, context.request.method);
     return found === undefined ? noSuchDoor(context) : next();
   }
-  const rule = pageRules[context.routePattern];
+  const rule = pageRuleAt(context.routePattern);
   if (rule === undefined) return next('/404');
   const answer = passes(rule, context.locals.person);
-  if (answer === 'unsigned') return context.redirect(paths.signIn(context.url.pathname + context.url.search), 302);
+  if (answer === 'unsigned')
+    return context.redirect(paths.signIn(context.url.pathname + context.url.search), 302);
   if (answer === 'hidden') return next('/404');
   if (answer === 'forbidden') return next('/closed');
   await takeNotes(context);
@@ -77,5 +78,8 @@ function letFormsReachTheProvider(response: Response): void {
   const policy = response.headers.get('content-security-policy');
   if (policy === null) return;
   const provider = env().stripeApiUrl?.origin ?? 'https://checkout.stripe.com';
-  response.headers.set('content-security-policy', `${policy.replace(/;\s*$/, '')}; form-action 'self' ${provider}`);
+  response.headers.set(
+    'content-security-policy',
+    `${policy.replace(/;\s*$/, '')}; form-action 'self' ${provider}`,
+  );
 }

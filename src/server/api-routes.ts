@@ -15,10 +15,12 @@ function patternOf(file: string): string {
 }
 
 const loaders = new Map(Object.entries(files).map(([file, load]) => [patternOf(file), load]));
+/** The router writes its patterns in small letters, the names of parameters too. */
+const byRoutePattern = new Map([...loaders].map(([pattern, load]) => [pattern.toLowerCase(), load]));
 
 /** The door at a route pattern and method; undefined where there is none, or none with a rule. */
 export async function doorAt(pattern: string, method: string): Promise<Door | undefined> {
-  const module = await loaders.get(pattern)?.();
+  const module = await byRoutePattern.get(pattern.toLowerCase())?.();
   const handler = module?.[method === 'HEAD' ? 'GET' : method];
   return isDoor(handler) ? handler : undefined;
 }

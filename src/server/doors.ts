@@ -46,3 +46,13 @@ export const pageRules: Readonly<Record<string, Rule>> = {
   '/works/office': staff(),
   '/works/changes': staff(),
 };
+
+/** The router writes its patterns in small letters, the names of parameters too. */
+const byRoutePattern = new Map(
+  Object.entries(pageRules).map(([pattern, rule]) => [pattern.toLowerCase(), rule]),
+);
+
+/** Who may enter the page at a route pattern; undefined where it is closed to all. */
+export function pageRuleAt(routePattern: string): Rule | undefined {
+  return byRoutePattern.get(routePattern.toLowerCase());
+}

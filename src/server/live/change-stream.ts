@@ -9,7 +9,7 @@ interface Options {
   reader: Reader;
   subjects: readonly LiveSubject[];
   /** Whoever listens: their stream ends when their roles change, and they have to pass the door again. */
-  userId: number;
+  userId: number | null;
 }
 
 /** Shorter than the minute after which proxies drop a silent connection. */
@@ -79,7 +79,7 @@ function covers(asked: LiveSubject, { type, id }: Change['subjects'][number]): b
   return asked.type === type && (asked.id === null || asked.id === id);
 }
 
-function isAbout({ subjects }: Change, userId: number): boolean {
+function isAbout({ subjects }: Change, userId: number | null): boolean {
   return subjects.some(({ type, id }) => type === 'user' && id === userId);
 }
 
