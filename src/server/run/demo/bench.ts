@@ -1,5 +1,5 @@
 import { eq } from 'drizzle-orm';
-import type { BandKey, TestPoint } from '~/domain/bench/types';
+import type { TestPoint } from '~/domain/bench/types';
 import { instrumentRevisions, instruments, pathRevisions, paths } from '~/server/db/schema';
 import { readRunSheet } from '~/server/queries/bench/read-run-sheet';
 import { closeRun } from '~/server/services/bench/close-run';
@@ -151,6 +151,3 @@ async function readEquipment(w: WriteContext): Promise<(point: TestPoint) => Equ
     return { instrumentRevisionId: null, pathRevisionId: null };
   };
 }
-
-/** The band of a model on which the second harmonic is weakest in hand. */
-export const weakBand: BandKey = '20m';

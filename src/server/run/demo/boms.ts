@@ -266,17 +266,22 @@ export const demoBoms: Readonly<Record<string, readonly { note: string; lines: D
   ],
 };
 
+/** Rows of the same part under the same condition become one line. */
 function draft(rows: readonly Row[]): DraftLine[] {
-  return rows.map(([partNumber, places, condition]) => {
+  const lines = new Map<string, DraftLine>();
+  for (const [partNumber, places, condition] of rows) {
     const designators = typeof places === 'string' ? expand(places) : [];
-    return {
+    const quantity = typeof places === 'number' ? places : designators.length;
+    const known = lines.get(`${partNumber} ${condition ?? ''}`);
+    lines.set(`${partNumber} ${condition ?? ''}`, {
       partNumber,
-      quantity: typeof places === 'number' ? places : designators.length,
-      designators,
+      quantity: (known?.quantity ?? 0) + quantity,
+      designators: [...(known?.designators ?? []), ...designators],
       condition: condition ?? null,
       scrapPercent: /^[RC]-.*-0805$/.test(partNumber) ? 5 : /^(SCREW|WASHER|WIRE)/.test(partNumber) ? 3 : 0,
-    };
-  });
+    });
+  }
+  return [...lines.values()];
 }
 
 /** `R1-R3 R9` as R1, R2, R3, R9. */

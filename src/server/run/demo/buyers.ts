@@ -44,7 +44,7 @@ const countries: Readonly<
 const drawn = Object.entries(countries).flatMap(([country, { weight }]) =>
   Array<string>(weight).fill(country),
 );
-const letters = 'ABCDEFGHIJKLMNOPRSTUVWXYZ';
+const letters = 'A B C D E F G H I J K L M N O P R S T U V W X Y Z'.split(' ');
 
 /** Buyers without end, each with a call sign that is never given out. */
 export function buyerSource(random: Random): (over?: Partial<DemoBuyer>) => DemoBuyer {
@@ -71,7 +71,7 @@ export function buyerSource(random: Random): (over?: Partial<DemoBuyer>) => Demo
 
 function newCallSign(random: Random, known: Set<string>): string {
   for (;;) {
-    const suffix = Array.from({ length: random.whole(2, 3) }, () => random.pick([...letters])).join('');
+    const suffix = Array.from({ length: random.whole(2, 3) }, () => random.pick(letters)).join('');
     const callSign = `Q${random.whole(1, 9)}${suffix}`;
     if (known.has(callSign)) continue;
     known.add(callSign);

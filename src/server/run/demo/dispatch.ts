@@ -16,13 +16,17 @@ import type { Random } from './random';
 
 const minuteMs = 60_000;
 
-/** Issues the certificate of a unit's newest run; its PDF is there a minute later. */
-export function certificateScene(unit: DemoUnit, at: Date, cast: Cast): Scene {
+/**
+ * Issues the certificate of a unit's newest run. What is packed soon has its PDF a minute later; the others
+ * are left to the worker, which mails them too.
+ */
+export function certificateScene(unit: DemoUnit, at: Date, isPackedSoon: boolean, cast: Cast): Scene {
   return {
     at,
     actor: cast.tester,
     play: async (w, then) => {
       const { certificateId } = await issueCertificate({ runId: unit.runId }, w);
+      if (!isPackedSoon) return;
       then({
         at: new Date(at.getTime() + minuteMs),
         actor: { kind: 'system' },

@@ -9,7 +9,6 @@ export interface Random {
   normal(): number;
   chance(probability: number): boolean;
   pick<T>(from: readonly T[]): T;
-  shuffled<T>(from: readonly T[]): T[];
 }
 
 /** A generator (mulberry32) from a 32-bit seed. */
@@ -37,12 +36,6 @@ export function seededRandom(seed: number): Random {
       const found = from[whole(0, from.length - 1)];
       if (found === undefined) throw new Error('There is nothing to pick from.');
       return found;
-    },
-    shuffled: (from) => {
-      const left = [...from];
-      const mixed: typeof left = [];
-      while (left.length > 0) mixed.push(...left.splice(whole(0, left.length - 1), 1));
-      return mixed;
     },
   };
 }

@@ -1,4 +1,4 @@
-import { and, desc, eq, isNull, notInArray } from 'drizzle-orm';
+import { and, desc, eq, isNull, notInArray, sql } from 'drizzle-orm';
 import { db } from '~/server/db/client';
 import type { Db } from '~/server/db/client';
 import { outbox } from '~/server/db/schema';
@@ -99,6 +99,6 @@ async function settleLetters(database: Db): Promise<void> {
   const kept = newest.map(({ id }) => id);
   await database
     .update(outbox)
-    .set({ doneAt: outbox.createdAt, attempts: 1 })
+    .set({ doneAt: sql`${outbox.createdAt}`, attempts: 1 })
     .where(kept.length === 0 ? open : and(open, notInArray(outbox.id, kept)));
 }

@@ -37,15 +37,16 @@ function needOf(number: string): number {
   for (const [model, count] of Object.entries(unitsToBuild)) {
     for (const { lines } of demoBoms[model] ?? []) {
       const perUnit = lines
-        .filter((line) => line.partNumber === number && (line.condition == null || applies(line.condition)))
+        .filter((line) => line.partNumber === number && applies(line.condition))
         .reduce((sum, line) => sum + line.quantity * (1 + (line.scrapPercent ?? 0) / 100), 0);
-      need = Math.max(need, 0) + (perUnit * count) / (demoBoms[model]?.length ?? 1);
+      need += (perUnit * count) / (demoBoms[model]?.length ?? 1);
     }
   }
   return need;
 }
 
-function applies(condition: string): boolean {
+function applies(condition: string | null | undefined): boolean {
+  if (condition === null || condition === undefined) return true;
   const parsed = parseCondition(condition);
   return parsed.ok && (evaluateCondition(parsed.ast, usual) || condition.startsWith('not '));
 }

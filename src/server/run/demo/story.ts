@@ -14,7 +14,7 @@ import type { Calendar } from './calendar';
 import { certificateScene, parcelScene } from './dispatch';
 import type { Fate } from './fates';
 import { buildScenes, remedyScene } from './floor';
-import type { DemoOrder, DemoUnit } from './orders';
+import type { DemoOrder, DemoUnit, Ordering } from './orders';
 import { balanceScene, orderScenes } from './orders';
 import type { Cast } from './people';
 import type { Scene } from './play';
@@ -113,7 +113,8 @@ function ordered(
 ): { order: DemoOrder; scenes: Scene[]; option: string[] } {
   const buyer = nextBuyer(over);
   const option = drawOptions(slug, buyer.country, random);
-  const by = isOwn === true || random.chance(0.8) ? 'card' : random.pick(['transfer', 'cash'] as const);
+  const by: Ordering['by'] =
+    isOwn === true || random.chance(0.8) ? 'card' : random.pick(['transfer', 'cash'] as const);
   const ordering = {
     ...{ at, buyer, option, quantity, pay, by },
     batchNumber: () => batch.number,
@@ -157,7 +158,7 @@ function unitScenes(
     at = new Date(at.getTime() + dayMs + random.whole(5, 40) * minuteMs);
   }
   const readyAt = new Date(at.getTime() - dayMs + random.whole(85, 130) * minuteMs);
-  if (fate.end !== 'none') scenes.push(certificateScene(unit, readyAt, cast));
+  if (fate.end !== 'none') scenes.push(certificateScene(unit, readyAt, fate.end !== 'certified', cast));
   if (fate.hold !== undefined) {
     const { hold: reason } = fate;
     scenes.push({
