@@ -30,6 +30,18 @@ const words: Readonly<Record<string, string>> = {
   'bom.release': 'released a BOM',
   'build_sheet.release': 'released a build sheet',
   'test_plan.release': 'released a test plan',
+  'batch.open': 'opened the batch',
+  'batch.change': 'changed the batch',
+  'order.place': 'placed the order',
+  'order.pay': 'paid',
+  'order.pay_balance': 'paid the balance',
+  'order.pay_by_hand': 'wrote a payment down',
+  'order.cancel': 'cancelled the order',
+  'order.ask_balance': 'asked for the balance',
+  'shipment.pack': 'packed a parcel',
+  'shipment.unpack': 'took a parcel apart',
+  'shipment.ship': 'shipped a parcel',
+  'shipment.ship_again': 'shipped a parcel that had left',
 };
 
 /** What an entry says was done: `run.close` becomes "closed the run". */

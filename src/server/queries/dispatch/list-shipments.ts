@@ -4,7 +4,7 @@ import { orders, shipments, shipmentUnits, units } from '~/server/db/schema';
 
 /** Parcels that wait for their carrier first, then those that left, the newest first. */
 export async function listShipments(reader: Reader, limit: number) {
-  return reader
+  const rows = await reader
     .select({
       number: shipments.number,
       state: shipments.state,
@@ -13,7 +13,7 @@ export async function listShipments(reader: Reader, limit: number) {
       trackingNumber: shipments.trackingNumber,
       packedAt: shipments.packedAt,
       shippedAt: shipments.shippedAt,
-      serials: sql<string>`coalesce(group_concat(${units.serial} order by ${units.serial} separator ', '), '')`,
+      serials: sql<string>`coalesce(group_concat(${units.serial} order by ${units.serial} separator ','), '')`,
     })
     .from(shipments)
     .innerJoin(orders, eq(orders.id, shipments.orderId))
@@ -22,4 +22,5 @@ export async function listShipments(reader: Reader, limit: number) {
     .groupBy(shipments.id)
     .orderBy(sql`${shipments.state} = 'shipped'`, desc(shipments.id))
     .limit(limit);
+  return rows.map(({ serials, ...row }) => ({ ...row, serials: serials === '' ? [] : serials.split(',') }));
 }
