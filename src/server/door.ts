@@ -199,9 +199,12 @@ function parse<S extends z.ZodTypeAny>(schema: S | undefined, value: unknown, wh
   if (parsed.success) return parsed.data as z.output<S>;
   const fields: FieldErrors = {};
   for (const issue of parsed.error.issues) fields[issue.path.join('.')] ??= issue.message;
-  const first = parsed.error.issues[0];
-  const where = first === undefined || first.path.length === 0 ? '' : ` (${first.path.join('.')})`;
-  throw new DomainError('invalid', `${what} cannot be used${where}: ${first?.message ?? ''}`, fields);
+  const [first] = parsed.error.issues;
+  throw new DomainError(
+    'invalid',
+    `${what} cannot be used: ${first?.message ?? 'it is not understood.'}`,
+    fields,
+  );
 }
 
 function callContext(api: APIContext, form: FormData | undefined, body: string): CallContext {

@@ -3,7 +3,7 @@ import { formatDayOf } from '~/lib/dates';
 import { paths } from '~/lib/paths';
 import { linkToken } from '~/server/auth/tokens';
 import { env } from '~/server/env';
-import { readFile } from '~/server/files/read-file';
+import { readFile } from '~/server/queries/files/read-file';
 import { certificateIssuedLetter } from '~/server/mail/certificate-issued';
 import { readCertificateLetter } from '~/server/queries/certificates/read-certificate-letter';
 import { getWorks } from '~/server/queries/office/get-works';

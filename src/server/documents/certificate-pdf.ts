@@ -44,9 +44,7 @@ function render(
 }
 
 function startThread(): Worker {
-  const started = new Worker(new URL('./certificate-thread.ts', import.meta.url), {
-    execArgv: ['--import', 'tsx'],
-  });
+  const started = new Worker(new URL('./start-thread.mjs', import.meta.url));
   started.unref();
   started.on('message', (answer: RenderAnswer) => {
     const asked = waiting.get(answer.id);

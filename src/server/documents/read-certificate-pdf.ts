@@ -3,7 +3,7 @@ import type { StaffRole } from '~/domain/people/roles';
 import { tokenHash } from '~/server/auth/tokens';
 import type { Reader } from '~/server/db/client';
 import { DomainError } from '~/server/errors';
-import { readFile } from '~/server/files/read-file';
+import { readFile } from '~/server/queries/files/read-file';
 import { readCertificateOwner } from '~/server/queries/certificates/read-certificate-owner';
 import { passes, staff } from '~/server/rules';
 

@@ -13,7 +13,7 @@ export interface PersonRow {
   version: number;
 }
 
-/** Everybody with a role in the works, or who had a password here, by name. Buyers are not listed. */
+/** Everybody with a role in the works, and who was shut out of it, by name. Buyers are not listed. */
 export async function listPeople(reader: Reader): Promise<PersonRow[]> {
   const rows = await reader
     .select({
@@ -40,5 +40,5 @@ export async function listPeople(reader: Reader): Promise<PersonRow[]> {
     if (role !== null) person.roles.push(role);
     people.set(row.id, person);
   }
-  return [...people.values()].filter(({ roles, hasPassword }) => roles.length > 0 || hasPassword);
+  return [...people.values()].filter(({ roles, isDisabled }) => roles.length > 0 || isDisabled);
 }
