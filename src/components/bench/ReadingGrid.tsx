@@ -1,8 +1,9 @@
-import { useEffect, useRef } from 'react';
+import { useEffect, useLayoutEffect, useRef, useState } from 'react';
 import type { KeyboardEvent } from 'react';
 import { VerdictMark } from '~/components/ui/VerdictMark';
 import { formatValue } from '~/domain/bench/format';
 import { pointLabel } from '~/domain/bench/judge-run';
+import { quantityOf } from '~/domain/bench/quantities';
 import { newestReading } from '~/domain/bench/run-entry';
 import type { Station } from '~/schemas/bench-station';
 import { entryOrder, needOf, neighbour, notesOf, unitHint } from './run-sheet';
@@ -80,6 +81,7 @@ export function ReadingGrid({ grid, station, judged, cells, entries, order, edit
                   {point !== undefined && (
                     <Cell
                       {...{ point, station, judged, cells, entries, editable, onKeyDown }}
+                      label={row.isLabelled ? quantityOf(point.quantityKey)?.label : undefined}
                       register={(input) => {
                         if (input === null) inputs.current.delete(point.id);
                         else inputs.current.set(point.id, input);
@@ -104,11 +106,13 @@ function isAtEdge(input: HTMLInputElement, columns: number): boolean {
 
 interface CellProps extends Omit<Props, 'grid' | 'order'> {
   point: Point;
+  /** The quantity, where the column does not say it. */
+  label: string | undefined;
   onKeyDown: (event: KeyboardEvent<HTMLInputElement>, point: Point) => void;
   register: (input: HTMLInputElement | null) => void;
 }
 
-function Cell({ point, station, judged, cells, entries, editable, onKeyDown, register }: CellProps) {
+function Cell({ point, label, station, judged, cells, entries, editable, onKeyDown, register }: CellProps) {
   const isInHand = cells.inHand === point.id;
   const judgement = judged.judgements.get(point.id);
   const unread = cells.unread.get(point.id);
@@ -121,15 +125,25 @@ function Cell({ point, station, judged, cells, entries, editable, onKeyDown, reg
   const editing = cells.draft ?? (newest === undefined ? '' : textOf(newest));
   const wrong = unread !== undefined || refused !== undefined;
   const noteId = `note-${point.id}`;
+  const own = useRef<HTMLInputElement>(null);
+  const [entered, setEntered] = useState(0);
+  // Before the next key: a frame later the first digit that is typed would be selected too, and lost.
+  useLayoutEffect(() => {
+    if (entered > 0) own.current?.select();
+  }, [entered]);
   return (
     <label
       className={['bench-cell', isInHand && 'bench-cell-in-hand', wrong && 'bench-cell-unread']
         .filter(Boolean)
         .join(' ')}
     >
+      {label !== undefined && <span className="quiet block">{label}</span>}
       <span className="flex items-center gap-1">
         <input
-          ref={register}
+          ref={(input) => {
+            own.current = input;
+            register(input);
+          }}
           aria-label={pointLabel(point)}
           aria-describedby={noteId}
           aria-invalid={wrong ? 'true' : undefined}
@@ -142,10 +156,15 @@ function Cell({ point, station, judged, cells, entries, editable, onKeyDown, reg
           maxLength={60}
           placeholder={unitHint(point.quantityKey)}
           value={isInHand && editable ? editing : (unread?.text ?? refused?.entry.text ?? rest)}
-          onFocus={(event) => {
+          onFocus={() => {
             cells.enter(point.id);
-            const { currentTarget } = event;
-            requestAnimationFrame(() => currentTarget.select());
+            setEntered(entered + 1);
+          }}
+          onMouseDown={(event) => {
+            if (document.activeElement === event.currentTarget) return;
+            // The click would put the caret into the text that is selected on entering.
+            event.preventDefault();
+            event.currentTarget.focus();
           }}
           onChange={(event) => cells.type(event.currentTarget.value)}
           onBlur={() => cells.commit(false)}

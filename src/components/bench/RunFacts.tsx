@@ -46,16 +46,14 @@ export function RunFacts({ station, editable, saving, errors, onSave }: Props) {
       <Tag serial={unit.serial} href={paths.unit(unit.serial)} line={unit.line} quiet={[unit.quiet]} />
       <DefinitionList
         items={[
-          {
-            term: 'Run',
-            value: `${run.runNo}${run.runNo > 1 ? ', after ' + String(run.runNo - 1) + ' before' : ''}`,
-          },
+          { term: 'Run', value: runText(station) },
           { term: 'Tester', value: run.testerName },
           { term: 'Opened', value: run.openedText },
           ...(run.closedText === null ? [] : [{ term: 'Closed', value: run.closedText }]),
           { term: 'Load', value: `${formatNumber(plan.loadOhm, 0)} Ω` },
           { term: 'Limits', value: `Test plan rev ${plan.letter}` },
-          { term: 'Spurious', value: `${limits.title}, goes to: ${limits.destination}` },
+          { term: 'Spurious', value: limits.title },
+          { term: 'Goes to', value: limits.destination },
           ...(editable
             ? []
             : [
@@ -130,4 +128,11 @@ export function RunFacts({ station, editable, saving, errors, onSave }: Props) {
       )}
     </div>
   );
+}
+
+/** `2nd, after rework`. */
+function runText({ run, earlier }: Station): string {
+  const name = ['', '1st', '2nd', '3rd'][run.runNo] ?? `${run.runNo}th`;
+  const [before] = earlier;
+  return before?.rework === undefined || before.rework === null ? name : `${name}, after rework`;
 }

@@ -133,14 +133,6 @@ function Bench({ station: first, equipment, personId, mayTest, formKey }: Props)
                 <Button
                   kind="outlined"
                   type="button"
-                  aria-keyshortcuts="Alt+O"
-                  onClick={() => setOrder(order === 'band' ? 'quantity' : 'band')}
-                >
-                  Enter goes on by {order}
-                </Button>
-                <Button
-                  kind="outlined"
-                  type="button"
                   aria-keyshortcuts="Alt+L"
                   onClick={() => fileInput.current?.click()}
                 >
@@ -166,12 +158,29 @@ function Bench({ station: first, equipment, personId, mayTest, formKey }: Props)
             </div>
           )}
           <ReadingGrid {...{ grid, judged, cells, entries, order, editable }} station={cells.shown} />
-          <p className="quiet mt-2">
-            Enter takes a value and goes on by {order}; arrows move; Escape restores.{' '}
-            <button type="button" className="underline" onClick={() => setAsking({ kind: 'keys' })}>
-              All keys: ?
-            </button>
-          </p>
+          {editable && (
+            <p className="quiet mt-2 flex flex-wrap items-center gap-x-4">
+              <span>
+                Enter takes a value and goes on by{' '}
+                <button
+                  type="button"
+                  className="min-h-(--check) underline"
+                  aria-keyshortcuts="Alt+O"
+                  onClick={() => setOrder(order === 'band' ? 'quantity' : 'band')}
+                >
+                  {order}
+                </button>
+                ; arrows move; Escape restores.
+              </span>
+              <button
+                type="button"
+                className="min-h-(--check) underline"
+                onClick={() => setAsking({ kind: 'keys' })}
+              >
+                All keys: ?
+              </button>
+            </p>
+          )}
           <SweepPanel
             {...{ station, editable, fileInput }}
             judgements={judged.judgements}

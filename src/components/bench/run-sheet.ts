@@ -43,8 +43,10 @@ export interface Entry {
 export interface GridRow {
   key: string;
   label: string;
-  /** By quantity; undefined where the plan has no such point. */
+  /** By column; undefined where the plan has no such point. */
   cells: (Point | undefined)[];
+  /** The row's cells are not of the column's quantity, and name their own. */
+  isLabelled: boolean;
 }
 
 export interface Grid {
@@ -52,24 +54,33 @@ export interface Grid {
   rows: GridRow[];
 }
 
-/** Bands down, quantities across, in the order of the plan. */
+/** Bands down, quantities across, in the order of the plan; what has no band stands in rows beneath. */
 export function gridOf(points: readonly Point[]): Grid {
-  const columns = QUANTITIES.filter(({ key }) => points.some(({ quantityKey }) => quantityKey === key));
-  const bands = [...new Set(points.map(({ band }) => band))].sort(
-    (a, b) => Number(a === null) - Number(b === null),
+  const banded = points.filter(({ band }) => band !== null);
+  const columns = QUANTITIES.filter(({ key }) =>
+    (banded.length > 0 ? banded : points).some(({ quantityKey }) => quantityKey === key),
   );
+  const bands = [...new Set(banded.flatMap(({ band }) => (band === null ? [] : [band])))];
   const rows = bands.flatMap((band) => {
-    const own = points.filter((point) => point.band === band);
+    const own = banded.filter((point) => point.band === band);
     const depth = Math.max(
       ...columns.map(({ key }) => own.filter(({ quantityKey }) => quantityKey === key).length),
     );
     return Array.from({ length: depth }, (_, layer) => ({
-      key: `${band ?? 'unit'} ${layer}`,
-      label: (band === null ? 'Unit' : bandLabel(band)) + (layer === 0 ? '' : ` (${layer + 1})`),
+      key: `${band} ${layer}`,
+      label: bandLabel(band) + (layer === 0 ? '' : ` (${layer + 1})`),
       cells: columns.map(({ key }) => own.filter(({ quantityKey }) => quantityKey === key)[layer]),
+      isLabelled: false,
     }));
   });
-  return { columns, rows };
+  const whole = points.filter(({ band }) => band === null);
+  const unitRows = Array.from({ length: Math.ceil(whole.length / columns.length) }, (_, row) => ({
+    key: `unit ${row}`,
+    label: 'Unit',
+    cells: columns.map((_column, column) => whole[row * columns.length + column]),
+    isLabelled: true,
+  }));
+  return { columns, rows: [...rows, ...unitRows] };
 }
 
 /** Ids of the points in the order in which Enter goes on. */
@@ -220,8 +231,8 @@ export function needOf(point: Point, judgement: PointJudgement | undefined): str
       ? `within ±${formatNumber(upper, 0)}`
       : `${bare(lower, quantityKey)} to ${bare(upper, quantityKey)}`;
   }
-  if (lower !== null) return `at least ${bare(lower, quantityKey)}`;
-  return upper === null ? 'no limit' : `at most ${bare(upper, quantityKey)}`;
+  if (lower !== null) return `min ${bare(lower, quantityKey)}`;
+  return upper === null ? 'no limit' : `max ${bare(upper, quantityKey)}`;
 }
 
 function bare(value: number, quantityKey: string): string {

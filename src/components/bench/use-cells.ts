@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { useRef, useState } from 'react';
 import { newestReading } from '~/domain/bench/run-entry';
 import { quantityOf } from '~/domain/bench/quantities';
 import type { Station, StationReading } from '~/schemas/bench-station';
@@ -29,7 +29,13 @@ interface Given {
 export function useCells({ station, equipment, entries, chosenFor, editable }: Given) {
   const { points, readings } = station.sheet;
   const [inHand, setInHand] = useState<number | undefined>(points[0]?.id);
-  const [draft, setDraft] = useState<string | null>(null);
+  const [draft, setDrawnDraft] = useState<string | null>(null);
+  // Going on with Enter leaves the cell before what was typed is drawn again: it must be taken once.
+  const newestDraft = useRef(draft);
+  const setDraft = (text: string | null): void => {
+    newestDraft.current = text;
+    setDrawnDraft(text);
+  };
   const [again, setAgain] = useState(false);
   const [unread, setUnread] = useState<ReadonlyMap<number, Unread>>(new Map());
 
@@ -56,6 +62,8 @@ export function useCells({ station, equipment, entries, chosenFor, editable }: G
   /** Takes what is typed; `explicit` also takes an unchanged text with another instrument or path. */
   const commit = (explicit: boolean): boolean => {
     if (point === undefined || !editable) return true;
+    const left = newestDraft.current;
+    const typed = left === null || left.trim() === '' ? null : left;
     const newest = newestReading(readings, point.id);
     const text = (typed ?? (explicit && newest?.source === 'typed' ? textOf(newest) : '')).trim();
     const before = unread.get(point.id);
