@@ -1,5 +1,12 @@
 import { describe, expect, it } from 'vitest';
-import { formatAtMeter, formatFrequency, formatNumber, formatValue, formatWithU } from './format';
+import {
+  formatAtMeter,
+  formatFrequency,
+  formatNumber,
+  formatUncertainty,
+  formatValue,
+  formatWithU,
+} from './format';
 
 describe('formatValue', () => {
   it.each([
@@ -46,5 +53,19 @@ describe('other numbers', () => {
     expect(formatNumber(-0.001, 1)).toBe('0.0');
     expect(formatWithU(-51.12, 0.88)).toBe('\u221251.12 ± 0.88');
     expect(formatWithU(612.4, 14)).toBe('612 ± 14');
+  });
+});
+
+describe('formatUncertainty', () => {
+  it.each([
+    [0.87, 'dB', '0.9 dB'],
+    [0.00563, 'A', '5.6 mA'],
+    [0.000395, 'A', '0.40 mA'],
+    [0.0142, 'A', '14 mA'],
+    [1.25, 'A', '1.3 A'],
+    [2.04, 'Hz', '2.0 Hz'],
+    [12.4, 'Hz', '12 Hz'],
+  ] as const)('%d %s is %s', (uncertainty, unit, text) => {
+    expect(formatUncertainty(uncertainty, unit)).toBe(text);
   });
 });

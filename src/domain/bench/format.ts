@@ -92,3 +92,10 @@ export function formatWithU(value: number, uncertainty: number): string {
   const decimals = decimalsForU(uncertainty);
   return `${formatNumber(value, decimals)} ± ${formatNumber(uncertainty, decimals)}`;
 }
+
+/** An expanded uncertainty with its unit: dB with one decimal, the rest with two figures (JCGM 100, 7.2.6). */
+export function formatUncertainty(uncertainty: number, unit: 'dB' | 'A' | 'Hz'): string {
+  if (unit === 'dB') return `${formatNumber(uncertainty, 1)} dB`;
+  const [size, name] = unit === 'A' && uncertainty < 0.9995 ? [uncertainty * 1e3, 'mA'] : [uncertainty, unit];
+  return `${formatNumber(size, decimalsForU(size))} ${name}`;
+}

@@ -1,5 +1,5 @@
 import { bandLabel } from '~/domain/bench/bands';
-import { formatAtMeter, formatNumber, formatValue } from '~/domain/bench/format';
+import { formatAtMeter, formatUncertainty, formatValue } from '~/domain/bench/format';
 import type { PointJudgement } from '~/domain/bench/judge-point';
 import { LIMIT_RULES } from '~/domain/bench/limit-rules';
 import type { LimitRuleKey } from '~/domain/bench/limit-rules';
@@ -66,7 +66,7 @@ function writePoint({ point, judgement }: JudgedPoint): StatedPoint {
     unit: quantity?.unit ?? '',
     text: least + formatValue(value, point.quantityKey),
     atMeterText: least + formatAtMeter(atMeter, point.quantityKey),
-    uncertainty: writeUncertainty(point.quantityKey, judgement),
+    uncertainty: writeUncertainty(judgement),
     n,
     lower,
     upper,
@@ -78,10 +78,10 @@ function writePoint({ point, judgement }: JudgedPoint): StatedPoint {
   };
 }
 
-function writeUncertainty(quantityKey: string, judgement: PointJudgement): StatedUncertainty | null {
+function writeUncertainty(judgement: PointJudgement): StatedUncertainty | null {
   const { U, uUnit, k, low, high } = judgement;
   if (U === null || uUnit === null || k === null || low === null || high === null) return null;
-  const text = uUnit === 'dB' ? `${formatNumber(U, 1)} dB` : formatValue(U, quantityKey).replace('+', '');
+  const text = formatUncertainty(U, uUnit);
   return { value: U, unit: uUnit, k, low, high, text };
 }
 
@@ -124,7 +124,7 @@ function writeConformity({ points, ruleKey, destinationCountry }: RunFacts): str
     ...new Set(
       points.flatMap(({ point }) =>
         point.limitRule === 'fixed'
-          ? [(quantityOf(point.quantityKey)?.label ?? point.quantityKey).toLowerCase()]
+          ? [inText(quantityOf(point.quantityKey)?.label ?? point.quantityKey)]
           : [],
       ),
     ),
@@ -155,6 +155,11 @@ const certaintyWords = { 'read in quotation': 'from quotation', 'from memory': '
 function ordinal(order: number): string {
   if (order === 2) return '2nd';
   return order === 3 ? '3rd' : `${order}th`;
+}
+
+/** `Current, key down` within a sentence: `current key down`. */
+function inText(label: string): string {
+  return label.replace(',', '').toLowerCase();
 }
 
 function listed(words: readonly string[]): string {
