@@ -206,7 +206,7 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     },
     '/works/units/[serial]/kit': { '': paths.unitKit(kit.serial) },
     '/works/units/[serial]/build': { '': paths.unitBuild(boards.serial) },
-    '/works/units/[serial]/runs/[runNo]': {
+    '/works/units/[serial]/runs/[run]': {
       open: paths.run(open.serial, open.runNo),
       closed: paths.run(closed.serial, closed.runNo),
     },
