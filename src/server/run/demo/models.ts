@@ -72,7 +72,7 @@ export const demoModels: readonly DemoModel[] = [
     slug: 'holm-3',
     serialPrefix: 'H3',
     name: 'Holm 3',
-    tagline: 'a three-band CW transceiver. Choose on the panel: what you see is what we build',
+    tagline: 'a three-band CW transceiver',
     description:
       'Three bands out of four, each with its own low-pass and band-pass filters on relays. The receiver has a crystal ladder filter; the narrow one is matched by hand. Runs from 11 to 14 V.',
     panel: holmPanel,
@@ -86,7 +86,7 @@ export const demoModels: readonly DemoModel[] = [
           { key: 'band.40m', label: '40 m', isDefault: true },
           { key: 'band.30m', label: '30 m', isDefault: true },
           { key: 'band.20m', label: '20 m', isDefault: true },
-          { key: 'band.15m', label: '15 m', note: 'instead of one above' },
+          { key: 'band.15m', label: '15 m' },
         ],
       },
       filter(4800),
