@@ -6,7 +6,7 @@ import { pointLabel } from '~/domain/bench/judge-run';
 import { quantityOf } from '~/domain/bench/quantities';
 import { newestReading } from '~/domain/bench/run-entry';
 import type { Station } from '~/schemas/bench-station';
-import { entryOrder, needOf, neighbour, notesOf, unitHint } from './run-sheet';
+import { emptyLimitOf, entryOrder, needOf, neighbour, notesOf, unitHint } from './run-sheet';
 import type { Grid, Judged, Point } from './run-sheet';
 import { textOf } from './use-cells';
 import type { Cells } from './use-cells';
@@ -49,6 +49,7 @@ export function ReadingGrid({ grid, station, judged, cells, entries, order, edit
       const at = ids.indexOf(point.id) + (event.shiftKey ? -1 : 1);
       const next = ids[at];
       if (next !== undefined) goTo(next);
+      else selectSoon(event.currentTarget);
     } else if (event.key === 'Escape') {
       event.preventDefault();
       cells.restore();
@@ -96,6 +97,11 @@ export function ReadingGrid({ grid, station, judged, cells, entries, order, edit
       </table>
     </div>
   );
+}
+
+/** Once the field shows what is edited, so that typing replaces it. */
+function selectSoon(input: HTMLInputElement): void {
+  requestAnimationFrame(() => input.select());
 }
 
 function isAtEdge(input: HTMLInputElement, columns: number): boolean {
@@ -173,7 +179,9 @@ function Cell({ point, label, station, judged, cells, entries, editable, onKeyDo
         {judgement !== undefined && judgement.n > 0 && <VerdictMark verdict={judgement.verdict} bare />}
       </span>
       <span id={noteId} className="block font-mono text-quiet leading-snug text-ink-2">
-        <span className="block">{needOf(point, judgement)}</span>
+        <span className="block">
+          {needOf(point, judgement, emptyLimitOf(point, station, judged.judgements))}
+        </span>
         {notesOf(point, judgement, station, judged.judgements).map((note) => (
           <span key={note} className="block">
             {note}

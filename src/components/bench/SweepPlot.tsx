@@ -98,9 +98,11 @@ export function SweepPlot({ sweep, station, judgements }: Props) {
           <text
             key={order}
             x={x(freqHz) + 5}
-            y={Math.max(top + 10, y(meterDbc) - 5)}
+            y={Math.max(top + 10, y(meterDbc) - (x(freqHz) > width - 110 ? 21 : 5))}
             textAnchor={x(freqHz) > width - 110 ? 'end' : 'start'}
-            className="fill-patina font-semibold"
+            paintOrder="stroke"
+            strokeWidth="4"
+            className="fill-patina stroke-sheet font-semibold"
           >
             {nameOf(order)} {atMost ? '≤ ' : ''}
             {formatNumber(unitDbc, 1)}

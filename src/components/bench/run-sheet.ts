@@ -3,6 +3,7 @@ import { efficiency } from '~/domain/bench/derived';
 import { formatAtMeter, formatNumber, formatValue } from '~/domain/bench/format';
 import type { PointJudgement } from '~/domain/bench/judge-point';
 import { judgeRun } from '~/domain/bench/judge-run';
+import { limitDbc } from '~/domain/bench/limit-rules';
 import { QUANTITIES, quantityOf } from '~/domain/bench/quantities';
 import type { Quantity } from '~/domain/bench/quantities';
 import { newestReading, readCell } from '~/domain/bench/run-entry';
@@ -83,13 +84,15 @@ export function gridOf(points: readonly Point[]): Grid {
   return { columns, rows: [...rows, ...unitRows] };
 }
 
-/** Ids of the points in the order in which Enter goes on. */
+/** Ids of the points in the order in which Enter goes on; what is of the whole unit comes last. */
 export function entryOrder({ columns, rows }: Grid, by: 'quantity' | 'band'): number[] {
+  const bands = rows.filter(({ isLabelled }) => !isLabelled);
+  const whole = rows.filter(({ isLabelled }) => isLabelled).flatMap(({ cells }) => cells);
   const cells =
     by === 'band'
-      ? rows.flatMap((row) => row.cells)
-      : columns.flatMap((_, column) => rows.map((row) => row.cells[column]));
-  return cells.flatMap((point) => (point === undefined ? [] : [point.id]));
+      ? bands.flatMap((row) => row.cells)
+      : columns.flatMap((_, column) => bands.map((row) => row.cells[column]));
+  return [...cells, ...whole].flatMap((point) => (point === undefined ? [] : [point.id]));
 }
 
 /** The next cell in a direction that holds a point; the same one at the edge. */
@@ -216,11 +219,19 @@ export function judgeStation(station: Station): Judged {
   return { judgements, result };
 }
 
-/** `need −47.9`, `within ±100 Hz`: what a point asks for, as short as a cell. */
-export function needOf(point: Point, judgement: PointJudgement | undefined): string {
+/**
+ * `need −47.9`, `within ±100`: what a point asks for, as short as a cell.
+ *
+ * @param emptyLimit limit of a ratio that has not been read yet, by the power of its band
+ */
+export function needOf(
+  point: Point,
+  judgement: PointJudgement | undefined,
+  emptyLimit: number | null = null,
+): string {
   const { quantityKey } = point;
   const lower = judgement?.lower ?? point.lower;
-  const upper = judgement?.upper ?? point.upper;
+  const upper = judgement?.upper ?? emptyLimit ?? point.upper;
   const quantity = quantityOf(quantityKey);
   if (quantity?.format === 'yes_no') return 'need yes';
   if (quantity?.format === 'ratio') {
@@ -233,6 +244,23 @@ export function needOf(point: Point, judgement: PointJudgement | undefined): str
   }
   if (lower !== null) return `min ${bare(lower, quantityKey)}`;
   return upper === null ? 'no limit' : `max ${bare(upper, quantityKey)}`;
+}
+
+/** The limit of a harmonic by the power measured on its band; null where that is not known. */
+export function emptyLimitOf(
+  point: Point,
+  { sheet }: Station,
+  all: ReadonlyMap<number, PointJudgement>,
+): number | null {
+  const order = quantityOf(point.quantityKey)?.order ?? null;
+  const power = sheet.points.find((each) => each.band === point.band && each.quantityKey === 'rf_power');
+  const powerW = power === undefined ? null : (all.get(power.id)?.value ?? null);
+  if (point.limitRule !== 'spurious' || order === null || powerW === null || point.freqHz === null)
+    return null;
+  const args = { powerW, txFreqHz: point.freqHz, productFreqHz: order * point.freqHz };
+  const limit = limitDbc(sheet.ruleKey, args);
+  if (!limit.ok) return null;
+  return point.upper === null ? limit.limitDbc : Math.min(point.upper, limit.limitDbc);
 }
 
 function bare(value: number, quantityKey: string): string {
