@@ -161,7 +161,8 @@ describe('shipping', () => {
     const { db, seed, shipmentNumber, shipmentId } = await packedOrder({ quantity: 2 });
     await shipShipment({ ...tracked, number: shipmentNumber }, seed.shipper);
     const letter = await letters['shipped']?.(db, { letter: 'shipped', shipmentId });
-    expect(letter).toMatchObject({ to: 'quirin@buyer.test', subject: expect.stringContaining('shipped') });
+    expect(letter?.to).toBe('quirin@buyer.test');
+    expect(letter?.subject).toContain('shipped');
     expect(letter?.text).toContain('RR473124829DE');
     expect(
       letter?.attachments?.map(({ filename, content }) => [filename, Buffer.from(content).toString()]),
@@ -174,10 +175,10 @@ describe('shipping', () => {
   it('refuses a tracking number whose check digit is wrong, until it is confirmed', async () => {
     const { db, seed, shipmentNumber } = await packedOrder();
     const mistyped = { number: shipmentNumber, carrier: 'Parcel post', trackingNumber: 'RR 473 124 828 DE' };
-    await expect(shipShipment(mistyped, seed.shipper)).rejects.toMatchObject({
-      code: 'refused',
-      fields: { trackingNumber: expect.stringContaining('RR473124828DE is mistyped') },
-    });
+    const shipping = shipShipment(mistyped, seed.shipper);
+    await expect(shipping).rejects.toThrow('RR473124828DE is mistyped');
+    await expect(shipping).rejects.toMatchObject({ code: 'refused' });
+    await expect(shipping).rejects.toHaveProperty('fields.trackingNumber');
     expect((await db.select().from(shipments))[0]?.state).toBe('packed');
     await shipShipment({ ...mistyped, trackingConfirmed: true }, seed.shipper);
     expect((await db.select().from(shipments))[0]).toMatchObject({
@@ -191,10 +192,9 @@ describe('shipping', () => {
     const [unit = { id: 0, serial: '' }] = order.units;
     const testRunId = await seedRun(db, seed, unit.id, { result: 'passed' });
     await seedCertificate(db, seed, order, unit, { testRunId });
-    await expect(shipShipment({ ...tracked, number: shipmentNumber }, seed.shipper)).rejects.toMatchObject({
-      code: 'conflict',
-      message: expect.stringContaining('certified anew since packing'),
-    });
+    await expect(shipShipment({ ...tracked, number: shipmentNumber }, seed.shipper)).rejects.toThrow(
+      'certified anew since packing',
+    );
   });
 });
 
@@ -259,7 +259,8 @@ describe('the balance', () => {
       code: 'conflict',
     });
     const letter = await letters['balance_due']?.(db, { letter: 'balance_due', orderId: order.orderId });
-    expect(letter).toMatchObject({ to: 'quirin@buyer.test', subject: expect.stringContaining('€\u00a0289') });
+    expect(letter?.to).toBe('quirin@buyer.test');
+    expect(letter?.subject).toContain('€\u00a0289');
   });
 
   it('is not asked for before a unit has passed, nor where all is paid', async () => {
