@@ -17,6 +17,12 @@ const currency = z
   .string({ message: 'Name the currency.' })
   .trim()
   .toUpperCase()
+  .refine((code) => minorDigitsOf(code) !== null, 'Three letters, as in ISO 4217: EUR, GBP, USD.');
+
+const day = z
+  .string()
+  .trim()
+  .regex(/^\d{4}-\d{2}-\d{2}$/, 'Enter the day as 2027-03-09.')
   .refine((text) => {
     const date = new Date(`${text}T00:00:00Z`);
     return !Number.isNaN(date.getTime()) && date.toISOString().startsWith(text);
