@@ -131,19 +131,18 @@ export const batchStories: readonly BatchStory[] = [
   },
 ];
 
-/** What a buyer of a model might choose. */
-export function drawOptions(slug: string, country: string | undefined, random: Random): string[] {
+/** What a buyer of a model might choose. @param isLow whether it must be the three lower of four bands */
+export function drawOptions(slug: string, isLow: boolean, random: Random): string[] {
   const chosen: string[] = [];
   if (slug === 'holm-3') {
-    // Austria's limit on the third harmonic of 15 m is beyond what this rig is made for.
-    const isLow = country === 'AT' || random.chance(0.6);
-    const bands = isLow
-      ? ['40m', '30m', '20m']
-      : random.pick([
-          ['40m', '20m', '15m'],
-          ['30m', '20m', '15m'],
-          ['40m', '30m', '15m'],
-        ]);
+    const bands =
+      isLow || random.chance(0.6)
+        ? ['40m', '30m', '20m']
+        : random.pick([
+            ['40m', '20m', '15m'],
+            ['30m', '20m', '15m'],
+            ['40m', '30m', '15m'],
+          ]);
     chosen.push(...bands.map((band) => `band.${band}`));
   }
   if (slug !== 'voe-40' && random.chance(0.55)) chosen.push('filter.narrow');

@@ -52,8 +52,8 @@ export function buildScenes(
   let at = later(from, random.whole(60, 150));
   let stage = todo[0]?.stage;
   for (const step of todo) {
-    // Alignment begins the next morning, and so does what comes after the soak.
-    if (step.stage !== stage) at = later(at, random.whole(14, 18) * 60);
+    // Alignment begins the next morning, and a soak ends on one.
+    if (step.stage !== stage || step.title.startsWith('Soak')) at = nextMorning(at, random);
     stage = step.stage;
     const minutes = Math.max(2, Math.round(step.minutes * random.between(0.75, 1.35)));
     at = later(at, minutes);
@@ -69,6 +69,11 @@ function stepsOf({ slug, option }: { slug: string; option: readonly string[] }):
     const parsed = condition === undefined ? null : parseCondition(condition);
     return parsed === null || (parsed.ok && evaluateCondition(parsed.ast, chosen));
   });
+}
+
+function nextMorning(at: Date, random: Random): Date {
+  const midnight = Date.UTC(at.getUTCFullYear(), at.getUTCMonth(), at.getUTCDate() + 1);
+  return later(new Date(midnight), random.whole(8 * 60, 10 * 60));
 }
 
 function later(at: Date, minutes: number): Date {
@@ -93,13 +98,19 @@ async function tick(
   entry: string | undefined,
   minutes: number,
 ): Promise<void> {
-  const [step] = await w.tx
-    .select({ id: buildSteps.id })
+  unit.stepIds ??= await readStepIds(w, unit.serial);
+  const stepId = unit.stepIds.get(title);
+  invariant(stepId !== undefined, `${unit.serial} has the step “${title}”`);
+  await tickStep({ serial: unit.serial, stepId, entry, minutes }, w);
+}
+
+async function readStepIds(w: WriteContext, serial: string): Promise<Map<string, number>> {
+  const steps = await w.tx
+    .select({ id: buildSteps.id, title: buildSteps.title })
     .from(buildSteps)
     .innerJoin(units, eq(units.buildSheetRevisionId, buildSteps.buildSheetRevisionId))
-    .where(and(eq(units.serial, unit.serial), eq(buildSteps.title, title)));
-  invariant(step !== undefined, `${unit.serial} has the step “${title}”`);
-  await tickStep({ serial: unit.serial, stepId: step.id, entry, minutes }, w);
+    .where(eq(units.serial, serial));
+  return new Map(steps.map(({ id, title }) => [title, id]));
 }
 
 /** Picks so many lines of the parts that are scanned, oldest lots first. */

@@ -19,6 +19,8 @@ export interface DemoUnit {
   serial: string;
   /** Of its newest run. */
   runId: number;
+  /** Of its build sheet, by title; read when the first is ticked. */
+  stepIds?: ReadonlyMap<string, number>;
 }
 
 /** An order of the demo, filled in as its scenes are played. */

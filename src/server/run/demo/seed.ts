@@ -68,7 +68,7 @@ function unpaid(batch: DemoBatch, slug: string, { calendar, cast, random, nextBu
     unpaidOrderScene({
       ...{ at, batchNumber: () => batch.number, quantity: 1, pay: 'full', by: 'card' },
       buyer: nextBuyer(),
-      option: drawOptions(slug, undefined, random),
+      option: drawOptions(slug, false, random),
     });
   const givenUp = place(calendar.at(-4, 20));
   const paying = place(new Date(calendar.now.getTime() - 2 * 60_000));
