@@ -28,6 +28,8 @@ export function SweepPlot({ sweep, station, judgements }: Props) {
   const y = (dbc: number) => top + (Math.min(0, Math.max(lowest, dbc)) / lowest) * (height - top - bottom);
   const levels = Array.from({ length: Math.round(-lowest / 20) + 1 }, (_, index) => -20 * index);
   const limits = limitLine(sweep, station, judgements);
+  // Lettered between the carrier and its second harmonic, where nothing else stands.
+  const lettered = limits[Math.floor(limits.length / 4)];
   const drawn = analysis.harmonics.filter(({ order, freqHz }) => order <= 5 && freqHz <= highHz);
   const title = `Sweep, ${asBandLabel(band)}`;
   return (
@@ -80,7 +82,7 @@ export function SweepPlot({ sweep, station, judgements }: Props) {
           className="stroke-ink"
           strokeWidth="1.5"
         />
-        {limits.length > 0 && (
+        {lettered !== undefined && (
           <>
             <polyline
               points={limits.map(([freqHz, dbc]) => `${round(x(freqHz))},${round(y(dbc))}`).join(' ')}
@@ -89,8 +91,8 @@ export function SweepPlot({ sweep, station, judgements }: Props) {
               strokeWidth="2"
               strokeDasharray="7 5"
             />
-            <text x={width - right} y={y(limits.at(-1)?.[1] ?? 0) - 6} textAnchor="end" className="fill-stop">
-              limit {formatNumber(limits.at(-1)?.[1] ?? 0, 1)} dBc
+            <text x={x(lettered[0]) + 4} y={y(lettered[1]) - 8} textAnchor="middle" className="fill-stop">
+              limit {formatNumber(lettered[1], 1)}
             </text>
           </>
         )}
