@@ -1,6 +1,7 @@
 import { createHash, createHmac } from 'node:crypto';
 import type { APIContext, APIRoute } from 'astro';
 import type { z } from 'zod';
+import { paths } from '~/lib/paths';
 import { sessionCookieName } from '~/server/auth/sessions';
 import type { SignedIn } from '~/server/auth/sessions';
 import { db } from '~/server/db/client';
@@ -279,7 +280,7 @@ async function refusal(api: APIContext, error: unknown, form: FormData | undefin
   if (!(error instanceof DomainError)) log.error({ err: error, requestId }, 'a door failed');
   const problem = problemOf(error, requestId);
   if (form !== undefined && wantsPage(api.request)) {
-    if (problem.status === 401) return seeOther('/sign-in');
+    if (problem.status === 401) return seeOther(paths.signIn(pageOf(api)));
     const page = pageOf(api);
     const token = await keepForm(db(), new URL(page, api.url).pathname, form, problem, now);
     api.cookies.set(formReturnCookie, token, noteCookie);
