@@ -135,7 +135,7 @@ export function unitHint(quantityKey: string): string {
       return 'Hz';
     case 'yes_no':
       return 'yes or no';
-    default:
+    case undefined:
       return '';
   }
 }
@@ -212,9 +212,23 @@ export interface Judged {
 /** Judges the sheet; a closed run shows what it kept. */
 export function judgeStation(station: Station): Judged {
   const { judgements, result } = judgeRun(station.sheet);
-  for (const { testPointId, concession: _, ...kept } of station.kept) {
+  for (const {
+    testPointId,
+    verdict,
+    value,
+    U,
+    k,
+    n,
+    lower,
+    upper,
+    ruleKey,
+    ruleText,
+    pConform,
+  } of station.kept) {
     const computed = judgements.get(testPointId);
-    if (computed !== undefined) judgements.set(testPointId, { ...computed, ...kept });
+    if (computed === undefined) continue;
+    const kept = { verdict, value, U, k, n, lower, upper, ruleKey, ruleText, pConform };
+    judgements.set(testPointId, { ...computed, ...kept });
   }
   return { judgements, result };
 }
