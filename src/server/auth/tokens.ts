@@ -15,7 +15,7 @@ export function tokenHash(token: string): string {
  * written after the commit, and again, without the token being kept anywhere.
  *
  * @param secret the setting `RIGWRIGHT_SECRET`
- * @param id of the order or of the row in `sign_in_links`
+ * @param id primary key of the order or of the row in `sign_in_links`
  */
 export function linkToken(secret: string, purpose: 'order' | 'sign_in', id: number): string {
   return createHmac('sha256', secret).update(`${purpose}-link:${id}`).digest('base64url');

@@ -15,6 +15,7 @@ export async function readCertificateLetter(reader: Reader, certificateId: numbe
       modelName: models.name,
       email: contacts.email,
       erasedAt: contacts.erasedAt,
+      orderId: orders.id,
       orderNumber: orders.number,
     })
     .from(certificates)
