@@ -118,7 +118,7 @@ function resolutionLines(
   input: BudgetInput,
   names: readonly string[],
 ): UncertaintyComponent[] {
-  if (spec?.resolution == null) return [];
+  if (spec === undefined || spec.resolution === null) return [];
   const step = inBudgetUnit(spec.resolution, quantity, input);
   return step === null ? [] : names.map((name) => component(name, step / 2, 'rectangular'));
 }

@@ -133,7 +133,11 @@ function toPower(number: number, unit: ParsedUnit, options: EntryOptions): Value
         return refuse('State the drop of the detector’s diode and where it taps the load first.');
       }
       return { ok: true, value: diodeToW(size, options.detector.dropV, options.detector.tapRatio, loadOhm) };
-    default:
+    case 'W':
+    case 'A':
+    case 'Hz':
+    case 'dBc':
+    case 'yes/no':
       return { ok: true, value: size };
   }
 }

@@ -68,7 +68,7 @@ export function formatValue(value: number, quantityKey: string): string {
       return formatFrequencyError(value);
     case 'yes_no':
       return value === 1 ? 'yes' : 'no';
-    default:
+    case undefined:
       return significant(value, 3);
   }
 }

@@ -65,7 +65,8 @@ export interface PointJudgement {
   stopped: string | null;
 }
 
-const NOTHING: PointJudgement = {
+/** The judgement of a point at which nothing was read. */
+export const NOTHING_READ: PointJudgement = {
   verdict: 'not_run',
   value: null,
   atMeter: null,
@@ -181,7 +182,7 @@ function judgeCheck(readings: readonly Reading[]): PointJudgement {
   const value = Math.min(...readings.map((reading) => reading.value));
   const verdict = value === 1 ? 'pass' : 'fail';
   return {
-    ...NOTHING,
+    ...NOTHING_READ,
     verdict,
     value,
     atMeter: value,
@@ -194,10 +195,10 @@ function judgeCheck(readings: readonly Reading[]): PointJudgement {
 function judgeOne(point: TestPoint, readings: readonly Reading[], context: JudgeContext): PointJudgement {
   const quantity = quantityOf(point.quantityKey);
   const first = readings[0];
-  if (first === undefined) return NOTHING;
+  if (first === undefined) return NOTHING_READ;
   if (quantity === undefined) {
     return {
-      ...NOTHING,
+      ...NOTHING_READ,
       n: readings.length,
       stopped: `The quantity ${point.quantityKey} is not known here.`,
     };
@@ -210,7 +211,7 @@ function judgeOne(point: TestPoint, readings: readonly Reading[], context: Judge
   const productFreqHz = isRatio ? (harmonicHz ?? first.freqHz) : null;
   const atMost = readings.some((reading) => reading.atMost === true);
   const base = {
-    ...NOTHING,
+    ...NOTHING_READ,
     n: readings.length,
     atMeter: mean(readings.map((reading) => reading.value)),
     atMost,
@@ -323,7 +324,7 @@ export function judgePoint(
       worst = each;
     }
   }
-  return worst ?? NOTHING;
+  return worst ?? NOTHING_READ;
 }
 
 /** Carrier power of a band from the judgement of its power point; null where that has no value or no uncertainty. */

@@ -57,6 +57,15 @@ const sheet = (readings: RunReading[], change: Partial<RunSheet> = {}): RunSheet
 });
 
 describe('judging a run', () => {
+  it('reaches no verdict from readings of two instruments, and one again when those of one are voided', () => {
+    const other = { ...reading(2, 'rf_power', 3), instrument: { ...instrument, vswr: 1.2 } };
+    const mixed = judgeRun(sheet([reading(2, 'rf_power', 3), other]));
+    expect(mixed.judgements.get(2)).toMatchObject({ verdict: 'not_run', n: 2 });
+    expect(mixed.judgements.get(2)?.stopped).toContain('different instruments');
+    const voided = judgeRun(sheet([reading(2, 'rf_power', 3), { ...other, voided: true }]));
+    expect(voided.judgements.get(2)).toMatchObject({ verdict: 'pass', n: 1 });
+  });
+
   // ITU-R SM.329 category A: 43 + 10·lg(P), at most 50 dB.
   it.each([
     [1, -43],

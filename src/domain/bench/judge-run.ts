@@ -1,5 +1,5 @@
 import { bandLabel } from './bands';
-import { carrierOf, judgePoint } from './judge-point';
+import { NOTHING_READ, carrierOf, judgePoint } from './judge-point';
 import type { CarrierPower, JudgeContext, PointJudgement } from './judge-point';
 import type { LimitRuleKey } from './limit-rules';
 import { quantityOf } from './quantities';
@@ -46,7 +46,8 @@ export function judgeRun(sheet: RunSheet): { judgements: Map<number, PointJudgem
   const isPower = (point: TestPoint) => point.quantityKey === 'rf_power';
   for (const point of [...sheet.points].sort((a, b) => Number(isPower(b)) - Number(isPower(a)))) {
     const readings = sheet.readings.filter(({ testPointId }) => testPointId === point.id);
-    const used = readings.find(({ voided }) => !voided) ?? readings[0];
+    const counted = readings.filter(({ voided }) => !voided);
+    const used = counted[0] ?? readings[0];
     const context: JudgeContext = {
       ...sheet.context,
       instrument: used?.instrument ?? null,
@@ -54,7 +55,7 @@ export function judgeRun(sheet: RunSheet): { judgements: Map<number, PointJudgem
       carrier: point.band === null ? null : (carriers.get(point.band) ?? null),
       ruleKey: sheet.ruleKey,
     };
-    const judgement = judgePoint(point, readings, context);
+    const judgement = mixed(counted) ?? judgePoint(point, readings, context);
     judgements.set(point.id, judgement);
     if (isPower(point) && point.band !== null) carriers.set(point.band, carrierOf(judgement));
   }
@@ -70,4 +71,12 @@ export function judgeRun(sheet: RunSheet): { judgements: Map<number, PointJudgem
     }),
   );
   return { judgements, result };
+}
+
+/** One budget cannot stand for readings of two instruments, or over two paths. */
+function mixed(readings: readonly RunReading[]): PointJudgement | null {
+  const ways = new Set(readings.map(({ instrument, path }) => JSON.stringify([instrument, path])));
+  if (ways.size <= 1) return null;
+  const stopped = 'Its readings were taken with different instruments or paths: void those of one.';
+  return { ...NOTHING_READ, n: readings.length, marginText: 'no verdict', stopped };
 }

@@ -138,7 +138,7 @@ async function writeStatement(
   const { judgements } = judgeRun(sheet);
   const points = sheet.points.flatMap((point): JudgedPoint[] => {
     const judgement = judgements.get(point.id);
-    return judgement === undefined || judgement.n === 0 ? [] : [{ point, judgement }];
+    return judgement === undefined || judgement.value === null ? [] : [{ point, judgement }];
   });
   const present = (ids: (number | null)[]) => [...new Set(ids.flatMap((id) => (id === null ? [] : [id])))];
   const counted = sheet.readings.filter(({ voided }) => !voided);
