@@ -1,16 +1,23 @@
 /// <reference types="astro/client" />
 
-declare namespace App {
-  interface Locals {
-    requestId: string;
-    person: import('~/server/auth/sessions').SignedIn | null;
-    /** For reading; every write goes through a service. */
-    db: import('~/server/db/client').Reader;
-    now: Date;
-    works: import('~/server/queries/office/get-works').WorksSummary;
-    /** What the person has just done, to be said once. */
-    said: string | null;
-    /** What a refused form of this page held, and what is wrong with it. */
-    formReturn: import('~/server/form-return').FormReturn | null;
+import type { SignedIn } from '~/server/auth/sessions';
+import type { Reader } from '~/server/db/client';
+import type { FormReturn } from '~/server/form-return';
+import type { WorksSummary } from '~/server/queries/office/get-works';
+
+declare global {
+  namespace App {
+    interface Locals {
+      requestId: string;
+      person: SignedIn | null;
+      /** For reading; every write goes through a service. */
+      db: Reader;
+      now: Date;
+      works: WorksSummary;
+      /** What the person has just done, to be said once. */
+      said: string | null;
+      /** What a refused form of this page held, and what is wrong with it. */
+      formReturn: FormReturn | null;
+    }
   }
 }

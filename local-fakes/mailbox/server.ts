@@ -1,4 +1,5 @@
 import { createServer, type IncomingMessage } from 'node:http';
+import { inspect } from 'node:util';
 import { SMTPServer } from 'smtp-server';
 import { isForeign, json, listen, send, stop, styleSheet, type Answer } from '../http';
 import { htmlPart, listPage, mailPage, nothingHere } from './pages';
@@ -152,7 +153,7 @@ export async function startMailbox(options: MailboxOptions): Promise<RunningMail
     try {
       send(response, answer(store, request, url));
     } catch (error) {
-      console.error('The mailbox failed:', error);
+      process.stderr.write(`The mailbox failed: ${inspect(error)}\n`);
       send(response, json(500, { error: 'The mailbox failed' }));
     }
   });

@@ -1,4 +1,5 @@
 import { createServer, type IncomingMessage } from 'node:http';
+import { inspect } from 'node:util';
 import { isForeign, json, listen, readBody, redirect, send, stop, styleSheet, type Answer } from '../http';
 import { assertLoopback } from '../loopback';
 import { answerApi } from './api';
@@ -101,7 +102,7 @@ export async function startStripeFake(options: StripeFakeOptions): Promise<Runni
         send(response, made);
       },
       (error: unknown) => {
-        console.error('The payment stand-in failed:', error);
+        process.stderr.write(`The payment stand-in failed: ${inspect(error)}\n`);
         send(response, json(500, { error: { type: 'api_error', message: 'The stand-in failed' } }));
       },
     );

@@ -22,7 +22,10 @@ const DAY_MS = 86_400_000;
 function utcOf(day: Day): Date {
   invariant(/^\d{4}-\d{2}-\d{2}$/.test(day), `"${day}" is a day as YYYY-MM-DD`);
   const date = new Date(`${day}T00:00:00Z`);
-  invariant(date.toJSON()?.slice(0, 10) === day, `"${day}" is a day of the calendar`);
+  invariant(
+    !Number.isNaN(date.getTime()) && date.toISOString().startsWith(day),
+    `"${day}" is a day of the calendar`,
+  );
   return date;
 }
 

@@ -8,7 +8,7 @@ const bold = style('strong', 10);
 const words = (text: string) => text.replace(/\s/gu, '');
 
 describe('wrapping', () => {
-  const texts = fc.string({ unit: fc.constantFrom(...'aW i.Ωµη−ЖΑ שa \n'), maxLength: 120 });
+  const texts = fc.string({ unit: fc.constantFrom(...Array.from('aW i.Ωµη−ЖΑ שa \n')), maxLength: 120 });
 
   it('keeps every character and every line within the width', () => {
     fc.assert(

@@ -31,7 +31,8 @@ describe('UPU S10 (second hand and computed)', () => {
         (n, at, by) => {
           const serial = String(n).padStart(8, '0');
           const digit = s10CheckDigit(serial);
-          const wrong = serial.slice(0, at) + ((Number(serial.charAt(at)) + by) % 10) + serial.slice(at + 1);
+          const mistyped = (Number(serial.charAt(at)) + by) % 10;
+          const wrong = `${serial.slice(0, at)}${mistyped}${serial.slice(at + 1)}`;
           fc.pre(digit !== 5);
           expect(checkTracking(`RR${wrong}${digit}PL`).kind).toBe('s10_wrong');
         },

@@ -92,7 +92,7 @@ function happeningsOf(history: UnitHistory, timeZone: string): Record<WorkStage,
         ? []
         : [{ at: shipment.packedAt, text: 'Packed', meta: meta(shipment.packedAt, null) }],
     ship:
-      shipment?.shippedAt == null
+      shipment === null || shipment.shippedAt === null
         ? []
         : [
             {

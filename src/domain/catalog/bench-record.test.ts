@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { benchRecord, quantile } from './bench-record';
 
+const near = (value: number): unknown => expect.closeTo(value, 10);
+
 describe('quantile', () => {
   it.each([
     [[], 0.5, null],
@@ -37,8 +39,8 @@ describe('benchRecord', () => {
       {
         band: '40m',
         medianPowerW: 3.1,
-        powerFromW: expect.closeTo(3.02, 10),
-        powerToW: expect.closeTo(3.18, 10),
+        powerFromW: near(3.02),
+        powerToW: near(3.18),
         worstHarmonicDbc: -51,
         medianCurrentA: 0.61,
       },

@@ -67,11 +67,13 @@ function tidy(text: string): string {
     .replace(/[\s\p{Zs}\p{Zl}\p{Zp}]/gu, (blank) =>
       blank === '\u00a0' || blank === '\u202f' ? '\u00a0' : ' ',
     )
-    .replace(/[\u00ad\u061c\u200b\u200e\u200f\u202a-\u202e\u2060-\u2069\ufeff\ufe00-\ufe0f]/gu, '');
+    .replace(/[\ufe00-\ufe0f\u00ad\u061c\u200b\u200e\u200f\u202a-\u202e\u2060-\u2069\ufeff]/gu, '');
 }
 
 function has(font: FontKey, cluster: string): boolean {
-  return [...cluster].every((sign) => measuringFont(font).hasGlyphForCodePoint(sign.codePointAt(0) ?? 0));
+  return Array.from(cluster).every((sign) =>
+    measuringFont(font).hasGlyphForCodePoint(sign.codePointAt(0) ?? 0),
+  );
 }
 
 function rtl(cluster: string): boolean {
@@ -88,7 +90,7 @@ function spelledOut(sign: string): string {
 function placed(cluster: string, face: Face): Run[] {
   const font = CHAINS[face].find((key) => has(key, cluster));
   if (font) return [{ font, text: cluster }];
-  const signs = [...cluster];
+  const signs = Array.from(cluster);
   if (signs.length > 1) return signs.flatMap((sign) => placed(sign, face));
   return [{ font: CHAINS[face][0] ?? 'wide', text: spelledOut(cluster) }];
 }

@@ -33,7 +33,7 @@ function formatK(k: number): string {
   return Number.isInteger(Math.round(k * 100) / 100) ? k.toFixed(0) : k.toFixed(2);
 }
 
-const allSame = <T>(values: readonly T[]): boolean => values.every((value) => value === values[0]);
+const allSame = (values: readonly unknown[]): boolean => values.every((value) => value === values[0]);
 
 /** What a whole column shares stands in a row under it, what differs from band to band beside the value. */
 function sharedLimit({ points }: Column): string | undefined {

@@ -8,7 +8,6 @@ import {
   fillAndStroke,
   lineTo,
   moveTo,
-  PDFDocument,
   setDashPattern,
   setFillingRgbColor,
   setFontAndSize,
@@ -18,7 +17,7 @@ import {
   showText,
   stroke,
 } from 'pdf-lib';
-import type { PDFName, PDFOperator, PDFPage } from 'pdf-lib';
+import type { PDFDocument, PDFName, PDFOperator, PDFPage } from 'pdf-lib';
 import type { Colour } from './colours';
 import { FontBook, runWidth, splitRuns } from './fonts';
 import type { FontKey } from './fonts';

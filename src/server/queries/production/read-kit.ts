@@ -25,7 +25,7 @@ export interface KitPick {
 }
 
 export interface KitLine extends ResolvedLine, LineProgress {
-  part: Omit<LineOfPart, 'condition' | 'quantity' | 'designators'>;
+  part: Pick<LineOfPart, 'partNumber' | 'partDescription' | 'partUnit' | 'trace'>;
   picks: KitPick[];
 }
 
@@ -46,13 +46,13 @@ export async function readKit(reader: Reader, unit: UnitOfKit): Promise<KitLine[
   return resolved.flatMap((line) => {
     const found = byId.get(line.lineId);
     if (found === undefined) return [];
-    const { condition: _, quantity: _q, designators: _d, ...part } = found;
-    const cover = part.trace === 'each' ? null : (batch?.get(line.lineId) ?? null);
+    const { partNumber, partDescription, partUnit, trace } = found;
+    const cover = trace === 'each' ? null : (batch?.get(line.lineId) ?? null);
     return [
       {
         ...line,
         ...progressOf(line, own, cover),
-        part,
+        part: { partNumber, partDescription, partUnit, trace },
         picks: own.filter((pick) => pick.lineId === line.lineId),
       },
     ];
