@@ -52,9 +52,12 @@ export const test = base.extend<Fixtures, WorkerFixtures>({
   // eslint-disable-next-line no-empty-pattern
   watch: async ({}, use) => {
     const faults: string[] = [];
+    const own = new URL(setting('RIGWRIGHT_E2E_URL')).origin;
     await use((page) => {
       page.on('console', (message) => {
-        if (message.type() === 'error') faults.push(`${page.url()}: ${message.text()}`);
+        // The stand-ins have pages of their own.
+        if (message.type() === 'error' && page.url().startsWith(own))
+          faults.push(`${page.url()}: ${message.text()}`);
       });
       page.on('pageerror', (error) => faults.push(`${page.url()}: ${error.message}`));
       page.on('response', (response) => {
