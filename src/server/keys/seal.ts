@@ -1,4 +1,4 @@
-import { createCipheriv, createDecipheriv, randomBytes, scryptSync } from 'node:crypto';
+import { createCipheriv, createDecipheriv, createHash, randomBytes, scryptSync } from 'node:crypto';
 
 /** Named in the sealed text and bound to it, so that a later scheme can stand beside this one. */
 const SCHEME = 'sealed-key-1';
@@ -45,7 +45,14 @@ export function openPrivateKey(sealed: string, secret: string): string {
   }
 }
 
+const drawn = new Map<string, Buffer>();
+
+/** Drawing a key takes tens of milliseconds on purpose, and the works' key is opened for every certificate. */
 function drawKey(secret: string, salt: Buffer): Buffer {
   if (secret === '') throw new Error('A secret is needed to seal or open the signing key.');
-  return scryptSync(secret, salt, KEY_BYTES);
+  const name = createHash('sha256').update(salt).update(secret).digest('hex');
+  const key = drawn.get(name) ?? scryptSync(secret, salt, KEY_BYTES);
+  drawn.clear();
+  drawn.set(name, key);
+  return key;
 }

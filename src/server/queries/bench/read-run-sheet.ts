@@ -113,18 +113,31 @@ async function listReadings(reader: Reader, runId: number): Promise<StoredReadin
     .leftJoin(paths, eq(paths.id, pathRevisions.pathId))
     .where(eq(readings.testRunId, runId))
     .orderBy(asc(readings.testPointId), asc(readings.readingNo));
+  const instrumentOf = onceEach((spec) => instrumentSpecSchema.parse(spec));
+  const pathOf = onceEach((spec) => pathSpecSchema.parse(spec));
   return rows.map(({ reading, instrumentSpec, instrumentNumber, pathSpec, pathNumber }) => {
     const { band, voidedAt, ...rest } = reading;
     return {
       ...rest,
       band: asBand(band),
       voided: voidedAt !== null,
-      instrument: instrumentSpec === null ? null : instrumentSpecSchema.parse(instrumentSpec),
-      path: pathSpec === null ? null : pathSpecSchema.parse(pathSpec),
+      instrument: instrumentOf(rest.instrumentRevisionId, instrumentSpec),
+      path: pathOf(rest.pathRevisionId, pathSpec),
       instrumentNumber,
       pathNumber,
     };
   });
+}
+
+/** Many readings share a revision; its JSON is checked once. */
+function onceEach<T>(parse: (spec: unknown) => T): (revisionId: number | null, spec: unknown) => T | null {
+  const known = new Map<number, T>();
+  return (revisionId, spec) => {
+    if (revisionId === null) return null;
+    const parsed = known.get(revisionId) ?? parse(spec);
+    known.set(revisionId, parsed);
+    return parsed;
+  };
 }
 
 /** The instruments and paths of these revisions, for a certificate. */

@@ -6,8 +6,8 @@ import type { PaymentFact } from './payment-fact';
 
 /** A request that is still under way opens its checkout itself. */
 const underWayMs = 20_000;
-/** The provider's page must end 30 minutes ahead at least, so a checkout cannot be opened much later. */
-const openableMs = 5 * 60_000;
+/** The provider's page must end 30 minutes ahead at least and ends 31 after the start: later it is refused. */
+const openableMs = 50_000;
 
 /** Checkouts that were just written but not opened: the process ended, or the provider did not answer. */
 export async function listUnopenedCheckouts(ctx: CallContext): Promise<number[]> {
