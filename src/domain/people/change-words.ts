@@ -1,3 +1,5 @@
+import { formatMoney } from '~/domain/money/format-money';
+
 /** Entries of the ledger of changes in words; one that is missing here is shown by its own name. */
 const words: Readonly<Record<string, string>> = {
   'person.ask_link': 'asked for a sign-in link',
@@ -75,13 +77,26 @@ export function changeInWords(action: string): string {
   return words[action] ?? action.replaceAll('_', ' ').replace('.', ': ');
 }
 
-/** An entry's details on one line: `state: usable → barred, reason: cracked`. */
+/** An entry's details on one line: `state: usable → barred, reason: cracked`; sums with their currency. */
 export function detailsInWords(details: Record<string, unknown>): string {
+  const currency = typeof details['currency'] === 'string' ? details['currency'] : undefined;
   return Object.entries(details)
-    .flatMap(([name, value]) =>
-      value === null || value === undefined ? [] : [`${spaced(name)}: ${said(value)}`],
-    )
+    .flatMap(([name, value]) => {
+      if (value === null || value === undefined) return [];
+      if (currency !== undefined) {
+        if (name === 'currency') return [];
+        const sum = sumInWords(name, value, currency);
+        if (sum !== undefined) return [sum];
+      }
+      return [`${spaced(name)}: ${said(value)}`];
+    })
     .join(', ');
+}
+
+/** `totalMinor: 71300` as `total: € 713`. */
+function sumInWords(name: string, minor: unknown, currency: string): string | undefined {
+  if (!name.endsWith('Minor') || typeof minor !== 'number') return undefined;
+  return `${spaced(name.slice(0, -'Minor'.length))}: ${formatMoney({ minor, currency })}`;
 }
 
 function said(value: unknown): string {
