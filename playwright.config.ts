@@ -10,8 +10,8 @@ export default defineConfig({
   testDir: 'tests/e2e',
   testMatch: '**/*.e2e.ts',
   outputDir: '.test/e2e-results',
-  // The tests share one application and its demo works.
-  workers: 1,
+  // The tests share one application and its demo works; each orders and changes only what is its own.
+  workers: 2,
   timeout: 120_000,
   forbidOnly: process.env['CI'] !== undefined,
   reporter: [['list'], ['json', { outputFile: process.env['RIGWRIGHT_E2E_REPORT'] ?? '.test/e2e.json' }]],

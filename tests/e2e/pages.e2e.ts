@@ -2,13 +2,17 @@ import { AxeBuilder } from '@axe-core/playwright';
 import type { Page } from 'playwright/test';
 import { expect, setting, test } from './fixtures';
 import { listExamplePages, type ExamplePage } from './page-list';
-import type { Viewer } from './people';
+import { askForLink, waitForIslands, type Viewer } from './people';
 
 const viewers: Viewer[] = ['visitor', 'buyer', 'owner', 'builder', 'tester', 'shipper', 'bookkeeper'];
 const wide = { width: 1440, height: 900 };
 
+// They only look, so they need not wait for one another.
+test.describe.configure({ mode: 'parallel' });
+
 let pages: ExamplePage[] = [];
 test.beforeAll(async ({ database }) => {
+  await askForLink(setting('RIGWRIGHT_E2E_URL'));
   pages = await listExamplePages(database, setting('RIGWRIGHT_SECRET'));
 });
 
@@ -33,14 +37,15 @@ for (const viewer of viewers) {
   test(`every page for the ${viewer}: can be used by everybody, fits, and breaks nothing`, async ({
     login,
   }) => {
-    test.setTimeout(180_000);
+    test.setTimeout(400_000);
     const page = await login(viewer, { viewport: wide, colorScheme: 'light', reducedMotion: 'reduce' });
     const mine = pages.filter((each) => each.viewers.includes(viewer) && each.status !== 500);
     expect(mine.length).toBeGreaterThan(0);
     const isFirst = (each: ExamplePage) => each.viewers[0] === viewer;
     for (const each of mine) {
       await test.step(each.path, async () => {
-        const answer = await page.goto(each.path, { waitUntil: 'networkidle' });
+        const answer = await page.goto(each.path);
+        await waitForIslands(page);
         expect.soft(answer?.status(), `${each.path} answers`).toBe(each.status);
         expect.soft(await findSerious(page), `${each.path}, light`).toEqual([]);
         expect.soft(await overflowOf(page), `${each.path} at ${wide.width} px`).toBeLessThanOrEqual(0);

@@ -17,3 +17,19 @@ export async function signIn(page: Page, role: Role): Promise<void> {
   await form.getByRole('button', { name: 'Sign in' }).click();
   await page.waitForURL(role === 'buyer' ? `**${paths.myOrders()}` : `**${paths.works()}`);
 }
+
+/** Has a sign-in link mailed to the buyer, so that there is one to look at. */
+export async function askForLink(baseUrl: string): Promise<void> {
+  const buyer = demoSignIns.find(({ role }) => role === 'buyer');
+  const answer = await fetch(new URL(paths.api.signInLinks(), baseUrl), {
+    method: 'POST',
+    headers: { 'content-type': 'application/json' },
+    body: JSON.stringify({ email: buyer?.email }),
+  });
+  if (!answer.ok) throw new Error(`Asking for a sign-in link answers ${answer.status}.`);
+}
+
+/** Waits until a page has what it is made of: its islands are alive. */
+export async function waitForIslands(page: Page): Promise<void> {
+  await page.waitForFunction(() => document.querySelector('astro-island[ssr]') === null);
+}
