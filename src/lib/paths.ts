@@ -39,7 +39,7 @@ export const paths = {
     withQuery(`/works/models/${segment(slug)}/bom-import`, {
       file: fileId === undefined ? undefined : String(fileId),
     }),
-  stores: (query: { q?: string | undefined; page?: string | undefined } = {}) =>
+  stores: (query: Record<'q' | 'sort' | 'desc' | 'page', string | undefined> | Record<string, never> = {}) =>
     withQuery('/works/parts', query),
   part: (number: string) => `/works/parts/${segment(number)}`,
   receive: (part?: string) => withQuery('/works/lots/receive', { part }),

@@ -31,6 +31,12 @@ export const newPart = z.object({
 export type NewPart = z.infer<typeof newPart>;
 
 export const partsSearch = z.object({
+  sort: z.enum(['number', 'description', 'usable', 'onHand']).catch('number'),
+  desc: z
+    .literal('yes')
+    .optional()
+    .catch(undefined)
+    .transform((value) => value !== undefined),
   q: optional(80),
   page: z.coerce.number().int().min(1).catch(1),
 });

@@ -16,7 +16,9 @@ export async function migrateDatabase(url: string, migrationsFolder: string): Pr
   try {
     const [rows] = await connection.query<mysql.RowDataPacket[]>('SELECT GET_LOCK(?, 60) AS got', [lockName]);
     if (rows[0]?.['got'] !== 1) {
-      throw new Error('Another instance has been changing the database for a minute. Start again when it is done.');
+      throw new Error(
+        'Another instance has been changing the database for a minute. Start again when it is done.',
+      );
     }
     await migrate(drizzle(connection, { casing: 'snake_case' }), { migrationsFolder });
   } finally {

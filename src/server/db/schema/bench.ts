@@ -1,4 +1,15 @@
-import { boolean, double, index, int, json, mysqlEnum, mysqlTable, text, unique, varchar } from 'drizzle-orm/mysql-core';
+import {
+  boolean,
+  double,
+  index,
+  int,
+  json,
+  mysqlEnum,
+  mysqlTable,
+  text,
+  unique,
+  varchar,
+} from 'drizzle-orm/mysql-core';
 import { testPlanRevisions, testPoints } from './catalog';
 import { code, country, id, moment, ref } from './columns';
 import { files } from './files';
@@ -25,7 +36,9 @@ export const instrumentRevisions = mysqlTable(
     createdAt: moment().notNull(),
     retiredAt: moment(),
   },
-  (table) => [unique('instrument_revisions_instrument_id_revision_unique').on(table.instrumentId, table.revision)],
+  (table) => [
+    unique('instrument_revisions_instrument_id_revision_unique').on(table.instrumentId, table.revision),
+  ],
 );
 
 export const paths = mysqlTable('paths', {
@@ -167,7 +180,13 @@ export const readings = mysqlTable(
     voidReason: varchar({ length: 300 }),
     version: int().notNull().default(1),
   },
-  (table) => [unique('readings_test_run_id_test_point_id_reading_no_unique').on(table.testRunId, table.testPointId, table.readingNo)],
+  (table) => [
+    unique('readings_test_run_id_test_point_id_reading_no_unique').on(
+      table.testRunId,
+      table.testPointId,
+      table.readingNo,
+    ),
+  ],
 );
 
 /** The verdict on each test point as a closed run keeps it, with the limit as it was resolved. */

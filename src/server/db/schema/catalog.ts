@@ -52,7 +52,10 @@ export const optionGroups = mysqlTable(
   },
   (table) => [
     unique('option_groups_model_id_key_unique').on(table.modelId, table.key),
-    check('option_groups_chosen_check', sql`${table.minChosen} >= 0 and ${table.minChosen} <= ${table.maxChosen}`),
+    check(
+      'option_groups_chosen_check',
+      sql`${table.minChosen} >= 0 and ${table.minChosen} <= ${table.maxChosen}`,
+    ),
   ],
 );
 
@@ -173,7 +176,12 @@ export const buildSteps = mysqlTable(
     /** What is to be written down at the step, if anything: `{ label, unit, lower, upper }`. */
     entry: json().$type<unknown>(),
   },
-  (table) => [unique('build_steps_build_sheet_revision_id_position_unique').on(table.buildSheetRevisionId, table.position)],
+  (table) => [
+    unique('build_steps_build_sheet_revision_id_position_unique').on(
+      table.buildSheetRevisionId,
+      table.position,
+    ),
+  ],
 );
 
 export const testPlanRevisions = mysqlTable(

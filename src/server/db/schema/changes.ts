@@ -1,4 +1,14 @@
-import { index, int, json, mysqlEnum, mysqlTable, primaryKey, text, unique, varchar } from 'drizzle-orm/mysql-core';
+import {
+  index,
+  int,
+  json,
+  mysqlEnum,
+  mysqlTable,
+  primaryKey,
+  text,
+  unique,
+  varchar,
+} from 'drizzle-orm/mysql-core';
 import { code, id, moment, ref } from './columns';
 import { users } from './people';
 
@@ -68,7 +78,12 @@ export const idempotencyKeys = mysqlTable(
     createdAt: moment().notNull(),
   },
   (table) => [
-    unique('idempotency_keys_actor_route_key_step_unique').on(table.actor, table.route, table.key, table.step),
+    unique('idempotency_keys_actor_route_key_step_unique').on(
+      table.actor,
+      table.route,
+      table.key,
+      table.step,
+    ),
     index('idempotency_keys_created_at_idx').on(table.createdAt),
   ],
 );

@@ -44,5 +44,8 @@ export const shipmentUnits = mysqlTable(
       .notNull()
       .references(() => certificates.id),
   },
-  (table) => [primaryKey({ columns: [table.shipmentId, table.unitId] }), index('shipment_units_unit_id_idx').on(table.unitId)],
+  (table) => [
+    primaryKey({ columns: [table.shipmentId, table.unitId] }),
+    index('shipment_units_unit_id_idx').on(table.unitId),
+  ],
 );

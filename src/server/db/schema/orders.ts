@@ -1,5 +1,15 @@
 import { sql } from 'drizzle-orm';
-import { check, index, int, json, mysqlEnum, mysqlTable, text, unique, varchar } from 'drizzle-orm/mysql-core';
+import {
+  check,
+  index,
+  int,
+  json,
+  mysqlEnum,
+  mysqlTable,
+  text,
+  unique,
+  varchar,
+} from 'drizzle-orm/mysql-core';
 import { models, spares } from './catalog';
 import { code, country, currency, id, moment, ref, whole } from './columns';
 import { users } from './people';
@@ -54,7 +64,10 @@ export const orders = mysqlTable(
     cancelledAt: moment(),
     version: int().notNull().default(1),
   },
-  (table) => [index('orders_buyer_user_id_idx').on(table.buyerUserId), index('orders_state_idx').on(table.state, table.placedAt)],
+  (table) => [
+    index('orders_buyer_user_id_idx').on(table.buyerUserId),
+    index('orders_state_idx').on(table.state, table.placedAt),
+  ],
 );
 
 export const orderLines = mysqlTable(
@@ -123,7 +136,10 @@ export const checkouts = mysqlTable(
     createdAt: moment().notNull(),
     expiresAt: moment().notNull(),
   },
-  (table) => [index('checkouts_order_id_idx').on(table.orderId), index('checkouts_state_idx').on(table.state, table.expiresAt)],
+  (table) => [
+    index('checkouts_order_id_idx').on(table.orderId),
+    index('checkouts_state_idx').on(table.state, table.expiresAt),
+  ],
 );
 
 export const payments = mysqlTable(
@@ -182,5 +198,8 @@ export const providerEvents = mysqlTable(
     appliedAt: moment(),
     note: varchar({ length: 300 }).notNull().default(''),
   },
-  (table) => [index('provider_events_state_idx').on(table.state, table.receivedAt), index('provider_events_object_id_idx').on(table.objectId)],
+  (table) => [
+    index('provider_events_state_idx').on(table.state, table.receivedAt),
+    index('provider_events_object_id_idx').on(table.objectId),
+  ],
 );

@@ -1,8 +1,25 @@
 import { sql } from 'drizzle-orm';
 import type { AnyMySqlColumn } from 'drizzle-orm/mysql-core';
-import { check, double, index, int, json, mysqlEnum, mysqlTable, unique, varchar } from 'drizzle-orm/mysql-core';
+import {
+  check,
+  double,
+  index,
+  int,
+  json,
+  mysqlEnum,
+  mysqlTable,
+  unique,
+  varchar,
+} from 'drizzle-orm/mysql-core';
 import { testRuns } from './bench';
-import { bomLines, bomRevisions, buildSheetRevisions, buildSteps, models, testPlanRevisions } from './catalog';
+import {
+  bomLines,
+  bomRevisions,
+  buildSheetRevisions,
+  buildSteps,
+  models,
+  testPlanRevisions,
+} from './catalog';
 import { code, currency, id, moment, ref, whole } from './columns';
 import { files } from './files';
 import { orderLines } from './orders';
@@ -103,7 +120,10 @@ export const unitAllocations = mysqlTable(
     fromAt: moment().notNull(),
     untilAt: moment(),
   },
-  (table) => [index('unit_allocations_unit_id_idx').on(table.unitId), index('unit_allocations_order_line_id_idx').on(table.orderLineId)],
+  (table) => [
+    index('unit_allocations_unit_id_idx').on(table.unitId),
+    index('unit_allocations_order_line_id_idx').on(table.orderLineId),
+  ],
 );
 
 /** So many of a part from a lot, for a BOM line, to a unit or to a whole batch. */
@@ -158,7 +178,13 @@ export const stepRecords = mysqlTable(
     doneAt: moment().notNull(),
     byUserId: ref().references(() => users.id),
   },
-  (table) => [unique('step_records_unit_id_build_step_id_round_unique').on(table.unitId, table.buildStepId, table.round)],
+  (table) => [
+    unique('step_records_unit_id_build_step_id_round_unique').on(
+      table.unitId,
+      table.buildStepId,
+      table.round,
+    ),
+  ],
 );
 
 /** Work on a unit that had gone further. */

@@ -1,15 +1,6 @@
 import { sql } from 'drizzle-orm';
 import type { AnyMySqlColumn } from 'drizzle-orm/mysql-core';
-import {
-  boolean,
-  check,
-  index,
-  int,
-  mysqlEnum,
-  mysqlTable,
-  unique,
-  varchar,
-} from 'drizzle-orm/mysql-core';
+import { boolean, check, index, int, mysqlEnum, mysqlTable, unique, varchar } from 'drizzle-orm/mysql-core';
 import { bomRevisions, models } from './catalog';
 import { code, country, currency, id, moment, ref, whole } from './columns';
 import { users } from './people';
@@ -58,7 +49,13 @@ export const partAlternates = mysqlTable(
     modelId: ref().references((): AnyMySqlColumn => models.id),
     rank: int().notNull(),
   },
-  (table) => [unique('part_alternates_part_alternate_model_unique').on(table.partId, table.alternatePartId, table.modelId)],
+  (table) => [
+    unique('part_alternates_part_alternate_model_unique').on(
+      table.partId,
+      table.alternatePartId,
+      table.modelId,
+    ),
+  ],
 );
 
 /** One receipt of a part. `onHand` is kept by the same transaction as each store entry. */

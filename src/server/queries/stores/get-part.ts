@@ -13,8 +13,6 @@ import {
   userProfiles,
 } from '~/server/db/schema';
 
-export type PartPage = NonNullable<Awaited<ReturnType<typeof getPart>>>;
-
 /** A part with its lots, where it is used, what may stand in its place, and its newest store entries. */
 export async function getPart(reader: Reader, number: string) {
   const [part] = await reader.select().from(parts).where(eq(parts.number, number));

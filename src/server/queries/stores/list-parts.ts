@@ -1,4 +1,4 @@
-import { and, asc, count, eq, inArray, like, or, sql } from 'drizzle-orm';
+import { and, asc, count, desc, eq, inArray, like, or, sql } from 'drizzle-orm';
 import type { Reader } from '~/server/db/client';
 import { bomLines, bomRevisions, lots, models, parts } from '~/server/db/schema';
 
@@ -21,10 +21,26 @@ export interface PartRow {
 
 export const partsPerPage = 50;
 
-/** The parts of the books by number, a page of them; `q` searches number, description and value. */
+/** What the parts can be ordered by. */
+const orders = {
+  number: parts.number,
+  description: parts.description,
+  usable: sql`usable`,
+  onHand: sql`on_hand_sum`,
+} as const;
+
+interface Wanted {
+  /** Searches number, description and value. */
+  q?: string | undefined;
+  page: number;
+  sort: keyof typeof orders;
+  desc: boolean;
+}
+
+/** The parts of the books, a page of them. */
 export async function listParts(
   reader: Reader,
-  { q, page }: { q?: string | undefined; page: number },
+  { q, page, sort, desc: descending }: Wanted,
 ): Promise<{ rows: PartRow[]; total: number }> {
   const where = q === undefined ? undefined : matches(q);
   const [found, counted] = await Promise.all([
@@ -37,8 +53,8 @@ export async function listParts(
         footprint: parts.footprint,
         unit: parts.unit,
         trace: parts.trace,
-        onHand: sql<string>`coalesce(sum(${lots.onHand}), 0)`,
-        usable: sql<string>`coalesce(sum(if(${lots.state} = 'usable', ${lots.onHand}, 0)), 0)`,
+        onHand: sql<string>`coalesce(sum(${lots.onHand}), 0)`.as('on_hand_sum'),
+        usable: sql<string>`coalesce(sum(if(${lots.state} = 'usable', ${lots.onHand}, 0)), 0)`.as('usable'),
         valueMinor: sql<
           string | null
         >`sum(round(${lots.costMinor} * ${lots.onHand} / ${lots.quantityReceived}))`,
@@ -47,7 +63,7 @@ export async function listParts(
       .leftJoin(lots, eq(lots.partId, parts.id))
       .where(where)
       .groupBy(parts.id)
-      .orderBy(asc(parts.number))
+      .orderBy((descending ? desc : asc)(orders[sort]), asc(parts.number))
       .limit(partsPerPage)
       .offset((page - 1) * partsPerPage),
     reader.select({ n: count() }).from(parts).where(where),
