@@ -56,7 +56,7 @@ function Bench({ station: first, equipment, personId, mayTest, formKey }: Props)
   const entries = useEntries(runId, refetch);
   const isOwn = stored.run.testerUserId === personId;
   const editable = stored.run.state === 'open' && isOwn && mayTest;
-  const { chosenFor, choose } = useEquipment(equipment, stored.sheet.readings);
+  const { chosenFor, choose } = useEquipment(equipment, stored.sheet.readings, stored.sheet.context.testedOn);
   const coming = entries.kept.filter(({ refused }) => refused === undefined);
   const station = coming.reduce((sheet, { entry }) => withEntry(sheet, equipment, entry), stored);
   const cells = useCells({ station, equipment, entries, chosenFor, editable });

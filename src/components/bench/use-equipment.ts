@@ -1,5 +1,6 @@
 import { useEffect, useState } from 'react';
 import { z } from 'zod';
+import { bestInstrument } from '~/domain/bench/best-instrument';
 import { quantityOf } from '~/domain/bench/quantities';
 import type { StationReading } from '~/schemas/bench-station';
 import type { Equipment } from './run-sheet';
@@ -23,10 +24,11 @@ function remembered(): Record<string, Chosen> {
   }
 }
 
-/** Instrument and path by quantity: as last chosen on this bench, as last read in this run, or the first that fits. */
+/** Instrument and path by quantity: as last chosen on this bench, as last read in this run, or the best that fits. */
 export function useEquipment(
   equipment: Equipment,
   readings: readonly StationReading[],
+  testedOn: string,
 ): { chosenFor: (quantityKey: string) => Chosen; choose: (quantityKey: string, chosen: Chosen) => void } {
   const [byQuantity, setByQuantity] = useState<Record<string, Chosen>>({});
   useEffect(() => setByQuantity(remembered()), []);
@@ -44,11 +46,8 @@ export function useEquipment(
     if (read !== undefined && isInUse(read)) {
       return { instrumentRevisionId: read.instrumentRevisionId, pathRevisionId: read.pathRevisionId };
     }
-    const fits = equipment.instruments.find(({ spec }) =>
-      quantity?.unit === 'dBc' ? spec.linearityDb !== null : spec.quantities[quantityKey] !== undefined,
-    );
     return {
-      instrumentRevisionId: fits?.revisionId ?? null,
+      instrumentRevisionId: bestInstrument(equipment.instruments, quantityKey, testedOn)?.revisionId ?? null,
       pathRevisionId: quantity?.pathApplies === true ? (equipment.paths[0]?.revisionId ?? null) : null,
     };
   };
