@@ -1,30 +1,12 @@
-import type { StaffRole } from '../../src/domain/people/roles';
-import type { InstrumentSpec, PathSpec } from '../../src/domain/bench/types';
-import type { Db } from '../../src/server/db/client';
-import {
-  models,
-  testPlanRevisions,
-  testPoints,
-  units,
-  userProfiles,
-  userRoles,
-  users,
-  works,
-} from '../../src/server/db/schema';
-import { createInstrument } from '../../src/server/services/bench/create-instrument';
-import { createPath } from '../../src/server/services/bench/create-path';
-import type { CallContext } from '../../src/server/write';
+import type { InstrumentSpec, PathSpec } from '~/domain/bench/types';
+import type { Db } from '~/server/db/client';
+import { models, testPlanRevisions, testPoints, units, works } from '~/server/db/schema';
+import { createInstrument } from '~/server/services/bench/create-instrument';
+import { createPath } from '~/server/services/bench/create-path';
+import type { CallContext } from '~/server/write';
+import { seedPerson } from './people';
 
 type NewPoint = Omit<typeof testPoints.$inferInsert, 'testPlanRevisionId' | 'position'>;
-
-/** A person of the works, and the context in which their calls are made. */
-export async function seedPerson(db: Db, name: string, roles: StaffRole[]): Promise<number> {
-  const [{ insertId: userId }] = await db.insert(users).values({ createdAt: new Date() });
-  const email = `${name.toLowerCase().replaceAll(' ', '.')}@thistledown.example`;
-  await db.insert(userProfiles).values({ userId, name, email });
-  if (roles.length > 0) await db.insert(userRoles).values(roles.map((role) => ({ userId, role })));
-  return userId;
-}
 
 /** A call on behalf of a person. */
 export function callAs(db: Db, userId: number, now = new Date('2027-03-09T13:00:00Z')): CallContext {
@@ -94,12 +76,6 @@ export function buildPlan(bands: { band: string; freqHz: number }[]): NewPoint[]
   });
 }
 
-export const threeBands = [
-  { band: '40m', freqHz: 7_030_000 },
-  { band: '30m', freqHz: 10_116_000 },
-  { band: '20m', freqHz: 14_060_000 },
-];
-
 /**
  * A works with a tester and an owner, a model with a test plan, one unit of it at its final test, an
  * instrument and a path.
@@ -113,8 +89,8 @@ export async function seedBench(db: Db, plan: NewPoint[] = buildPlan([{ band: '2
     timeZone: 'Europe/Dublin',
     currency: 'EUR',
   });
-  const owner = await seedPerson(db, 'Mara Quill', ['owner']);
-  const tester = await seedPerson(db, 'Ines Aldous', ['tester']);
+  const owner = await seedPerson(db, { name: 'Mara Quill', roles: ['owner'] });
+  const tester = await seedPerson(db, { name: 'Ines Aldous', roles: ['tester'] });
   const [{ insertId: modelId }] = await db.insert(models).values({
     slug: 'holm-3',
     serialPrefix: 'H3',

@@ -13,7 +13,8 @@ import {
   units,
 } from '~/server/db/schema';
 import type { CallContext } from '~/server/write';
-import { callAs, seedPerson } from './bench';
+import { callAs } from './bench';
+import { seedPerson } from './people';
 import { at, seedBatch, seedModel, seedWorks } from './catalog';
 import { seedPaidOrder } from './orders';
 
@@ -43,9 +44,9 @@ export async function seedDispatch(db: Db): Promise<DispatchSeed> {
   const model = await seedModel(db);
   const batch = await seedBatch(db, model);
   const [owner, tester, shipper] = [
-    await seedPerson(db, 'Mara Quill', ['owner']),
-    await seedPerson(db, 'Ines Aldous', ['tester']),
-    await seedPerson(db, 'Tam Ruddock', ['shipper']),
+    await seedPerson(db, { name: 'Mara Quill', roles: ['owner'] }),
+    await seedPerson(db, { name: 'Ines Aldous', roles: ['tester'] }),
+    await seedPerson(db, { name: 'Tam Ruddock', roles: ['shipper'] }),
   ];
   const [{ insertId: signingKeyId }] = await db
     .insert(signingKeys)

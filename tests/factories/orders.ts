@@ -14,6 +14,11 @@ export function buildContext(db: Db, changes: Partial<Pick<CallContext, 'actor' 
   return { db, actor: { kind: 'visitor' }, now: at, ...changes };
 }
 
+/** A call that the payment provider's word brings about. */
+export function byProvider(db: Db, now = at): CallContext {
+  return buildContext(db, { actor: { kind: 'provider' }, now });
+}
+
 export function minutesAfter(from: Date, minutes: number): Date {
   return new Date(from.getTime() + minutes * 60_000);
 }
@@ -75,7 +80,6 @@ export async function seedPaidOrder(
   changes: Partial<OrderPlacing> = {},
 ): Promise<{ orderId: number; number: number; checkoutId: number }> {
   const placed = await placeOrder(buildOrder(changes), buildContext(db));
-  const provider = buildContext(db, { actor: { kind: 'provider' } });
-  await deliver(provider, await buildPaid(db, placed.checkoutId));
+  await deliver(byProvider(db), await buildPaid(db, placed.checkoutId));
   return placed;
 }

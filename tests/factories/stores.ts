@@ -1,11 +1,11 @@
 import type { Receipt } from '~/schemas/stores-lots';
 import type { NewPart } from '~/schemas/stores-parts';
 import type { Db } from '~/server/db/client';
-import { userProfiles, userRoles, users } from '~/server/db/schema';
 import { createPart } from '~/server/services/stores/create-part';
 import { receiveLot } from '~/server/services/stores/receive-lot';
 import type { CallContext } from '~/server/write';
 import { at } from './catalog';
+import { seedPerson } from './people';
 
 export function buildPart(changes: Partial<NewPart> = {}): NewPart {
   return {
@@ -38,8 +38,6 @@ export async function seedBuilder(
   db: Db,
   { name = 'Ruth Osei', email = 'ruth@thistledown.example', now = at } = {},
 ): Promise<CallContext> {
-  const [{ insertId: userId }] = await db.insert(users).values({ createdAt: at });
-  await db.insert(userProfiles).values({ userId, email, name });
-  await db.insert(userRoles).values({ userId, role: 'builder' });
+  const userId = await seedPerson(db, { name, email, roles: ['builder'] });
   return { db, now, actor: { kind: 'user', userId } };
 }

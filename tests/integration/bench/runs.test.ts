@@ -20,7 +20,8 @@ import { takeOverRun } from '../../../src/server/services/bench/take-over-run';
 import { voidReading } from '../../../src/server/services/bench/void-reading';
 import { closeRework } from '../../../src/server/services/production/close-rework';
 import { openRework } from '../../../src/server/services/production/open-rework';
-import { callAs, seedBench, seedPerson } from '../../factories/bench';
+import { callAs, seedBench } from '../../factories/bench';
+import { seedPerson } from '../../factories/people';
 import type { SeededBench } from '../../factories/bench';
 import { testDatabase } from '../../setup/database';
 
@@ -207,7 +208,7 @@ describe('a reading', () => {
   });
 
   it('is taken only from the tester who has the run, who changes in the open', async () => {
-    const other = await seedPerson(database.db, 'Ruth Osei', ['tester']);
+    const other = await seedPerson(database.db, { name: 'Ruth Osei', roles: ['tester'] });
     const theirs = callAs(database.db, other);
     const error = await refusal(
       setConditions({ runId, supplyV: 13.8, ambientC: 21, firmwareVersion: null, alignment: {} }, theirs),

@@ -7,8 +7,8 @@ import { findForm, formReturnCookie } from '~/server/form-return';
 import { anyone, everyStaff, signedIn, staff } from '~/server/rules';
 import { write } from '~/server/write';
 import { testDatabase } from '../../setup/database';
-import { browser, callDoor, problemIn } from './call-door';
-import { someDay } from './contexts';
+import { browser, callDoor, problemIn } from '../../setup/call-door';
+import { someDay } from '../../factories/contexts';
 
 const database = testDatabase();
 const json = { 'content-type': 'application/json' };
@@ -84,7 +84,7 @@ test('a refused script gets a problem document with fields and the request id', 
     type: 'urn:rigwright:problem:invalid',
     title: 'Not understood',
     status: 400,
-    detail: 'What was sent cannot be used (name): Two letters at least.',
+    detail: 'What was sent cannot be used: Two letters at least.',
     instance: 'urn:rigwright:request:request-1',
     fields: { name: 'Two letters at least.' },
   });
@@ -107,7 +107,7 @@ test('a refused form’s values come back on its page once, without the password
   const found = await findForm(database.db, token, '/works/people', someDay);
   expect(found).toEqual({
     values: { name: 'Q', roles: ['builder', 'tester'] },
-    message: 'What was sent cannot be used (name): Two letters at least.',
+    message: 'What was sent cannot be used: Two letters at least.',
     fields: { name: 'Two letters at least.' },
   });
   const kept = JSON.stringify(await database.db.select().from(formReturns));

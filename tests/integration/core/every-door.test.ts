@@ -14,8 +14,8 @@ import { root } from '../../../src/server/run/root';
 import { seedWorks } from '../../factories/catalog';
 import { testDatabase } from '../../setup/database';
 import { startWebProcesses, type WebProcess } from '../../setup/web-process';
-import { seedPerson } from '../people/seed-person';
-import { callContext } from './contexts';
+import { seedPerson } from '../../factories/people';
+import { callContext } from '../../factories/contexts';
 import { readEvents } from './read-events';
 
 const database = testDatabase();

@@ -8,7 +8,7 @@ import { NeverPossible } from '~/server/jobs/job';
 import { leaseOutbox, markDone, markFailed } from '~/server/jobs/lease-outbox';
 import { drainOutbox } from '~/server/jobs/run-worker';
 import { testDatabase } from '../../setup/database';
-import { someDay } from './contexts';
+import { someDay } from '../../factories/contexts';
 import { deferred } from './deferred';
 
 // Rows of these kinds are done by the test itself; the rest by the real handlers.

@@ -8,8 +8,8 @@ import { askSignInLink } from '~/server/services/people/ask-sign-in-link';
 import { startMailbox } from '../../../local-fakes/mailbox/server';
 import { seedWorks } from '../../factories/catalog';
 import { testDatabase } from '../../setup/database';
-import { seedPerson } from '../people/seed-person';
-import { callContext } from './contexts';
+import { seedPerson } from '../../factories/people';
+import { callContext } from '../../factories/contexts';
 
 const mailbox = await startMailbox({ smtpPort: 0, httpPort: 0 });
 // Before the settings are read for the first time.

@@ -13,7 +13,7 @@ import { DomainError } from '~/server/errors';
 import type { Ctx } from '~/server/write';
 import { databaseErrno, nextNumber, write } from '~/server/write';
 import { testDatabase } from '../../setup/database';
-import { callContext, someDay, underKey } from './contexts';
+import { callContext, someDay, underKey } from '../../factories/contexts';
 import { deferred } from './deferred';
 
 const database = testDatabase();

@@ -24,6 +24,7 @@ import {
 import { env } from '~/server/env';
 import { checkoutReference } from '~/server/services/orders/checkout-reference';
 import { seedBatch, seedModel, seedWorks } from '../../factories/catalog';
+import { someDay } from '../../factories/contexts';
 import { buildOrder, seedPaidOrder } from '../../factories/orders';
 import { callDoor, sendJson } from '../../setup/call-door';
 import { testDatabase } from '../../setup/database';
@@ -70,7 +71,10 @@ const bands = ['band.40m', 'band.30m', 'band.20m'];
 
 describe('placing an order', () => {
   it('answers a script with number and addresses; the token’s hash alone is kept', async () => {
-    const answer = await callDoor(postOrder, { path: '/api/orders', ...sendJson(buildOrder()) });
+    const { response: answer } = await callDoor(postOrder, {
+      path: '/api/orders',
+      ...sendJson(buildOrder()),
+    });
     expect(answer.status).toBe(200);
     const body = (await answer.json()) as { number: number; payUrl: string; providerUrl: string | null };
     expect(body).toMatchObject({ number: 1, providerUrl: null });
@@ -81,7 +85,10 @@ describe('placing an order', () => {
   });
 
   it('sends a form on to the way to the payment page', async () => {
-    const answer = await callDoor(postOrder, { path: '/api/orders', ...formOf(formFields, bands) });
+    const { response: answer } = await callDoor(postOrder, {
+      path: '/api/orders',
+      ...formOf(formFields, bands),
+    });
     expect(answer.status).toBe(303);
     expect(answer.headers.get('location')).toMatch(/^\/orders\/[\w-]{43}\/pay$/);
     const [contact] = await database.db.select().from(contacts);
@@ -96,7 +103,7 @@ describe('placing an order', () => {
 
   it('sends a form back to its page with what was typed and what is wrong beside the fields', async () => {
     const fields = { ...formFields, email: 'nobody', callSign: '???', country: 'US', name: '<script>' };
-    const answer = await callDoor(postOrder, { path: '/api/orders', ...formOf(fields, bands) });
+    const { response: answer } = await callDoor(postOrder, { path: '/api/orders', ...formOf(fields, bands) });
     expect([answer.status, answer.headers.get('location')]).toEqual([303, '/checkout?batch=13']);
     const [kept] = await database.db.select().from(formReturns);
     expect(kept?.values).toMatchObject({ email: 'nobody', name: '<script>', option: bands });
@@ -110,7 +117,7 @@ describe('placing an order', () => {
     [{ quantity: '21' }, bands, { quantity: 'Only 20 places are left in this batch.' }],
     [{ country: 'QQ' }, bands, { country: 'Choose the country.' }],
   ])('refuses %j with %j', async (changes, option, fields) => {
-    const answer = await callDoor(postOrder, {
+    const { response: answer } = await callDoor(postOrder, {
       path: '/api/orders',
       ...sendJson({ ...formFields, ...changes, option }),
     });
@@ -123,11 +130,14 @@ describe('placing an order', () => {
 
   it('takes hostile text as text', async () => {
     const name = '\u202e\u0000<script>alert(1)</script> שלום'.padEnd(290, 'x');
-    const answer = await callDoor(postOrder, { path: '/api/orders', ...sendJson(buildOrder({ name })) });
+    const { response: answer } = await callDoor(postOrder, {
+      path: '/api/orders',
+      ...sendJson(buildOrder({ name })),
+    });
     expect(answer.status).toBe(200);
     const [contact] = await database.db.select().from(contacts);
     expect(contact?.name).toMatch(/^<script>alert\(1\)<\/script> שלוםx+$/);
-    const long = await callDoor(postOrder, {
+    const { response: long } = await callDoor(postOrder, {
       path: '/api/orders',
       ...sendJson(buildOrder({ name: 'x'.repeat(301) })),
     });
@@ -137,10 +147,10 @@ describe('placing an order', () => {
   it('acts once under one Idempotency-Key, and gives the same answer', async () => {
     const call = { path: '/api/orders', ...sendJson(buildOrder(), { 'idempotency-key': 'key-1' }) };
     const answers = await Promise.all([callDoor(postOrder, call), callDoor(postOrder, call)]);
-    const bodies = await Promise.all(answers.map((answer) => answer.json()));
+    const bodies = await Promise.all(answers.map(({ response }) => response.json()));
     expect(bodies[0]).toEqual(bodies[1]);
     expect(await database.db.select().from(orders)).toHaveLength(1);
-    const other = await callDoor(postOrder, {
+    const { response: other } = await callDoor(postOrder, {
       path: '/api/orders',
       ...sendJson(buildOrder({ quantity: 2 }), { 'idempotency-key': 'key-1' }),
     });
@@ -149,7 +159,8 @@ describe('placing an order', () => {
 
   it('refuses a form from another site', async () => {
     const call = sendJson(buildOrder(), { origin: 'https://elsewhere.example' });
-    expect((await callDoor(postOrder, { path: '/api/orders', ...call })).status).toBe(403);
+    const { response } = await callDoor(postOrder, { path: '/api/orders', ...call });
+    expect(response.status).toBe(403);
   });
 });
 
@@ -180,18 +191,20 @@ describe('the provider’s webhook', () => {
     });
   }
 
-  const send = (body: string, secret: string) =>
+  const sign = (payload: string, secret = 'whsec_integration') => {
+    const timestamp = Math.floor(someDay.getTime() / 1000);
+    return Stripe.webhooks.generateTestHeaderString({ payload, secret, timestamp });
+  };
+  const deliver = (body: string, signature = sign(body)) =>
     callDoor(postEvent, {
       path: '/api/provider-events',
       body,
-      headers: {
-        'content-type': 'application/json',
-        'stripe-signature': Stripe.webhooks.generateTestHeaderString({ payload: body, secret }),
-      },
+      headers: { 'content-type': 'application/json', 'stripe-signature': signature },
     });
 
   it('refuses a wrong signature and keeps nothing', async () => {
-    const answer = await send(await buildPaidEvent(), 'whsec_of_somebody_else');
+    const body = await buildPaidEvent();
+    const { response: answer } = await deliver(body, sign(body, 'whsec_of_somebody_else'));
     expect(answer.status).toBe(400);
     expect(answer.headers.get('content-type')).toBe('application/problem+json');
     expect(await database.db.select().from(providerEvents)).toHaveLength(0);
@@ -199,30 +212,21 @@ describe('the provider’s webhook', () => {
 
   it('refuses a body that was changed on the way', async () => {
     const body = await buildPaidEvent();
-    const signature = Stripe.webhooks.generateTestHeaderString({
-      payload: body,
-      secret: 'whsec_integration',
-    });
-    const answer = await callDoor(postEvent, {
-      path: '/api/provider-events',
-      body: body.replace('38900', '1'),
-      headers: { 'stripe-signature': signature },
-    });
+    const { response: answer } = await deliver(body.replace('38900', '1'), sign(body));
     expect(answer.status).toBe(400);
   });
 
   it('makes one unit of five deliveries at once', async () => {
     const body = await buildPaidEvent();
-    const answers = await Promise.all(Array.from({ length: 5 }, () => send(body, 'whsec_integration')));
-    expect(answers.map(({ status }) => status)).toEqual([200, 200, 200, 200, 200]);
+    const answers = await Promise.all(Array.from({ length: 5 }, () => deliver(body)));
+    expect(answers.map(({ response }) => response.status)).toEqual([200, 200, 200, 200, 200]);
     expect(await database.db.select().from(units)).toHaveLength(1);
     expect(await database.db.select().from(payments)).toHaveLength(1);
   });
 
   it('keeps what it does not know', async () => {
-    const answer = await send(
+    const { response: answer } = await deliver(
       buildEvent({ object: 'invoice', id: 'in_1' }, 'invoice.finalized'),
-      'whsec_integration',
     );
     expect(await answer.json()).toEqual({ state: 'unknown' });
     expect(await database.db.select().from(providerEvents)).toHaveLength(1);
@@ -237,7 +241,7 @@ describe('an order through its door', () => {
   }
 
   const read = async (number: number, person: ReturnType<typeof buildPerson> | null) => {
-    const answer = await callDoor(getOrder, {
+    const { response: answer } = await callDoor(getOrder, {
       method: 'GET',
       path: `/api/orders/${number}`,
       params: { number: String(number) },
@@ -289,14 +293,14 @@ describe('an order through its door', () => {
         person,
         ...sendJson({ kind: 'cash', amountMinor: 28_900 }),
       });
-    expect((await pay(buildPerson(904, 'builder'))).status).toBe(403);
-    expect((await pay(buildPerson(906))).status).toBe(404);
+    expect((await pay(buildPerson(904, 'builder'))).response.status).toBe(403);
+    expect((await pay(buildPerson(906))).response.status).toBe(404);
   });
 
   it('opens a payment page for the balance to whoever has the link or the account', async () => {
     const { orderId, number, buyerId } = await seedOrder();
     const token = linkToken(env().secret, 'order', orderId);
-    const byLink = await callDoor(postLinkCheckout, {
+    const { response: byLink } = await callDoor(postLinkCheckout, {
       path: `/api/orders/by-link/${token}/checkouts`,
       params: { token },
       ...sendJson({}),
@@ -313,8 +317,8 @@ describe('an order through its door', () => {
         person: buildPerson(id),
         ...sendJson({}),
       });
-    expect((await ask(906)).status).toBe(404);
-    expect((await ask(buyerId)).status).toBe(200);
+    expect((await ask(906)).response.status).toBe(404);
+    expect((await ask(buyerId)).response.status).toBe(200);
     expect(await database.db.select().from(checkouts)).toHaveLength(2);
   });
 });
@@ -322,7 +326,7 @@ describe('an order through its door', () => {
 describe('the public catalogue', () => {
   it('tells models, options, price and places left', async () => {
     await seedPaidOrder(database.db, { quantity: 2 });
-    const answer = await callDoor(getModels, { method: 'GET', path: '/api/models' });
+    const { response: answer } = await callDoor(getModels, { method: 'GET', path: '/api/models' });
     expect(await answer.json()).toMatchObject({
       models: [
         {

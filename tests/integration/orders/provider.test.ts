@@ -23,9 +23,10 @@ const webhook = createServer((request, response) => {
         path: '/api/provider-events',
         body,
         headers: { 'stripe-signature': String(request.headers['stripe-signature']) },
+        now: new Date(),
       }),
     )
-    .then((answer) => response.writeHead(answer.status).end());
+    .then(({ response: answer }) => response.writeHead(answer.status).end());
 });
 const fake = await startStripeFake({
   port: 0,

@@ -80,16 +80,14 @@ describe('what the last ones left the bench with', () => {
   it('counts the newest closed run of each unit, where it passed', async () => {
     await seedBatch(database.db, model);
     await seedPaidOrder(database.db, { quantity: 6 });
-    const [{ insertId: testPlanRevisionId }] = await database.db
-      .insert(testPlanRevisions)
-      .values({
-        modelId: model.modelId,
-        letter: 'B',
-        state: 'draft',
-        supplyV: 13.8,
-        loadOhm: 50,
-        createdAt: at,
-      });
+    const [{ insertId: testPlanRevisionId }] = await database.db.insert(testPlanRevisions).values({
+      modelId: model.modelId,
+      letter: 'B',
+      state: 'draft',
+      supplyV: 13.8,
+      loadOhm: 50,
+      createdAt: at,
+    });
     await database.db.insert(testPoints).values({
       testPlanRevisionId,
       position: 1,

@@ -22,9 +22,9 @@ import { changePerson } from '~/server/services/people/change-person';
 import { invitePerson } from '~/server/services/people/invite-person';
 import { useSignInLink as takeLink } from '~/server/services/people/use-sign-in-link';
 import { testDatabase } from '../../setup/database';
-import { callDoor } from '../core/call-door';
-import { callContext, someDay } from '../core/contexts';
-import { seedPerson } from './seed-person';
+import { callDoor } from '../../setup/call-door';
+import { callContext, someDay } from '../../factories/contexts';
+import { seedPerson } from '../../factories/people';
 
 const database = testDatabase();
 const password = 'a long enough password';

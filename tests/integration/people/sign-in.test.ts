@@ -9,8 +9,8 @@ import { endOtherSessions, openSession, personOf, sessionCookieName } from '~/se
 import { isTooMany } from '~/server/auth/throttle';
 import { ledgerEntries, outbox, sessions, users } from '~/server/db/schema';
 import { testDatabase } from '../../setup/database';
-import { callDoor, problemIn } from '../core/call-door';
-import { seedPerson } from './seed-person';
+import { callDoor, problemIn } from '../../setup/call-door';
+import { seedPerson } from '../../factories/people';
 
 const database = testDatabase();
 const json = { 'content-type': 'application/json' };

@@ -8,7 +8,8 @@ import type { BatchChange } from '~/server/services/planning/change-batch';
 import { openBatch } from '~/server/services/planning/open-batch';
 import { placeHold } from '~/server/services/production/place-hold';
 import { databaseErrno } from '~/server/write';
-import { callAs, seedPerson } from '../../factories/bench';
+import { callAs } from '../../factories/bench';
+import { seedPerson } from '../../factories/people';
 import { at, seedBatch, seedModel, seedWorks } from '../../factories/catalog';
 import { seedPaidOrder } from '../../factories/orders';
 import { seedLot } from '../../factories/stores';
@@ -19,7 +20,7 @@ const opening = { modelSlug: 'holm-3', places: 4, priceMinor: 38_900, depositMin
 
 async function seedOwner() {
   await seedWorks(database.db);
-  return callAs(database.db, await seedPerson(database.db, 'Mara Quill', ['owner']));
+  return callAs(database.db, await seedPerson(database.db, { name: 'Mara Quill', roles: ['owner'] }));
 }
 
 describe('opening a batch', () => {
