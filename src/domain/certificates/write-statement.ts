@@ -6,6 +6,7 @@ import type { LimitRuleKey } from '~/domain/bench/limit-rules';
 import { quantityOf } from '~/domain/bench/quantities';
 import type { InstrumentSpec, PathSpec, TestPoint } from '~/domain/bench/types';
 import type { CertificateStatement, StatedInstrument, StatedPoint, StatedUncertainty } from './statement';
+import { listed } from '~/lib/listed';
 
 /** A judged test point of a closed run. */
 export interface JudgedPoint {
@@ -160,9 +161,4 @@ function ordinal(order: number): string {
 /** `Current, key down` within a sentence: `current key down`. */
 function inText(label: string): string {
   return label.replace(',', '').toLowerCase();
-}
-
-function listed(words: readonly string[]): string {
-  const last = words.at(-1) ?? '';
-  return words.length > 1 ? `${words.slice(0, -1).join(', ')} and ${last}` : last;
 }

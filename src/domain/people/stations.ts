@@ -1,5 +1,6 @@
 import { paths } from '~/lib/paths';
 import type { StaffRole } from './roles';
+import { listed } from '~/lib/listed';
 
 /** A room of the works: a group of pages in the strip on top. */
 export interface Station {
@@ -28,7 +29,5 @@ export function stationsOf(roles: readonly StaffRole[]): Station[] {
 /** How a person's roles are said beside their name: `tester`, `builder and shipper`. */
 export function rolesInWords(roles: readonly StaffRole[]): string {
   if (roles.includes('owner')) return 'owner';
-  if (roles.length === 0) return 'buyer';
-  const last = roles[roles.length - 1] ?? '';
-  return roles.length === 1 ? last : `${roles.slice(0, -1).join(', ')} and ${last}`;
+  return roles.length === 0 ? 'buyer' : listed(roles);
 }

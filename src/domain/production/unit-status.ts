@@ -1,5 +1,6 @@
 import type { BuildStage, UnitStage } from './stages';
 import { isPast, stageLabels } from './stages';
+import { listed } from '~/lib/listed';
 
 export type UnitAnswer = { ok: true } | { ok: false; reasons: string[] };
 
@@ -149,9 +150,4 @@ function buyerReasons({ order, certificate, addressGaps }: DispatchFacts): strin
 
 function count(n: number, one: string, many: string): string {
   return n === 1 ? `One ${one}` : `${n} ${many}`;
-}
-
-function listed(words: readonly string[]): string {
-  const last = words.at(-1) ?? '';
-  return words.length > 1 ? `${words.slice(0, -1).join(', ')} and ${last}` : last;
 }
