@@ -9,7 +9,7 @@ import { freePort } from '../../src/server/run/ports';
 import { root } from '../../src/server/run/root';
 import { sayFailure, step } from '../../src/server/run/step.mjs';
 import { listExamplePages, type ExamplePage } from '../e2e/page-list';
-import { signIn, type Viewer } from '../e2e/people';
+import { askForLink, signIn, waitForIslands, type Viewer } from '../e2e/people';
 import { chromiumAt } from './chromium';
 import { writeIndex, type Shot } from './shots-index';
 
@@ -49,7 +49,8 @@ async function takeShots(context: BrowserContext, viewer: Viewer, pages: Example
   const shots: Shot[] = [];
   const page = await context.newPage();
   for (const each of pages) {
-    await page.goto(each.path, { waitUntil: 'networkidle' });
+    await page.goto(each.path);
+    await waitForIslands(page);
     for (const theme of themes) {
       await page.emulateMedia({ colorScheme: theme, reducedMotion: 'reduce' });
       for (const width of widthsOf(each)) {
@@ -66,6 +67,7 @@ async function takeShots(context: BrowserContext, viewer: Viewer, pages: Example
 
 async function takeAll(browser: Browser, application: Application, wanted: readonly string[]): Promise<void> {
   const { variables } = application;
+  await askForLink(application.baseUrl.origin);
   const database = openDatabase(variables['DATABASE_URL'] ?? '', 1);
   const all = await listExamplePages(database, variables['RIGWRIGHT_SECRET'] ?? '');
   await database.close();
