@@ -19,6 +19,7 @@ import {
   userProfiles,
 } from '~/server/db/schema';
 import { readBomLines } from '~/server/queries/production/read-bom';
+import { lotColumns } from './lot-columns';
 
 /** A unit that a lot went into. */
 export interface UnitOfLot {
@@ -39,17 +40,7 @@ export async function getLot(reader: Reader, scanned: string) {
   const [lot] = await reader
     .select({
       id: lots.id,
-      number: lots.number,
-      state: lots.state,
-      barredReason: lots.barredReason,
-      onHand: lots.onHand,
-      quantityReceived: lots.quantityReceived,
-      costMinor: lots.costMinor,
-      currency: lots.currency,
-      dateCode: lots.dateCode,
-      receivedAt: lots.receivedAt,
-      supplier: suppliers.name,
-      bin: bins.code,
+      ...lotColumns,
       partNumber: parts.number,
       partDescription: parts.description,
       partUnit: parts.unit,

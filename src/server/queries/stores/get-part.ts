@@ -12,6 +12,7 @@ import {
   suppliers,
   userProfiles,
 } from '~/server/db/schema';
+import { lotColumns } from './lot-columns';
 
 /** A part with its lots, where it is used, what may stand in its place, and its newest store entries. */
 export async function getPart(reader: Reader, number: string) {
@@ -19,19 +20,7 @@ export async function getPart(reader: Reader, number: string) {
   if (part === undefined) return null;
   const [ofPart, usedIn, alternates, entries] = await Promise.all([
     reader
-      .select({
-        number: lots.number,
-        state: lots.state,
-        barredReason: lots.barredReason,
-        onHand: lots.onHand,
-        quantityReceived: lots.quantityReceived,
-        costMinor: lots.costMinor,
-        currency: lots.currency,
-        dateCode: lots.dateCode,
-        receivedAt: lots.receivedAt,
-        supplier: suppliers.name,
-        bin: bins.code,
-      })
+      .select(lotColumns)
       .from(lots)
       .leftJoin(suppliers, eq(suppliers.id, lots.supplierId))
       .leftJoin(bins, eq(bins.id, lots.binId))
