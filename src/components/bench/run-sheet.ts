@@ -254,10 +254,16 @@ export function needOf(
   if (lower !== null && upper !== null) {
     return lower === -upper
       ? `within ±${formatNumber(upper, 0)}`
-      : `${bare(lower, quantityKey)} to ${bare(upper, quantityKey)}`;
+      : rangeText(bare(lower, quantityKey), bare(upper, quantityKey));
   }
   if (lower !== null) return `min ${bare(lower, quantityKey)}`;
   return upper === null ? 'no limit' : `max ${bare(upper, quantityKey)}`;
+}
+
+/** `4.00 to 5.50 W`: a unit that both have is said once. */
+function rangeText(lower: string, upper: string): string {
+  const [, unit = ''] = upper.split(' ');
+  return `${lower.endsWith(` ${unit}`) ? lower.slice(0, -unit.length - 1) : lower} to ${upper}`;
 }
 
 /** The limit of a harmonic by the power measured on its band; null where that is not known. */

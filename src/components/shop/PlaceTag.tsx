@@ -43,7 +43,9 @@ export function PlaceTag({ batch, priceMinor, problem }: Props) {
         quiet={[
           placesLeft === 0
             ? 'A place that is only held may come free within half an hour.'
-            : 'Our own estimate. We write when it changes.',
+            : estimatedOn === null
+              ? 'We write as soon as it is.'
+              : 'Our own estimate. We write when it changes.',
         ]}
         aside={
           <div className="flex flex-wrap items-center gap-x-8 gap-y-3 sm:justify-end">

@@ -36,17 +36,25 @@ describe('the shop', () => {
   it('shows the first batch with a free place, or else the first that is open', async () => {
     await seedBatch(database.db, model, { number: 12, state: 'closed' });
     await seedBatch(database.db, model, { number: 13, places: 2, placesTaken: 2 });
-    expect((await readRig(database.db, 'holm-3'))?.batch).toMatchObject({ number: 13, placesLeft: 0 });
+    expect((await readRig(database.db, 'holm-3', '2027-03-01'))?.batch).toMatchObject({
+      number: 13,
+      placesLeft: 0,
+    });
     await seedBatch(database.db, model, { number: 14, placesTaken: 13 });
-    expect((await readRig(database.db, 'holm-3'))?.batch).toMatchObject({ number: 14, placesLeft: 7 });
-    expect((await readRigOfBatch(database.db, 13))?.batch.number).toBe(13);
-    expect(await readRigOfBatch(database.db, 12)).toBeNull();
+    expect((await readRig(database.db, 'holm-3', '2027-03-01'))?.batch).toMatchObject({
+      number: 14,
+      placesLeft: 7,
+    });
+    expect((await readRigOfBatch(database.db, 13, '2027-03-01'))?.batch.number).toBe(13);
+    expect((await readRig(database.db, 'holm-3', '2027-03-23'))?.batch?.estimatedOn).toBe('2027-03-23');
+    expect((await readRig(database.db, 'holm-3', '2027-03-24'))?.batch?.estimatedOn).toBeNull();
+    expect(await readRigOfBatch(database.db, 12, '2027-03-01')).toBeNull();
   });
 
   it('leaves out what is not for sale', async () => {
     await database.db.update(models).set({ state: 'withdrawn' });
-    expect(await readRig(database.db, 'holm-3')).toBeNull();
-    expect(await listRigs(database.db)).toEqual([]);
+    expect(await readRig(database.db, 'holm-3', '2027-03-01')).toBeNull();
+    expect(await listRigs(database.db, '2027-03-01')).toEqual([]);
     await seedBatch(database.db, model);
     await expect(placeOrder(buildOrder(), buildContext(database.db))).rejects.toThrow('not for sale');
   });

@@ -3,6 +3,7 @@ import { modelIsForSale } from '~/domain/catalog/for-sale';
 import type { PanelSpec } from '~/domain/catalog/panel';
 import { freePlaces } from '~/domain/orders/checkout';
 import { batchTakesOrders } from '~/domain/planning/batch-status';
+import type { Day } from '~/lib/dates';
 import { parsePanel } from '~/schemas/catalog-panel';
 import type { Reader } from '~/server/db/client';
 import { batches, models } from '~/server/db/schema';
@@ -17,7 +18,7 @@ export interface ShopBatch {
   priceMinor: number;
   depositMinor: number | null;
   currency: string;
-  /** The owner's estimate. */
+  /** The owner's estimate; null where there is none, or its day has passed and the owner owes a new one. */
   estimatedOn: string | null;
 }
 
@@ -36,7 +37,7 @@ export interface Rig {
 }
 
 /** A rig that is for sale; null where there is none of this name. */
-export async function readRig(reader: Reader, slug: string): Promise<Rig | null> {
+export async function readRig(reader: Reader, slug: string, today: Day): Promise<Rig | null> {
   const [model] = await reader.select().from(models).where(eq(models.slug, slug));
   if (model === undefined || !modelIsForSale(model.state)) return null;
   const [groups, open] = [
@@ -52,12 +53,12 @@ export async function readRig(reader: Reader, slug: string): Promise<Rig | null>
     panel: parsePanel(model.panel),
     ratedPowerW: model.ratedPowerW,
     groups,
-    batch: nextBatch(open),
+    batch: nextBatch(open, today),
   };
 }
 
 /** The rigs of the shop by name, each with its next batch. */
-export async function listRigs(reader: Reader): Promise<Rig[]> {
+export async function listRigs(reader: Reader, today: Day): Promise<Rig[]> {
   const rows = (await reader.select().from(models).orderBy(asc(models.name))).filter(({ state }) =>
     modelIsForSale(state),
   );
@@ -76,7 +77,10 @@ export async function listRigs(reader: Reader): Promise<Rig[]> {
       panel: parsePanel(panel),
       ratedPowerW,
       groups: await listOptionGroups(reader, id),
-      batch: nextBatch(open.filter(({ modelId }) => modelId === id)),
+      batch: nextBatch(
+        open.filter(({ modelId }) => modelId === id),
+        today,
+      ),
     });
   }
   return rigs;
@@ -92,7 +96,7 @@ async function listOpenBatches(reader: Reader, modelIds: number[]) {
   return rows.filter(({ state }) => batchTakesOrders(state));
 }
 
-function nextBatch(open: readonly (typeof batches.$inferSelect)[]): ShopBatch | null {
+function nextBatch(open: readonly (typeof batches.$inferSelect)[], today: Day): ShopBatch | null {
   const seen = open.map((batch) => ({
     number: batch.number,
     places: batch.places,
@@ -100,7 +104,7 @@ function nextBatch(open: readonly (typeof batches.$inferSelect)[]): ShopBatch | 
     priceMinor: batch.priceMinor,
     depositMinor: batch.depositMinor,
     currency: batch.currency,
-    estimatedOn: batch.estimatedOn,
+    estimatedOn: batch.estimatedOn !== null && batch.estimatedOn >= today ? batch.estimatedOn : null,
   }));
   return seen.find(({ placesLeft }) => placesLeft > 0) ?? seen[0] ?? null;
 }
@@ -109,6 +113,7 @@ function nextBatch(open: readonly (typeof batches.$inferSelect)[]): ShopBatch | 
 export async function readRigOfBatch(
   reader: Reader,
   number: number,
+  today: Day,
 ): Promise<(Rig & { batch: ShopBatch }) | null> {
   const [row] = await reader
     .select({ batch: batches, slug: models.slug })
@@ -116,7 +121,7 @@ export async function readRigOfBatch(
     .innerJoin(models, eq(models.id, batches.modelId))
     .where(eq(batches.number, number));
   if (row === undefined || !batchTakesOrders(row.batch.state)) return null;
-  const rig = await readRig(reader, row.slug);
-  const batch = nextBatch([row.batch]);
+  const rig = await readRig(reader, row.slug, today);
+  const batch = nextBatch([row.batch], today);
   return rig === null || batch === null ? null : { ...rig, batch };
 }
