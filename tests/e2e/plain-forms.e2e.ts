@@ -46,6 +46,22 @@ test.describe('without JavaScript', () => {
   });
 });
 
+test('a choice made before the page’s script has come counts when it comes', async ({ login }) => {
+  const page = await login('visitor');
+  let release = () => {};
+  const held = new Promise<void>((resolve) => (release = resolve));
+  await page.route('**/_astro/RigChooser*.js', async (route) => {
+    await held;
+    await route.continue();
+  });
+  await page.goto(paths.rig('holm-3'), { waitUntil: 'domcontentloaded' });
+  await page.getByRole('checkbox', { name: /^40 m/ }).uncheck();
+  await expect(page.getByRole('button', { name: 'Take a place' })).toBeEnabled();
+  release();
+  await expect(page.getByRole('button', { name: 'Take a place' })).toBeDisabled();
+  await expect(page.getByRole('checkbox', { name: /^40 m/ })).not.toBeChecked();
+});
+
 test('a double click takes one place', async ({ login, database }) => {
   const page = await login('visitor');
   const email = `twice-${randomUUID()}@buyers.example`;

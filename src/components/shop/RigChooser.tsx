@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { useEffect, useRef, useState } from 'react';
 import { Button } from '~/components/ui/Button';
 import type { PanelSpec } from '~/domain/catalog/panel';
 import { checkConfiguration, priceOf } from '~/domain/planning/configuration';
@@ -23,6 +23,15 @@ interface Props {
 /** The panel with its choices as call-outs, and the tag of the place they lead to. A plain GET form beneath. */
 export function RigChooser({ panel, groups, initial, batch, currency, checkoutPath, ownPath }: Props) {
   const [chosen, setChosen] = useState<ReadonlySet<string>>(() => new Set(initial));
+  const form = useRef<HTMLFormElement>(null);
+  // The boxes work before this script has come: what was ticked meanwhile counts.
+  useEffect(() => {
+    if (form.current === null) return;
+    const ticked = new FormData(form.current).getAll('option').map(String);
+    setChosen((before) =>
+      ticked.length === before.size && ticked.every((key) => before.has(key)) ? before : new Set(ticked),
+    );
+  }, []);
   const answer = checkConfiguration(groups, chosen);
   const problems = answer.ok ? [] : answer.problems;
   const choose = (key: string, isChosen: boolean) =>
@@ -39,7 +48,7 @@ export function RigChooser({ panel, groups, initial, batch, currency, checkoutPa
   const onPanel = new Set(panel.callOuts.map(({ key }) => key));
   const beside = groups.filter(({ key }) => !onPanel.has(key));
   return (
-    <form method="get" action={checkoutPath} className="grid gap-8">
+    <form ref={form} method="get" action={checkoutPath} className="grid gap-8">
       <PanelDrawing
         spec={panel}
         chosen={chosen}
