@@ -6,7 +6,7 @@ export default defineConfig({
   resolve: { alias: { '~/': fileURLToPath(new URL('./src/', import.meta.url)) } },
   test: {
     env: { RIGWRIGHT_SAMPLES: samplesFolder() ?? '' },
-    setupFiles: ['tests/setup/console-guard.ts'],
+    setupFiles: ['tests/setup/console-guard.ts', 'tests/setup/laws.ts'],
     maxWorkers: 2,
     projects: [
       {

@@ -95,11 +95,14 @@ function copyTree(): string {
 }
 
 function isGreen(copy: string, check: readonly string[]): boolean {
-  const { status } = spawnSync(process.execPath, [...check], {
+  const { status, error } = spawnSync(process.execPath, [...check], {
+    timeout: 120_000,
     cwd: copy,
     stdio: 'ignore',
     env: { ...process.env, RIGWRIGHT_SAMPLES: samplesFolder() ?? '' },
   });
+  // A check that never ends is no check.
+  if (error) throw error;
   return status === 0;
 }
 
