@@ -200,8 +200,8 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     '/works/lots/[number]': { '': paths.lot(lot.number) },
     '/works/floor': { '': paths.floor() },
     '/works/units/[serial]': {
-      kit: paths.unit(kit.serial),
-      pack: paths.unit(tested.serial),
+      'at-kit': paths.unit(kit.serial),
+      'at-pack': paths.unit(tested.serial),
       gone: paths.unit(gone.serial),
     },
     '/works/units/[serial]/kit': { '': paths.unitKit(kit.serial) },
