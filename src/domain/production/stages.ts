@@ -3,10 +3,12 @@ export const workStages = ['kit', 'boards', 'align', 'final_test', 'pack', 'ship
 export type WorkStage = (typeof workStages)[number];
 
 /** Where a unit is: at one of its stubs, or gone. */
-export type UnitStage = WorkStage | 'gone';
+export const unitStages = [...workStages, 'gone'] as const;
+export type UnitStage = (typeof unitStages)[number];
 
 /** Stages whose build steps are ticked one by one; the others are torn off by a run, a parcel, a shipment. */
-export type BuildStage = Extract<WorkStage, 'kit' | 'boards' | 'align'>;
+export const buildStages = ['kit', 'boards', 'align'] as const satisfies readonly WorkStage[];
+export type BuildStage = (typeof buildStages)[number];
 
 /** What stands on the stub. */
 export const stageLabels: Record<WorkStage, string> = {

@@ -14,6 +14,7 @@ import {
   unique,
   varchar,
 } from 'drizzle-orm/mysql-core';
+import { buildStages } from '~/domain/production/stages';
 import { code, country, currency, id, letter, moment, ref, revisionStates, whole } from './columns';
 import { users } from './people';
 import { parts } from './stores';
@@ -154,9 +155,6 @@ export const buildSheetRevisions = mysqlTable(
   },
   (table) => [unique('build_sheet_revisions_model_id_letter_unique').on(table.modelId, table.letter)],
 );
-
-/** The stubs of the tag to which build steps belong. */
-export const buildStages = ['kit', 'boards', 'align'] as const;
 
 export const buildSteps = mysqlTable(
   'build_steps',

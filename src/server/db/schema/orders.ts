@@ -10,6 +10,7 @@ import {
   unique,
   varchar,
 } from 'drizzle-orm/mysql-core';
+import { orderStates } from '~/domain/orders/status';
 import { models, spares } from './catalog';
 import { code, country, currency, id, moment, ref, whole } from './columns';
 import { users } from './people';
@@ -47,7 +48,7 @@ export const orders = mysqlTable(
     contactId: ref()
       .notNull()
       .references(() => contacts.id),
-    state: mysqlEnum(['awaiting_payment', 'paid', 'cancelled', 'fulfilled']).notNull(),
+    state: mysqlEnum(orderStates).notNull(),
     currency: currency().notNull(),
     /** The sum of the lines. */
     totalMinor: whole().notNull(),

@@ -11,6 +11,7 @@ import {
   unique,
   varchar,
 } from 'drizzle-orm/mysql-core';
+import { unitStages } from '~/domain/production/stages';
 import { testRuns } from './bench';
 import {
   bomLines,
@@ -66,9 +67,6 @@ export const batches = mysqlTable(
     ),
   ],
 );
-
-/** The stubs of the tag, and where a unit is once it has left. */
-export const unitStages = ['kit', 'boards', 'align', 'final_test', 'pack', 'ship', 'gone'] as const;
 
 /** One serial number. Its batch and its order may be none: built ahead, or typed at the bench. */
 export const units = mysqlTable(

@@ -1,6 +1,7 @@
 import { sql } from 'drizzle-orm';
 import type { AnyMySqlColumn } from 'drizzle-orm/mysql-core';
 import { boolean, check, index, int, mysqlEnum, mysqlTable, unique, varchar } from 'drizzle-orm/mysql-core';
+import { lotStates } from '~/domain/stores/lots';
 import { bomRevisions, models } from './catalog';
 import { code, country, currency, id, moment, ref, whole } from './columns';
 import { users } from './people';
@@ -72,7 +73,7 @@ export const lots = mysqlTable(
     bomRevisionId: ref().references((): AnyMySqlColumn => bomRevisions.id),
     binId: ref().references(() => bins.id),
     dateCode: varchar({ length: 30 }).notNull().default(''),
-    state: mysqlEnum(['waiting', 'usable', 'barred']).notNull(),
+    state: mysqlEnum(lotStates).notNull(),
     barredReason: varchar({ length: 300 }),
     quantityReceived: whole().notNull(),
     onHand: whole().notNull(),

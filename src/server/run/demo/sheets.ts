@@ -1,12 +1,12 @@
 import { eq } from 'drizzle-orm';
 import type { StepEntry } from '~/domain/production/steps';
-import type { buildStages } from '~/server/db/schema';
+import type { BuildStage } from '~/domain/production/stages';
 import { buildSheetRevisions, buildSteps, models } from '~/server/db/schema';
 import type { Tx } from '~/server/db/client';
 
 /** A build step, with what the works usually writes down at it. */
 export interface DemoStep {
-  stage: (typeof buildStages)[number];
+  stage: BuildStage;
   title: string;
   instruction: string;
   caution?: string;
