@@ -7,7 +7,7 @@ import { promisify } from 'node:util';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeEach, describe, expect, it } from 'vitest';
 import { makeCertificatePdf, stopCertificateThread } from '~/server/documents/certificate-pdf';
-import { certificates, outbox, signingKeys } from '~/server/db/schema';
+import { certificates, outbox, signingKeys, testRuns } from '~/server/db/schema';
 import { publicKeyPem } from '~/server/keys/ed25519';
 import { readSignedCertificate } from '~/server/queries/certificates/read-signed-certificate';
 import { verifyCertificate } from '~/server/queries/certificates/verify-certificate';
@@ -128,6 +128,21 @@ describe('issuing a certificate', () => {
     await closeRun({ runId }, bench.ctx);
     await openRun({ serial: bench.serial }, bench.ctx);
     await expect(issueCertificate({ runId }, bench.ctx)).rejects.toThrow('tested again');
+  });
+
+  it('refuses a run that another version of the computation has judged', async () => {
+    const { runId } = await openRun({ serial: bench.serial }, bench.ctx);
+    const [open] = await database.db.select().from(testRuns).where(eq(testRuns.id, runId));
+    if (open === undefined) throw new Error('The run is gone.');
+    const judgedThen = {
+      ...open,
+      runNo: 2,
+      state: 'closed',
+      result: 'passed',
+      computationVersion: '0.9',
+    } as const;
+    const [{ insertId }] = await database.db.insert(testRuns).values({ ...judgedThen, id: undefined });
+    await expect(issueCertificate({ runId: insertId }, bench.ctx)).rejects.toThrow('another version');
   });
 
   it('refuses while the works has no key', async () => {

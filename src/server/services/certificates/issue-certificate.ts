@@ -87,6 +87,13 @@ async function lockReleasedRun(w: WriteContext, runId: number): Promise<void> {
   if (!runIsReleased(run)) {
     throw new DomainError('conflict', 'Only a run that is closed and passed gets a certificate.');
   }
+  // The statement is computed from the readings anew; by other rules it might not say what the run came to.
+  if (run.computationVersion !== COMPUTATION_VERSION) {
+    throw new DomainError(
+      'conflict',
+      'The run was judged by another version of this program: open a new run.',
+    );
+  }
   const [newest] = await w.tx
     .select({ id: testRuns.id })
     .from(testRuns)
