@@ -13,6 +13,8 @@ export default defineConfig({
         extends: true,
         test: {
           name: 'unit',
+          // One of them loads every route of the API, cold.
+          testTimeout: 30_000,
           include: ['src/**/*.test.ts', 'tests/**/*.test.ts', 'local-fakes/**/*.test.ts'],
           exclude: ['tests/integration/**'],
         },
