@@ -1,5 +1,7 @@
+import { sql } from 'drizzle-orm';
 import {
   boolean,
+  check,
   double,
   index,
   int,
@@ -115,6 +117,8 @@ export const testRuns = mysqlTable(
     ambientC: double(),
     firmwareVersion: varchar({ length: 40 }),
     alignment: json().$type<Record<string, string>>().notNull(),
+    /** What was done otherwise than the test plan says, as the certificate prints it. */
+    deviations: varchar({ length: 500 }).notNull().default(''),
     /** Of the computation that judged it. */
     computationVersion: varchar({ length: 20 }).notNull(),
     openedAt: moment().notNull(),
@@ -214,5 +218,8 @@ export const runPoints = mysqlTable(
     /** A concession's reason, by the owner, never on a legal limit. */
     concession: varchar({ length: 500 }),
   },
-  (table) => [unique('run_points_test_run_id_test_point_id_unique').on(table.testRunId, table.testPointId)],
+  (table) => [
+    unique('run_points_test_run_id_test_point_id_unique').on(table.testRunId, table.testPointId),
+    check('run_points_concession_check', sql`${table.concession} is null or ${table.ruleKey} is null`),
+  ],
 );

@@ -194,6 +194,8 @@ export const testPlanRevisions = mysqlTable(
     note: varchar({ length: 500 }).notNull().default(''),
     supplyV: double().notNull(),
     loadOhm: double().notNull(),
+    /** Facts that formulas of quantities need: `OutputStage` of `domain/bench/types`; null where not stated. */
+    outputStage: json().$type<unknown>(),
     createdAt: moment().notNull(),
     releasedAt: moment(),
     releasedBy: ref().references(() => users.id),
@@ -219,9 +221,29 @@ export const testPoints = mysqlTable(
     decision: mysqlEnum(['guarded', 'simple']).notNull(),
     required: boolean().notNull().default(true),
     condition: varchar({ length: 500 }),
+    /** Supply of this point where it is not the plan's, V. */
+    supplyV: double(),
+    /** How it is read, where the quantity leaves that open: `10 dB (S+N)/N in 500 Hz`. */
+    method: varchar({ length: 200 }).notNull().default(''),
   },
   (table) => [
     unique('test_points_test_plan_revision_id_position_unique').on(table.testPlanRevisionId, table.position),
     check('test_points_legal_check', sql`${table.limitRule} = 'fixed' or ${table.decision} = 'guarded'`),
   ],
+);
+
+/** Where a model's products come from: `FrequencyPlan` of `domain/bench/frequency-plan`. */
+export const frequencyPlanRevisions = mysqlTable(
+  'frequency_plan_revisions',
+  {
+    id: id(),
+    modelId: ref()
+      .notNull()
+      .references(() => models.id),
+    revision: int().notNull(),
+    plan: json().$type<unknown>().notNull(),
+    createdAt: moment().notNull(),
+    retiredAt: moment(),
+  },
+  (table) => [unique('frequency_plan_revisions_model_id_revision_unique').on(table.modelId, table.revision)],
 );

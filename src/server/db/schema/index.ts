@@ -1,4 +1,5 @@
 export * from './bench';
+export * from './bench-equipment';
 export * from './catalog';
 export * from './certificates';
 export * from './changes';

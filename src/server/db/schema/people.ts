@@ -1,4 +1,4 @@
-import { index, int, mysqlEnum, mysqlTable, primaryKey, varchar } from 'drizzle-orm/mysql-core';
+import { index, int, json, mysqlEnum, mysqlTable, primaryKey, varchar } from 'drizzle-orm/mysql-core';
 import { staffRoles } from '~/domain/people/roles';
 import { code, id, moment, ref } from './columns';
 
@@ -55,3 +55,22 @@ export const signInLinks = mysqlTable('sign_in_links', {
   expiresAt: moment().notNull(),
   usedAt: moment(),
 });
+
+/** A person's tokens for scripts, kept as the SHA-256 (hex) of the token; they open only what their scopes say. */
+export const accessTokens = mysqlTable(
+  'access_tokens',
+  {
+    id: id(),
+    tokenHash: code(64).notNull().unique(),
+    userId: ref()
+      .notNull()
+      .references(() => users.id),
+    name: varchar({ length: 80 }).notNull(),
+    scopes: json().$type<string[]>().notNull(),
+    createdAt: moment().notNull(),
+    expiresAt: moment(),
+    lastUsedAt: moment(),
+    revokedAt: moment(),
+  },
+  (table) => [index('access_tokens_user_id_idx').on(table.userId)],
+);

@@ -194,9 +194,14 @@ export const reworks = mysqlTable(
       .notNull()
       .references(() => units.id),
     testRunId: ref().references((): AnyMySqlColumn => testRuns.id),
+    /** Why the unit went into rework: what was seen. */
     cause: varchar({ length: 300 }).notNull(),
+    /** What was found to be behind it, as the works' causes are counted. */
+    foundCause: varchar({ length: 120 }),
     remedy: varchar({ length: 300 }),
     minutes: int(),
+    /** The passed run that showed that the remedy held. */
+    confirmedByRunId: ref().references((): AnyMySqlColumn => testRuns.id),
     openedAt: moment().notNull(),
     openedBy: ref().references(() => users.id),
     closedAt: moment(),

@@ -1,0 +1,1 @@
+ALTER TABLE `test_plan_revisions` ADD `output_stage` json;

@@ -1,0 +1,1 @@
+ALTER TABLE `test_runs` ADD `deviations` varchar(500) DEFAULT '' NOT NULL;

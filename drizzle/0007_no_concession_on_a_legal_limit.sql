@@ -1,0 +1,1 @@
+ALTER TABLE `run_points` ADD CONSTRAINT `run_points_concession_check` CHECK (`run_points`.`concession` is null or `run_points`.`rule_key` is null);
