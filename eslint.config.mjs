@@ -5,7 +5,7 @@ import tseslint from 'typescript-eslint';
 const typed = ['**/*.ts', '**/*.tsx'];
 
 export default tseslint.config(
-  { ignores: ['.build/**', '.data/**', '.shots/**', '.test/**', '.astro/**', 'drizzle/**'] },
+  { ignores: ['.build/**', '.data/**', '.shots/**', '.bench/**', '.test/**', '.astro/**', 'drizzle/**'] },
   js.configs.recommended,
   ...tseslint.configs.strict,
   ...astro.configs['flat/recommended'],

@@ -1,44 +1,21 @@
-import { mkdirSync, mkdtempSync, rmSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { mkdirSync, rmSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { chromium, type Browser, type BrowserContext } from 'playwright/test';
 import { openDatabase } from '~/server/db/client';
-import { startApplication, type Application } from '../../src/server/run/application';
+import type { Application } from '../../src/server/run/application';
 import { lifetime } from '../../src/server/run/lifetime';
-import { freePort } from '../../src/server/run/ports';
 import { root } from '../../src/server/run/root';
 import { sayFailure, step } from '../../src/server/run/step.mjs';
 import { listExamplePages, type ExamplePage } from '../e2e/page-list';
 import { askForLink, signIn, waitForIslands, type Viewer } from '../e2e/people';
 import { chromiumAt } from './chromium';
+import { startDemoWorks } from './demo-works';
 import { writeIndex, type Shot } from './shots-index';
 
 const folder = join(root, '.shots');
 const themes = ['light', 'dark'] as const;
 const heights: Readonly<Record<number, number>> = { 390: 844, 800: 1280, 1024: 768, 1440: 900 };
 const life = lifetime(60_000, () => step('Stopping'));
-
-/** An application of its own, with a fresh demo works, that goes when the pictures are taken. */
-async function startDemo(): Promise<Application> {
-  const dataFolder = mkdtempSync(join(tmpdir(), 'rigwright-shots-'));
-  life.onStop(() => Promise.resolve(rmSync(dataFolder, { recursive: true, force: true })));
-  const ours = /^(RIGWRIGHT_|STRIPE_|SMTP_|MAIL_FROM$|DATABASE_URL$|PORT$|LOG_LEVEL$|NODE_ENV$)/;
-  const inherited = Object.fromEntries(Object.entries(process.env).filter(([name]) => !ours.test(name)));
-  return startApplication({
-    variables: {
-      ...inherited,
-      PORT: String(await freePort()),
-      RIGWRIGHT_DATA: dataFolder,
-      RIGWRIGHT_DEMO: '1',
-    },
-    signal: life.signal,
-    onStop: life.onStop,
-    onFatal: (error) => {
-      sayFailure(error);
-      void life.end(1);
-    },
-  });
-}
 
 /** The widths at which a page is looked at: the desk's, and the narrow one that it is made for. */
 function widthsOf({ narrow }: ExamplePage): number[] {
@@ -87,7 +64,7 @@ async function takeAll(browser: Browser, application: Application, wanted: reado
 
 let exitCode = 1;
 try {
-  const application = await startDemo();
+  const application = await startDemoWorks(life);
   rmSync(folder, { recursive: true, force: true });
   mkdirSync(folder);
   const browser = await chromium.launch(chromiumAt);

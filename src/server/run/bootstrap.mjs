@@ -18,6 +18,7 @@ const commands = {
   check: { script: 'tests/setup/run-checks.ts', debian: [] },
   'check:checks': { script: 'tests/setup/check-the-checks.ts', debian: forDatabase },
   shots: { script: 'tests/setup/shots.ts', debian: forTests },
+  bench: { script: 'tests/setup/bench.ts', debian: forTests },
 };
 
 /** Refuses a Node.js on which the packages do not run. */
