@@ -52,11 +52,13 @@ export const paths = {
   run: (serial: string, runNo: number) => `/works/units/${segment(serial)}/runs/${segment(runNo)}`,
   instruments: () => '/works/instruments',
   worksCertificate: (numberAndLetter: string) => `/works/certificates/${segment(numberAndLetter)}`,
+  amendCertificate: (numberAndLetter: string) => `/works/certificates/${segment(numberAndLetter)}/amend`,
   dispatch: () => '/works/dispatch',
   packOrder: (number: number) => `/works/dispatch/${segment(number)}`,
   shipment: (number: number) => `/works/shipments/${segment(number)}`,
   office: () => '/works/people',
   worksData: () => '/works/office',
+  signingKeys: () => '/works/keys',
   changes: (beforeId?: number) => withQuery('/works/changes', { before: beforeId?.toString() }),
   // The API
   api: {
@@ -118,7 +120,9 @@ export const paths = {
     certificates: () => '/api/certificates',
     certificate: (code: string) => `/api/certificates/${segment(code)}`,
     certificatePdf: (code: string) => `/api/certificates/${segment(code)}/pdf`,
+    certificateAmendments: (code: string) => `/api/certificates/${segment(code)}/amendments`,
     certificateKeys: () => '/api/certificate-keys',
+    certificateKeyPem: (keyId: string) => `/api/certificate-keys/${segment(keyId)}/pem`,
     shipments: () => '/api/shipments',
     shipment: (number: number) => `/api/shipments/${segment(number)}`,
     unpacking: (number: number) => `/api/shipments/${segment(number)}/unpacking`,

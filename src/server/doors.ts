@@ -39,11 +39,13 @@ export const pageRules: Readonly<Record<string, Rule>> = {
   '/works/bench': staff('tester', 'builder'),
   '/works/instruments': staff('tester', 'builder'),
   '/works/certificates/[number]': staff('builder', 'tester', 'shipper'),
+  '/works/certificates/[number]/amend': staff('tester'),
   '/works/dispatch': staff('shipper', 'bookkeeper'),
   '/works/dispatch/[number]': staff('shipper'),
   '/works/shipments/[number]': staff('shipper', 'bookkeeper'),
   '/works/people': staff(),
   '/works/office': staff(),
+  '/works/keys': staff(),
   '/works/changes': staff(),
 };
 

@@ -215,6 +215,9 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     '/works/certificates/[number]': {
       '': paths.worksCertificate(`${certificate.number}${certificate.letter}`),
     },
+    '/works/certificates/[number]/amend': {
+      '': paths.amendCertificate(`${certificate.number}${certificate.letter}`),
+    },
     '/works/dispatch': { '': paths.dispatch() },
     '/works/dispatch/[number]': { '': paths.packOrder(packable.number) },
     '/works/shipments/[number]': {
@@ -223,6 +226,7 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     },
     '/works/people': { '': paths.office() },
     '/works/office': { '': paths.worksData() },
+    '/works/keys': { '': paths.signingKeys() },
     '/works/changes': { '': paths.changes() },
   };
 }

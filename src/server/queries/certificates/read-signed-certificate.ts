@@ -74,16 +74,3 @@ export async function readSignedCertificate(reader: Reader, wanted: Wanted) {
     newerNumber: later === undefined ? null : `${later.number}${later.letter}`,
   };
 }
-
-/** The works' public keys, the present one first. */
-export async function listPublicKeys(reader: Reader) {
-  return reader
-    .select({
-      keyId: signingKeys.keyId,
-      publicKey: signingKeys.publicKey,
-      createdAt: signingKeys.createdAt,
-      retiredAt: signingKeys.retiredAt,
-    })
-    .from(signingKeys)
-    .orderBy(desc(signingKeys.id));
-}
