@@ -1,5 +1,6 @@
 /// <reference types="astro/client" />
 
+import type { Access } from '~/server/auth/access-tokens';
 import type { SignedIn } from '~/server/auth/sessions';
 import type { Reader } from '~/server/db/client';
 import type { FormReturn } from '~/server/form-return';
@@ -10,6 +11,8 @@ declare global {
     interface Locals {
       requestId: string;
       person: SignedIn | null;
+      /** What the request's bearer token stands for; null where it bore none. Pages take none. */
+      access: Access | null;
       /** For reading; every write goes through a service. */
       db: Reader;
       now: Date;

@@ -2,6 +2,7 @@ import { randomUUID } from 'node:crypto';
 import { defineMiddleware } from 'astro:middleware';
 import type { APIContext } from 'astro';
 import { doorAt } from '~/server/api-routes';
+import { accessOf, bearerOf } from '~/server/auth/access-tokens';
 import { personOf, sessionCookieName } from '~/server/auth/sessions';
 import { db } from '~/server/db/client';
 import { saidCookie } from '~/server/door';
@@ -43,7 +44,15 @@ async function fillLocals(context: APIContext): Promise<void> {
   locals.said = null;
   locals.formReturn = null;
   locals.person = null;
+  locals.access = null;
   locals.works = await getWorks(locals.db);
+  const bearer = context.routePattern.startsWith('/api/') ? bearerOf(request.headers) : null;
+  if (bearer !== null) {
+    // A bad token is told so, even beside a good cookie.
+    locals.access = await accessOf(bearer, locals.now);
+    locals.person = locals.access.ok ? locals.access.person : null;
+    return;
+  }
   const token = cookies.get(sessionCookieName)?.value;
   if (token === undefined) return;
   const found = await personOf(token);

@@ -1,6 +1,7 @@
 import { createHash, createHmac } from 'node:crypto';
 import type { APIContext, APIRoute } from 'astro';
 import type { z } from 'zod';
+import type { AccessScope } from '~/domain/people/access-scopes';
 import { paths } from '~/lib/paths';
 import { sessionCookieName } from '~/server/auth/sessions';
 import type { SignedIn } from '~/server/auth/sessions';
@@ -43,6 +44,8 @@ interface DoorSpec<
   O extends z.ZodTypeAny,
 > {
   rule: Rule;
+  /** Opens the door to access tokens of this scope too; without it, to none. */
+  scope?: AccessScope;
   /** One line for the API's description. */
   summary: string;
   params?: P;
@@ -64,6 +67,7 @@ interface DoorSpec<
 /** What the API's description and the tests read off a door. */
 export interface DoorDescription {
   rule: Rule;
+  scope: AccessScope | undefined;
   summary: string;
   params: z.ZodTypeAny | undefined;
   query: z.ZodTypeAny | undefined;
@@ -94,6 +98,7 @@ export function door<
     const form = { data: undefined as FormData | undefined };
     try {
       checkOrigin(api);
+      checkAccess(spec.scope, api);
       checkRule(spec.rule, api.locals.person);
       const raw = await readRequest(api, spec, form);
       const params = parse(spec.params, api.params, 'The address');
@@ -117,12 +122,22 @@ export function door<
       if (spec.said !== undefined) saySo(api, spec.said(output));
       return seeOther(spec.next?.(output, { params, input }) ?? pageOf(api));
     } catch (error) {
-      return refusal(api, error, form.data);
+      return refusal(api, error, form.data, spec.scope);
     }
   };
-  const { rule, summary, params, query, input, output, maxBytes = defaultMaxBytes, raw = false } = spec;
+  const {
+    rule,
+    scope,
+    summary,
+    params,
+    query,
+    input,
+    output,
+    maxBytes = defaultMaxBytes,
+    raw = false,
+  } = spec;
   return Object.assign(route, {
-    description: { rule, summary, params, query, input, output, maxBytes, raw },
+    description: { rule, scope, summary, params, query, input, output, maxBytes, raw },
   });
 }
 
@@ -136,6 +151,32 @@ function checkOrigin({ request, cookies }: APIContext): void {
     return;
   }
   if (!URL.canParse(origin) || new URL(origin).host !== request.headers.get('host')) throw refused;
+}
+
+/** Roles are asked all the same: a token opens no more than its person may. */
+function checkAccess(scope: AccessScope | undefined, { locals: { access } }: APIContext): void {
+  if (access === null) return;
+  if (!access.ok) throw new DomainError('unsigned', access.reason);
+  if (scope === undefined) throw new DomainError('forbidden', 'This door does not open to access tokens.');
+  if (!access.scopes.includes(scope)) {
+    throw new DomainError(
+      'forbidden',
+      `This access token has not the scope ${scope}. Make one that has it, on the page of your tokens.`,
+    );
+  }
+}
+
+/** What a script is told of tokens, as RFC 6750 has it; null where tokens are beside the point. */
+function challengeOf(scope: AccessScope | undefined, { locals }: APIContext, status: number): string | null {
+  const { access } = locals;
+  if (status === 401) {
+    if (access !== null) return 'Bearer error="invalid_token"';
+    return scope === undefined ? null : `Bearer scope="${scope}"`;
+  }
+  if (status !== 403 || access?.ok !== true || scope === undefined || access.scopes.includes(scope)) {
+    return null;
+  }
+  return `Bearer error="insufficient_scope", scope="${scope}"`;
 }
 
 function checkRule(rule: Rule, person: SignedIn | null): void {
@@ -209,14 +250,21 @@ function parse<S extends z.ZodTypeAny>(schema: S | undefined, value: unknown, wh
 }
 
 function callContext(api: APIContext, form: FormData | undefined, body: string): CallContext {
-  const { person, now, requestId } = api.locals;
+  const { person, access, now, requestId } = api.locals;
   const formKey = form?.get('_key');
   const key = api.request.headers.get('idempotency-key') ?? (typeof formKey === 'string' ? formKey : null);
   const ctx: CallContext = {
     db: db(),
     now,
     requestId,
-    actor: person === null ? { kind: 'visitor' } : { kind: 'user', userId: person.id },
+    actor:
+      person === null
+        ? { kind: 'visitor' }
+        : {
+            kind: 'user',
+            userId: person.id,
+            ...(access?.ok === true ? { accessTokenId: access.tokenId } : {}),
+          },
   };
   if (key === null || safeMethods.has(api.request.method)) return ctx;
   if (!/^[\x21-\x7e]{1,200}$/.test(key)) {
@@ -275,7 +323,12 @@ function saySo({ cookies }: APIContext, sentence: string): void {
   cookies.set(saidCookie, sentence, noteCookie);
 }
 
-async function refusal(api: APIContext, error: unknown, form: FormData | undefined): Promise<Response> {
+async function refusal(
+  api: APIContext,
+  error: unknown,
+  form: FormData | undefined,
+  scope: AccessScope | undefined,
+): Promise<Response> {
   const { requestId, now } = api.locals;
   if (!(error instanceof DomainError)) log.error({ err: error, requestId }, 'a door failed');
   const problem = problemOf(error, requestId);
@@ -286,8 +339,12 @@ async function refusal(api: APIContext, error: unknown, form: FormData | undefin
     api.cookies.set(formReturnCookie, token, noteCookie);
     return seeOther(page);
   }
+  const challenge = challengeOf(scope, api, problem.status);
   return new Response(JSON.stringify(problem), {
     status: problem.status,
-    headers: { 'content-type': 'application/problem+json' },
+    headers: {
+      'content-type': 'application/problem+json',
+      ...(challenge === null ? {} : { 'www-authenticate': challenge }),
+    },
   });
 }

@@ -5,7 +5,10 @@ import { DomainError } from '~/server/errors';
 
 /** On whose behalf something is done. */
 export type Actor =
-  { kind: 'user'; userId: number } | { kind: 'visitor' } | { kind: 'provider' } | { kind: 'system' };
+  | { kind: 'user'; userId: number; /** Of the token by which a script asked. */ accessTokenId?: number }
+  | { kind: 'visitor' }
+  | { kind: 'provider' }
+  | { kind: 'system' };
 
 export type SubjectType =
   | 'user'
@@ -165,12 +168,13 @@ async function inTransaction<T>(tx: Tx, asked: Asked, work: (tx: WriteContext) =
 }
 
 async function insertEntry(tx: Tx, asked: Asked, entry: LedgerEntry): Promise<void> {
+  const tokenId = asked.actor.kind === 'user' ? asked.actor.accessTokenId : undefined;
   const [{ insertId }] = await tx.insert(ledgerEntries).values({
     at: asked.now,
     actorKind: asked.actor.kind,
     actorUserId: asked.actor.kind === 'user' ? asked.actor.userId : null,
     action: entry.action,
-    details: entry.details ?? {},
+    details: { ...entry.details, ...(tokenId === undefined ? {} : { accessTokenId: tokenId }) },
     requestId: asked.requestId ?? null,
   });
   const subjects = new Map(entry.subjects.map((subject) => [`${subject.type}:${subject.id}`, subject]));

@@ -1,5 +1,6 @@
 import type { APIContext } from 'astro';
 import { createContext } from 'astro/middleware';
+import type { Access } from '~/server/auth/access-tokens';
 import type { SignedIn } from '~/server/auth/sessions';
 import { db } from '~/server/db/client';
 import type { Door } from '~/server/door';
@@ -12,6 +13,7 @@ interface Call {
   headers?: Record<string, string>;
   body?: string | FormData | URLSearchParams;
   person?: SignedIn | null;
+  access?: Access | null;
   now?: Date;
 }
 
@@ -32,6 +34,7 @@ export async function callDoor(
     headers = {},
     body,
     person = null,
+    access = null,
     now = someDay,
   }: Call = {},
 ): Promise<{ response: Response; cookies: APIContext['cookies'] }> {
@@ -44,6 +47,7 @@ export async function callDoor(
     locals: {
       requestId: 'request-1',
       person,
+      access,
       db: db(),
       now,
       works: { name: 'Works', timeZone: 'UTC', currency: 'EUR', country: 'XX' },

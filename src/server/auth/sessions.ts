@@ -72,6 +72,12 @@ export async function endOtherSessions(userId: number, keptToken?: string): Prom
 export async function personOf(token: string): Promise<{ person: SignedIn; renewed: Cookie | null } | null> {
   const { session } = await lucia().validateSession(tokenHash(token));
   if (session === null) return null;
+  const person = await letIn(session.userId);
+  return person === null ? null : { person, renewed: session.fresh ? cookieOf(token) : null };
+}
+
+/** A person by id, with their roles; null where they are shut out. */
+export async function letIn(userId: number): Promise<SignedIn | null> {
   const rows = await db()
     .select({
       id: users.id,
@@ -84,14 +90,11 @@ export async function personOf(token: string): Promise<{ person: SignedIn; renew
     .from(users)
     .innerJoin(userProfiles, eq(userProfiles.userId, users.id))
     .leftJoin(userRoles, eq(userRoles.userId, users.id))
-    .where(eq(users.id, session.userId));
+    .where(eq(users.id, userId));
   const [first] = rows;
   if (first === undefined || first.disabledAt !== null) return null;
   const roles = rows.flatMap(({ role }) => (role === null ? [] : [role]));
-  return {
-    person: { id: first.id, name: first.name, email: first.email, callSign: first.callSign, roles },
-    renewed: session.fresh ? cookieOf(token) : null,
-  };
+  return { id: first.id, name: first.name, email: first.email, callSign: first.callSign, roles };
 }
 
 function cookieOf(token: string): Cookie {

@@ -38,6 +38,7 @@ const introduction = [
   'Errors are problem details (RFC 9457); `fields` holds one sentence for each field that cannot be used.',
   'A changing request may bear an Idempotency-Key (a form: the field `_key`): sent again under the same key, it changes nothing twice and gets the same answer.',
   'A changing request with a session cookie needs an Origin header of this server.',
+  'A door that names the scheme `token` opens to scripts too, by `Authorization: Bearer rw_…`: to a token that has the scope, of a person whose roles open it. Other doors refuse tokens with 403.',
 ].join('\n\n');
 
 /** Describes all doors by the schemas that they check with. */
@@ -62,6 +63,12 @@ export function describeApi(doors: readonly DescribedDoor[], serverUrl: string):
           name: sessionCookieName,
           description: 'Set by signing in. The scopes named at a door are the roles, one of which opens it.',
         },
+        token: {
+          type: 'http',
+          scheme: 'bearer',
+          description:
+            'An access token that a person of the works made for a script. The scope named at a door is the one that the token needs.',
+        },
       },
     },
   };
@@ -77,6 +84,8 @@ function operationOf({ pattern, method, description }: DescribedDoor): Operation
   const changes = method !== 'GET';
   const takesBody = changes && (raw || input !== undefined);
   const notes = [`Who may: ${inWords(rule)}.`];
+  if (description.scope !== undefined)
+    notes.push(`Opens to access tokens with the scope ${description.scope}.`);
   if (takesBody) notes.push(`The body has at most ${maxBytes.toLocaleString('en')} bytes.`);
   return {
     operationId: operationId(method, pattern),
@@ -90,7 +99,7 @@ function operationOf({ pattern, method, description }: DescribedDoor): Operation
     ],
     ...(takesBody ? { requestBody: bodyOf(input, raw) } : {}),
     responses: responsesOf(description, changes),
-    security: securityOf(rule),
+    security: securityOf(description),
   };
 }
 
@@ -167,9 +176,11 @@ function contentOf(output: DoorDescription['output']): Record<string, unknown> {
 }
 
 /** Any one of the requirements is enough, so each role stands in one of its own. */
-function securityOf(rule: Rule): Record<string, string[]>[] {
+function securityOf({ rule, scope }: DoorDescription): Record<string, string[]>[] {
   if (rule.kind === 'anyone') return [];
-  return rule.kind === 'signed_in' ? [{ session: [] }] : rule.roles.map((role) => ({ session: [role] }));
+  const token = scope === undefined ? [] : [{ token: [scope] }];
+  if (rule.kind === 'signed_in') return [{ session: [] }, ...token];
+  return [...rule.roles.map((role) => ({ session: [role] })), ...token];
 }
 
 function inWords(rule: Rule): string {

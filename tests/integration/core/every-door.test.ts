@@ -1,14 +1,18 @@
 import { readdirSync } from 'node:fs';
 import { join } from 'node:path';
 import { afterAll, beforeAll, beforeEach, describe, expect, test } from 'vitest';
+import type { AccessScope } from '~/domain/people/access-scopes';
 import { staffRoles } from '~/domain/people/roles';
 import type { StaffRole } from '~/domain/people/roles';
 import { paths } from '~/lib/paths';
 import { listDoors } from '~/server/api-routes';
+import { newAccessToken } from '~/server/auth/access-tokens';
 import { openSession } from '~/server/auth/sessions';
+import { tokenHash } from '~/server/auth/tokens';
 import { pageRules } from '~/server/doors';
 import { passes } from '~/server/rules';
 import type { Rule } from '~/server/rules';
+import { createAccessToken } from '~/server/services/people/create-access-token';
 import { write } from '~/server/write';
 import { root } from '../../../src/server/run/root';
 import { seedWorks } from '../../factories/catalog';
@@ -128,6 +132,66 @@ describe.each(callers)('as $who', ({ who, roles }) => {
       if (!isRight) wrong.push(`${pattern}: ${expected}, but ${response.status} ${location}`);
     }
     expect(wrong).toEqual([]);
+  });
+});
+
+describe('with an access token', () => {
+  const bearing = (token: string) => ({ authorization: `Bearer ${token}` });
+
+  async function tokenOf(who: string, scopes: AccessScope[]): Promise<string> {
+    const token = newAccessToken();
+    const userId = userIds.get(who) ?? 0;
+    await createAccessToken(
+      { name: 'script', scopes, days: null, tokenHash: tokenHash(token) },
+      callContext(database.db, { actor: { kind: 'user', userId } }),
+    );
+    return token;
+  }
+
+  async function walk(
+    token: string,
+    isRight: (scope: AccessScope | undefined, response: Response) => boolean,
+  ) {
+    const { doors } = await listDoors();
+    const wrong: string[] = [];
+    for (const { pattern, method, description } of doors) {
+      const body = method === 'GET' ? {} : { body: '{}' };
+      const response = await ask('nobody', addressOf(pattern), {
+        ...{ method, ...body },
+        headers: { ...bearing(token), 'content-type': 'application/json' },
+      });
+      await response.body?.cancel();
+      if (!isRight(description.scope, response)) wrong.push(`${method} ${pattern}: ${response.status}`);
+    }
+    expect(wrong).toEqual([]);
+  }
+
+  test('only doors of its scope open, even to the owner', { timeout: 300_000 }, async () => {
+    await walk(await tokenOf('the owner', ['readings:write']), (scope, { status }) =>
+      scope === undefined ? status === 403 : status < 500 && ![401, 403].includes(status),
+    );
+  });
+
+  test('none opens to one without a scope', { timeout: 300_000 }, async () => {
+    await walk(await tokenOf('the owner', []), (scope, { status, headers }) => {
+      const said = headers.get('www-authenticate')?.startsWith('Bearer error="insufficient_scope"') ?? false;
+      return status === 403 && said === (scope !== undefined);
+    });
+  });
+
+  test('none opens to one that is unknown', { timeout: 300_000 }, async () => {
+    await walk(
+      'rw_unknown',
+      (_, { status, headers }) =>
+        status === 401 && headers.get('www-authenticate') === 'Bearer error="invalid_token"',
+    );
+  });
+
+  test('no page opens', async () => {
+    const token = await tokenOf('the owner', ['readings:write']);
+    const response = await ask('nobody', paths.works(), { headers: bearing(token) });
+    expect(response.headers.get('location')).toContain(paths.signIn());
+    await response.body?.cancel();
   });
 });
 

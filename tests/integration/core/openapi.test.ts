@@ -89,6 +89,7 @@ test('params that a door checks are those of its pattern', async () => {
 
 const plain = {
   summary: 'One',
+  scope: undefined,
   params: undefined,
   query: undefined,
   input: undefined,
@@ -112,6 +113,20 @@ test('who may pass stands in the text and in the requirements', () => {
   expect(paths['/api/c']?.['get']).toMatchObject({
     description: 'Who may: owner, tester.',
     security: [{ session: ['owner'] }, { session: ['tester'] }],
+  });
+  const { paths: scoped } = describeApi(
+    [
+      {
+        pattern: '/api/d',
+        method: 'POST',
+        description: { ...plain, rule: staff('tester'), scope: 'readings:write' },
+      },
+    ],
+    'http://localhost',
+  );
+  expect(scoped['/api/d']?.['post']).toMatchObject({
+    description: 'Who may: owner, tester. Opens to access tokens with the scope readings:write.',
+    security: [{ session: ['owner'] }, { session: ['tester'] }, { token: ['readings:write'] }],
   });
   expect(paths['/api/a']?.['get']?.responses).not.toHaveProperty('401');
   expect(paths['/api/b']?.['get']?.responses).not.toHaveProperty('403');
