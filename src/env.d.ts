@@ -1,5 +1,6 @@
 /// <reference types="astro/client" />
 
+import type { WorksUse } from '~/domain/people/stations';
 import type { Access } from '~/server/auth/access-tokens';
 import type { SignedIn } from '~/server/auth/sessions';
 import type { Reader } from '~/server/db/client';
@@ -17,6 +18,8 @@ declare global {
       db: Reader;
       now: Date;
       works: WorksSummary;
+      /** Which rooms of the works are in use; null on pages that show none. */
+      use: WorksUse | null;
       /** What the person has just done, to be said once. */
       said: string | null;
       /** What a refused form of this page held, and what is wrong with it. */

@@ -13,6 +13,7 @@ import { findForm, formReturnCookie } from '~/server/form-return';
 import { passes } from '~/server/rules';
 import { paths } from '~/lib/paths';
 import { getWorks } from '~/server/queries/office/get-works';
+import { readWorksUse } from '~/server/queries/office/read-works-use';
 
 export const onRequest = defineMiddleware(async (context, next) => {
   await fillLocals(context);
@@ -45,6 +46,7 @@ async function fillLocals(context: APIContext): Promise<void> {
   locals.formReturn = null;
   locals.person = null;
   locals.access = null;
+  locals.use = null;
   locals.works = await getWorks(locals.db);
   const bearer = context.routePattern.startsWith('/api/') ? bearerOf(request.headers) : null;
   if (bearer !== null) {
@@ -58,6 +60,9 @@ async function fillLocals(context: APIContext): Promise<void> {
   const found = await personOf(token);
   locals.person = found?.person ?? null;
   if (found?.renewed) cookies.set(found.renewed.name, found.renewed.value, found.renewed.attributes);
+  if (locals.person !== null && locals.person.roles.length > 0 && !context.routePattern.startsWith('/api/')) {
+    locals.use = await readWorksUse(locals.db);
+  }
 }
 
 /** What the last door left for this page: the sentence that it was done, or the form that was refused. */

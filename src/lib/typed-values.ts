@@ -7,3 +7,14 @@ export function typedIn(
     return typeof value === 'string' ? value : fallback;
   };
 }
+
+/** As {@link typedIn}, for what may be chosen more than once; a form that came back without it has none chosen. */
+export function typedList(
+  form: { values: Record<string, string | string[]> } | null,
+  name: string,
+  fallback: readonly string[],
+): readonly string[] {
+  if (form === null) return fallback;
+  const value = form.values[name] ?? [];
+  return typeof value === 'string' ? [value] : value;
+}

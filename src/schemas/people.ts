@@ -46,14 +46,18 @@ export const personChangeSchema = z.object({
   version: z.coerce.number().int(),
 });
 
+const addressLines = z
+  .preprocess(
+    (value) => (typeof value === 'string' ? value.split('\n').map((line) => line.trim()) : value),
+    z
+      .array(z.string().max(120, 'A line of an address has at most 120 characters.'))
+      .transform((lines) => lines.filter((line) => line !== '')),
+  )
+  .refine((lines) => lines.length > 0, 'Give the address as it stands on a letter.');
+
 export const worksSchema = z.object({
   name: z.string({ required_error: 'Name the works.' }).trim().min(1, 'Name the works.').max(120),
-  addressLines: z
-    .preprocess(
-      (value) => (typeof value === 'string' ? value.split('\n').map((line) => line.trim()) : value),
-      z.array(z.string().max(120)).transform((lines) => lines.filter((line) => line !== '')),
-    )
-    .refine((lines) => lines.length > 0, 'Give the address as it stands on a letter.'),
+  addressLines,
   country: z
     .string()
     .trim()
@@ -75,6 +79,9 @@ export const linkUseSchema = z.object({
   email: email.optional(),
   password: newPassword.optional(),
   worksName: z.string().trim().max(120).optional(),
+  addressLines: addressLines.optional(),
+  /** What the browser is set to; nobody is asked for it. */
+  timeZone: z.string().trim().refine(isTimeZone).optional().catch(undefined),
 });
 
 function isTimeZone(text: string): boolean {

@@ -51,6 +51,7 @@ export async function callDoor(
       db: db(),
       now,
       works: { name: 'Works', timeZone: 'UTC', currency: 'EUR', country: 'XX' },
+      use: null,
       said: null,
       formReturn: null,
     },

@@ -52,6 +52,15 @@ export function bandOf(freqHz: number, region: Region): BandKey | null {
   );
 }
 
+/** What a band holds in every Region, Hz. */
+export function commonEdges(band: BandKey): { lowHz: number; highHz: number } {
+  const all = Object.values(EDGES[band]);
+  return {
+    lowHz: Math.max(...all.map(([lowHz]) => lowHz)),
+    highHz: Math.min(...all.map(([, highHz]) => highHz)),
+  };
+}
+
 /** Band that holds all of an emission, from its lowest to its highest frequency (Hz), in the Region. */
 export function bandOfEmission(lowHz: number, highHz: number, region: Region): BandKey | null {
   const band = bandOf(lowHz, region);

@@ -42,9 +42,9 @@ export function nextTask(unit: WaitingUnit): Task | null {
         ? { what: 'Test it', href: paths.unit(unit.serial), role: 'tester' }
         : { what: 'Go on testing', href: paths.run(unit.serial, unit.openRunNo), role: 'tester' };
     case 'pack':
-      return unit.certified
-        ? packTask(unit)
-        : { what: 'Issue the certificate', href: paths.unit(unit.serial), role: 'tester' };
+      // One without an order is kept, or handed over as it is: nobody packs it.
+      if (unit.certified) return unit.orderNumber === null ? null : packTask(unit);
+      return { what: 'Issue the certificate', href: paths.unit(unit.serial), role: 'tester' };
     case 'ship':
       return packTask(unit);
   }

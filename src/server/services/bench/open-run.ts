@@ -9,13 +9,14 @@ import type { Ctx, WriteContext } from '~/server/write';
 import { mustBeAllowedToTest } from './may-test';
 
 /**
- * Opens the next final test of a unit, to its own test plan revision and for where it goes.
+ * Opens the next final test of a unit, to its own test plan revision and for where it goes: where its order goes, or
+ * without one where it was said to go when it was entered.
  *
  * @throws DomainError `not_found`; `conflict` with everything that stands against it; `forbidden` where the
  * tester built the unit and the works asks for another
  */
 export async function openRun(
-  input: { serial: string },
+  input: { serial: string; destination?: string | null },
   ctx: Ctx,
 ): Promise<{ runId: number; runNo: number; serial: string }> {
   return write(ctx, async (w) => {
@@ -24,7 +25,11 @@ export async function openRun(
     const [steps, [newest]] = [
       await readSteps(w.tx, unit),
       await w.tx
-        .select({ runNo: testRuns.runNo, state: testRuns.state })
+        .select({
+          runNo: testRuns.runNo,
+          state: testRuns.state,
+          destinationCountry: testRuns.destinationCountry,
+        })
         .from(testRuns)
         .where(eq(testRuns.unitId, unit.id))
         .orderBy(desc(testRuns.runNo))
@@ -34,7 +39,10 @@ export async function openRun(
     mustBeAllowed(unit.serial, unitCan.openRun({ ...facts, openSteps, runOpen: newest?.state === 'open' }));
     await mustBeAllowedToTest(w, unit);
     const runNo = (newest?.runNo ?? 0) + 1;
-    const destinationCountry = await destinationOf(w, unit.orderLineId);
+    // One typed at the bench keeps what was said of it; one that was built ahead has no destination yet.
+    const known = unit.batchId === null ? (newest?.destinationCountry ?? null) : null;
+    const destinationCountry =
+      unit.orderLineId === null ? (input.destination ?? known) : await destinationOf(w, unit.orderLineId);
     const [{ insertId: runId }] = await w.tx.insert(testRuns).values({
       unitId: unit.id,
       runNo,
@@ -59,8 +67,7 @@ export async function openRun(
   });
 }
 
-async function destinationOf(w: WriteContext, orderLineId: number | null): Promise<string | null> {
-  if (orderLineId === null) return null;
+async function destinationOf(w: WriteContext, orderLineId: number): Promise<string | null> {
   const [order] = await w.tx
     .select({ country: orders.destinationCountry })
     .from(orderLines)

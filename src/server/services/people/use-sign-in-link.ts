@@ -53,19 +53,24 @@ export async function useSignInLink(
   });
 }
 
-async function makeFirstOwner(w: WriteContext, { name, email, worksName }: Use): Promise<number> {
+async function makeFirstOwner(w: WriteContext, input: Use): Promise<number> {
+  const { name, email, worksName, addressLines, timeZone = 'UTC' } = input;
   if (name === undefined || email === undefined || worksName === undefined || worksName === '') {
     throw new DomainError('invalid', 'Give your name, your e-mail address and the name of the works.');
+  }
+  if (addressLines === undefined) {
+    const sentence = 'Give the address of the works: certificates carry it.';
+    throw new DomainError('invalid', sentence, { addressLines: sentence });
   }
   const [{ insertId: userId }] = await w.tx.insert(users).values({ createdAt: w.now });
   await w.tx.insert(userProfiles).values({ userId, email, name });
   await w.tx.insert(userRoles).values({ userId, role: 'owner' });
   await w.tx.insert(works).values({
     name: worksName,
-    addressLines: [],
+    addressLines,
     country: 'XX',
     email,
-    timeZone: 'UTC',
+    timeZone,
     currency: 'EUR',
   });
   await addSigningKey(w);
