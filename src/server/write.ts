@@ -28,6 +28,8 @@ export type SubjectType =
   | 'shipment'
   | 'instrument'
   | 'path'
+  | 'path_part'
+  | 'check_reference'
   | 'event';
 
 export interface Subject {
