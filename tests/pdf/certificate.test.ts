@@ -1,11 +1,11 @@
 import { describe, expect, it, vi } from 'vitest';
 import { z } from 'zod';
 import { buyerText, publicStatement, signedText } from '~/domain/certificates/canonical';
-import { certificateStatementSchema, publicStatementSchema } from '~/schemas/certificate-statement';
-import { digestBuyer, generateKeyPair, keyId, signText, verifyText } from '~/server/keys/ed25519';
+import { publicStatementSchema } from '~/schemas/certificate-statement';
+import { digestBuyer, keyId, publicKeyOf, verifyText } from '~/server/keys/ed25519';
 import { renderCertificate } from '~/server/pdf/certificate';
-import type { CertificateStatement } from '~/domain/certificates/statement';
 import { buildBandPoints, buildPoint, buildStatement } from './build-statement';
+import { renderStatement, signatureOf, testKey } from './render-statement';
 import { attachmentsOf, factsOf, fontsOf, syntaxCheck, textOf, wordsOf } from './tools';
 
 // A file is written and read by other programs in every test.
@@ -13,34 +13,19 @@ vi.setConfig({ testTimeout: 60_000 });
 
 const PAGE_WIDTH = 595.28;
 const MARGIN = 40.5;
-const pair = generateKeyPair();
+const publicKey = publicKeyOf(testKey);
 const attachedSchema = z.object({
   statement: publicStatementSchema,
   buyer: z.object({ callSign: z.string(), orderNumber: z.string(), salt: z.string() }),
   signature: z.object({ publicKey: z.string(), value: z.string() }),
 });
 
-function signatureOf(statement: CertificateStatement) {
-  return {
-    algorithm: 'Ed25519' as const,
-    keyId: keyId(pair.publicKey),
-    publicKey: pair.publicKey,
-    value: signText(pair.privatePem, signedText(statement)),
-  };
-}
-
-function render(over: Partial<CertificateStatement> = {}): Promise<Uint8Array> {
-  const statement = buildStatement(over);
-  certificateStatementSchema.parse(statement);
-  return renderCertificate(statement, signatureOf(statement));
-}
-
 /** Blanks do not count: a line may break anywhere. */
 const squeezed = (text: string) => text.replace(/\s+/gu, ' ');
 
 describe('the certificate', () => {
   it('says everything on one page', async () => {
-    const pdf = await render();
+    const pdf = await renderStatement();
     const text = squeezed(textOf(pdf));
     for (const words of [
       'Thistledown Radio Works',
@@ -81,7 +66,7 @@ describe('the certificate', () => {
       'This is not a type approval',
       '7F3K-92QD-HM0V',
       'https://works.example/c/7F3K92QDHM0V',
-      `Signed with the works’ key ${keyId(pair.publicKey)} (Ed25519).`,
+      `Signed with the works’ key ${keyId(publicKey)} (Ed25519).`,
       'The results are of this unit alone.',
       'page 1 of 1',
     ]) {
@@ -91,7 +76,7 @@ describe('the certificate', () => {
   });
 
   it('is a clean file with title, language, author and embedded subset fonts', async () => {
-    const pdf = await render();
+    const pdf = await renderStatement();
     expect(syntaxCheck(pdf)).toContain('No syntax or stream encoding errors found');
     const facts = factsOf(pdf);
     expect(facts).toMatch(/Title: +Final test certificate TC-2027-00412: Holm 3, H3-0147/u);
@@ -105,16 +90,16 @@ describe('the certificate', () => {
   });
 
   it('comes out byte for byte the same, whatever was made in between', async () => {
-    const first = await render();
-    await render({ unit: { ...buildStatement().unit, serial: 'µη-Ж', model: 'Ω' } });
-    const second = await render();
+    const first = await renderStatement();
+    await renderStatement({ unit: { ...buildStatement().unit, serial: 'µη-Ж', model: 'Ω' } });
+    const second = await renderStatement();
     expect(Buffer.from(second).equals(Buffer.from(first))).toBe(true);
-    expect(Buffer.from(await render({ letter: 'A' })).equals(Buffer.from(first))).toBe(false);
+    expect(Buffer.from(await renderStatement({ letter: 'A' })).equals(Buffer.from(first))).toBe(false);
   });
 
   it('carries its data, with which a stranger can check it', async () => {
     const statement = buildStatement();
-    const files = attachmentsOf(await render());
+    const files = attachmentsOf(await renderStatement());
     expect([...files.keys()]).toEqual(['TC-2027-00412.json']);
     const data: unknown = JSON.parse(files.get('TC-2027-00412.json') ?? '');
     const { statement: open, buyer, signature } = attachedSchema.parse(data);
@@ -127,17 +112,18 @@ describe('the certificate', () => {
     );
   });
 
+  // The words are those of ISO/IEC 17025:2017, 7.8.8.2.
   it('says which certificate an amendment replaces, and why', async () => {
     const replaces = { number: 'TC-2027-00412', reason: 'The band of the second row was misprinted.' };
-    const text = squeezed(textOf(await render({ letter: 'A', replaces })));
+    const text = squeezed(textOf(await renderStatement({ letter: 'A', replaces })));
     expect(text).toContain('TC-2027-00412A');
     expect(text).toContain(
-      'Amendment to certificate TC-2027-00412, which it replaces. Why: The band of the second row was misprinted.',
+      'Amendment to report, serial number TC-2027-00412. It replaces certificate TC-2027-00412. Why: The band of the second row was misprinted.',
     );
   });
 
   it('names no buyer where there is none', async () => {
-    const text = textOf(await render({ buyer: null, buyerDigest: null }));
+    const text = textOf(await renderStatement({ buyer: null, buyerDigest: null }));
     expect(text).not.toContain('Built for');
     expect(text).not.toContain('Q0ABC');
   });
@@ -149,7 +135,7 @@ describe('the certificate', () => {
       buildPoint({ band: '20 m', freqHz: 14_060_000, verdict: 'fail' }),
       buildPoint({ band: '17 m', freqHz: 18_080_000, verdict: 'not_run', limitText: '' }),
     ];
-    const text = squeezed(textOf(await render({ points, result: 'passed by concession' })));
+    const text = squeezed(textOf(await renderStatement({ points, result: 'passed by concession' })));
     expect(text).toMatch(/40 m .*Concession.*30 m .*Too close.*20 m .*Fail.*17 m .*No limit/u);
     expect(text).toContain('By concession of the owner: Power, 40 m, 2.30 W where 2.4 to 3.6 W is asked.');
     expect(text).toContain('Agreed with the buyer.');
@@ -159,7 +145,7 @@ describe('the certificate', () => {
   it('prints each k, and each uncertainty, where they differ', async () => {
     const wide = { value: 1.4, unit: 'dB', k: 2.13, low: 2, high: 4, text: '1.4 dB' };
     const points = [buildPoint(), buildPoint({ band: '30 m', freqHz: 10_116_000, uncertainty: wide })];
-    const text = squeezed(textOf(await render({ points })));
+    const text = squeezed(textOf(await renderStatement({ points })));
     expect(text).toContain('5 %, k = 2');
     expect(text).toContain('1.4 dB, k = 2.13');
   });
@@ -183,7 +169,7 @@ describe('the certificate', () => {
         uncertainty: null,
       }),
     ];
-    const text = textOf(await render({ points }));
+    const text = textOf(await renderStatement({ points }));
     expect(text).toMatch(/Current, at rest +61 mA/u);
     expect(text).toMatch(/Case closed +yes/u);
   });
@@ -220,7 +206,7 @@ describe('what does not fit', () => {
         }),
       ),
     );
-    const pdf = await render({ points: [...buildBandPoints(bands), ...more] });
+    const pdf = await renderStatement({ points: [...buildBandPoints(bands), ...more] });
     const text = textOf(pdf);
     expect(text).toContain('page 1 of 2');
     expect(text).toContain('page 2 of 2');
@@ -231,7 +217,7 @@ describe('what does not fit', () => {
   });
 
   it('keeps five bands with their harmonics on one page', async () => {
-    const pdf = await render({ points: buildBandPoints(bands.slice(0, 5)) });
+    const pdf = await renderStatement({ points: buildBandPoints(bands.slice(0, 5)) });
     expect(textOf(pdf)).toContain('page 1 of 1');
     expectInside(pdf);
   });
@@ -275,14 +261,14 @@ describe('what does not fit', () => {
   });
 
   it('finds signs of other scripts in a wider font and spells out those that no font has', async () => {
-    const pdf = await render({ testedBy: 'Ω − ± µ η Ж Ελλ 村', path: '\u202eabc' });
+    const pdf = await renderStatement({ testedBy: 'Ω − ± µ η Ж Ελλ 村', path: '\u202eabc' });
     const text = textOf(pdf).normalize('NFKC');
     for (const sign of ['Ω', '−', '±', 'η', 'Ж', 'Ελλ']) expect(text).toContain(sign);
     expect(text).toContain('µ'.normalize('NFKC'));
     expect(text).toContain('[U+6751]');
     expect(text).toContain('By way of abc.');
     expect(fontsOf(pdf).map(({ name }) => name)).toContain('RWRIGT+DejaVuSans');
-    expect(fontsOf(await render()).map(({ name }) => name)).not.toContain('RWRIGT+DejaVuSans');
+    expect(fontsOf(await renderStatement()).map(({ name }) => name)).not.toContain('RWRIGT+DejaVuSans');
   });
 });
 

@@ -25,6 +25,32 @@ export function textOf(pdf: Uint8Array): string {
   );
 }
 
+/** The text of a PDF in the order in which it was drawn. */
+export function drawnTextOf(pdf: Uint8Array): string {
+  return withFile('pdftotext', pdf, (file) =>
+    execFileSync('pdftotext', ['-raw', '-enc', 'UTF-8', file, '-'], { encoding: 'utf8' }),
+  );
+}
+
+/** The structure tree of a PDF with its texts, indented, as poppler reads it. */
+export function structureTextOf(pdf: Uint8Array): string {
+  return withFile('pdfinfo', pdf, (file) =>
+    execFileSync('pdfinfo', ['-struct-text', file], { encoding: 'utf8' }),
+  );
+}
+
+/** The page contents of a PDF as operators in plain text, one after the other. */
+export function operatorsOf(pdf: Uint8Array): string {
+  return withFile('qpdf', pdf, (file, folder) => {
+    const plain = join(folder, 'plain.pdf');
+    execFileSync('qpdf', ['--qdf', '--object-streams=disable', '--no-original-object-ids', file, plain]);
+    const text = readFileSync(plain, 'latin1');
+    return [...text.matchAll(/%% Contents for page \d+[\s\S]*?stream\n([\s\S]*?)\nendstream/gu)]
+      .map(([, operators]) => operators ?? '')
+      .join('\n');
+  });
+}
+
 /** Every word of a PDF with its box, in points from the upper left corner, and its page's number from 1. */
 export function wordsOf(
   pdf: Uint8Array,

@@ -99,15 +99,9 @@ function layOutAt(scale: number, statement: CertificateStatement, signature: Sta
 
 function drawAmendment(flow: Flow, { replaces }: CertificateStatement): void {
   if (!replaces) return;
-  const words = `Amendment to certificate ${replaces.number}, which it replaces.`;
-  drawParagraph(
-    flow,
-    [
-      { text: words, style: STRONG },
-      { text: ` Why: ${replaces.reason}`, style: BODY },
-    ],
-    8,
-  );
+  const words = `Amendment to report, serial number ${replaces.number}.`;
+  const why = `It replaces certificate ${replaces.number}. Why: ${replaces.reason}`;
+  drawParagraph(flow, { text: why, style: BODY }, 8, { text: `${words} `, style: STRONG });
 }
 
 function drawTag(flow: Flow, { unit, buyer, batchNumber }: CertificateStatement): void {
@@ -169,24 +163,17 @@ function drawWords(flow: Flow, statement: CertificateStatement): void {
   const lead = (text: string) => ({ text: `${text} `, style: STRONG });
   const body = (sentences: readonly string[]) => ({ text: sentences.join(' '), style: BODY });
   const [first = '', ...others] = statement.conformity;
-  drawParagraph(flow, [lead('Statement of conformity.'), body([first])], 3);
-  for (const paragraph of others) drawParagraph(flow, [body([paragraph])], 3);
-  drawParagraph(flow, [body(statement.notAssessed)], 3);
+  drawParagraph(flow, body([first]), 3, lead('Statement of conformity.'));
+  for (const paragraph of others) drawParagraph(flow, body([paragraph]), 3);
+  drawParagraph(flow, body(statement.notAssessed), 3);
   const departures = [...statement.deviations, ...concessionSentences(statement)];
-  if (departures.length > 0) drawParagraph(flow, [lead('Departures.'), body(departures)], 3);
+  if (departures.length > 0) drawParagraph(flow, body(departures), 3, lead('Departures.'));
 
   flow.y += 2;
   const small = (name: string, sentences: readonly string[]) => {
     const text = sentences.filter((sentence) => sentence !== '').join(' ');
     if (text === '') return;
-    drawParagraph(
-      flow,
-      [
-        { text: `${name} `, style: SMALL_STRONG },
-        { text, style: SMALL },
-      ],
-      2.5,
-    );
+    drawParagraph(flow, { text, style: SMALL }, 2.5, { text: `${name} `, style: SMALL_STRONG });
   };
   small('Decided by:', [statement.decisionRule, ...ruleSentences(statement.points)]);
   small('Measured with:', [
@@ -205,9 +192,9 @@ function drawCheck(
 ) {
   const x = flow.sheet.margin + QR_SIDE + 18;
   const width = flow.sheet.contentWidth - QR_SIDE - 18;
-  const lines = [
-    ...wrapText(`Issued by ${issuedBy}, ${formatDay(issuedOn)}`, BODY, width),
-    ...wrapSpans(
+  const paragraphs = [
+    wrapText(`Issued by ${issuedBy}, ${formatDay(issuedOn)}`, BODY, width),
+    wrapSpans(
       [
         { text: 'Check it: scan, or type ', style: BODY },
         { text: formatCode(code), style: style('mono', 9.6) },
@@ -215,16 +202,18 @@ function drawCheck(
       ],
       width,
     ),
-    ...wrapText(checkUrl, style('mono', 8.2, COLOURS.quiet), width),
-    ...wrapText(
+    wrapText(checkUrl, style('mono', 8.2, COLOURS.quiet), width),
+    wrapText(
       `Signed with the works’ key ${signature.keyId} (${signature.algorithm}). The readings are attached to this file as data.`,
       SMALL,
       width,
     ),
   ];
+  const { sheet } = flow;
   flow.y += 8;
   flow.need(QR_SIDE + 6);
-  drawQr(flow.sheet, checkUrl, flow.sheet.margin, flow.y, QR_SIDE);
-  const end = flow.sheet.lines(lines, x, flow.y + 2);
+  drawQr(sheet, checkUrl, sheet.margin, flow.y, QR_SIDE);
+  let end = flow.y + 2;
+  for (const lines of paragraphs) end = sheet.as('P', () => sheet.lines(lines, x, end));
   flow.y = Math.max(end, flow.y + QR_SIDE);
 }

@@ -44,14 +44,17 @@ export async function finish(flow: Flow, facts: DocumentFacts): Promise<Uint8Arr
 /** The foot of every page: a quiet sentence on the left, the page's number on the right. */
 export function drawFeet(flow: Flow, sentence: string): void {
   const quiet = style('text', 7.8, COLOURS.quiet);
+  const { sheet } = flow;
   flow.onEveryPage((page, count) => {
-    flow.sheet.lines(wrapText(sentence, quiet, 400).slice(0, 2), flow.sheet.margin, flow.sheet.height - 52);
-    flow.sheet.text(
-      `page ${page} of ${count}`,
-      flow.sheet.width - flow.sheet.margin,
-      flow.sheet.height - 43,
-      style('text', 9.4),
-      'end',
-    );
+    sheet.decoration(() => {
+      sheet.lines(wrapText(sentence, quiet, 400).slice(0, 2), sheet.margin, sheet.height - 52);
+      sheet.text(
+        `page ${page} of ${count}`,
+        sheet.width - sheet.margin,
+        sheet.height - 43,
+        style('text', 9.4),
+        'end',
+      );
+    });
   });
 }

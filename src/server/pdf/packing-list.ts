@@ -52,9 +52,12 @@ export async function renderPackingList(model: PackingList): Promise<Uint8Array>
     `What is in ${model.parcels === 1 ? 'this parcel' : `these ${model.parcels} parcels`}.`,
   );
 
-  for (const line of model.addressee.flatMap((text) => wrapText(text, ADDRESS, flow.sheet.contentWidth))) {
-    flow.need(lineHeight(ADDRESS));
-    flow.y = flow.sheet.lines([line], flow.sheet.margin, flow.y);
+  for (const addressLine of model.addressee) {
+    const part = flow.sheet.element('P');
+    for (const line of wrapText(addressLine, ADDRESS, flow.sheet.contentWidth)) {
+      flow.need(lineHeight(ADDRESS));
+      flow.y = flow.sheet.into(part, () => flow.sheet.lines([line], flow.sheet.margin, flow.y));
+    }
   }
   flow.y += 10;
   drawFacts(flow, [
@@ -98,12 +101,10 @@ export async function renderPackingList(model: PackingList): Promise<Uint8Array>
   flow.y += 14;
   drawParagraph(
     flow,
-    [
-      {
-        text: 'Is something missing or broken? Keep the wrapping and write to the works with the serial number.',
-        style: style('text', 9.6, COLOURS.quiet),
-      },
-    ],
+    {
+      text: 'Is something missing or broken? Keep the wrapping and write to the works with the serial number.',
+      style: style('text', 9.6, COLOURS.quiet),
+    },
     0,
   );
   drawFeet(flow, title);
@@ -152,5 +153,7 @@ function drawHeading(flow: Flow, text: string): void {
   flow.y += 12;
   // A heading stays with what it is the heading of.
   flow.need(lineHeight(HEADING) + 64);
-  flow.y = flow.sheet.lines(wrapText(text, HEADING, flow.sheet.contentWidth), flow.sheet.margin, flow.y) + 4;
+  const { sheet } = flow;
+  flow.y =
+    sheet.as('H2', () => sheet.lines(wrapText(text, HEADING, sheet.contentWidth), sheet.margin, flow.y)) + 4;
 }

@@ -26,5 +26,5 @@ export function drawQr(sheet: Sheet, text: string, x: number, y: number, side: n
       column += 1;
     }
   }
-  sheet.rectangles(boxes, COLOURS.ink);
+  sheet.as('Figure', () => sheet.rectangles(boxes, COLOURS.ink), { alt: `QR code that leads to ${text}` });
 }

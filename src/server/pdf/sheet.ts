@@ -1,13 +1,17 @@
 import {
   appendBezierCurve,
+  beginMarkedContent,
   beginText,
   closePath,
   concatTransformationMatrix,
+  endMarkedContent,
   endText,
   fill,
   fillAndStroke,
   lineTo,
   moveTo,
+  PDFOperator,
+  PDFOperatorNames,
   setDashPattern,
   setFillingRgbColor,
   setFontAndSize,
@@ -17,10 +21,12 @@ import {
   showText,
   stroke,
 } from 'pdf-lib';
-import type { PDFDocument, PDFName, PDFOperator, PDFPage } from 'pdf-lib';
+import type { PDFDocument, PDFName, PDFPage } from 'pdf-lib';
 import type { Colour } from './colours';
 import { FontBook, runWidth, splitRuns } from './fonts';
 import type { FontKey } from './fonts';
+import { Element, writeStructure } from './structure';
+import type { Role } from './structure';
 import { lineHeight, textWidth } from './text-layout';
 import type { Line, Style } from './text-layout';
 
@@ -29,9 +35,11 @@ const A4 = { width: 595.28, height: 841.89, margin: 40.5 } as const;
 
 type Point = readonly [x: number, y: number];
 type Paint = { fill?: Colour; stroke?: Colour; lineWidth?: number; dash?: readonly [number, number] };
-type Operation =
+type Drawing =
   | { kind: 'text'; font: FontKey; text: string; x: number; y: number; style: Style }
   | { kind: 'path'; shapes: readonly Shape[]; paint: Paint };
+/** `part` is the element of the structure that it belongs to, null for decoration. */
+type Operation = Drawing & { part: Element | null };
 type Shape = { points: readonly Point[]; closed: boolean } | { centre: Point; radius: number; half: boolean };
 
 /**
@@ -45,7 +53,10 @@ export class Sheet {
   readonly margin: number;
   readonly #scale: number;
   readonly #pages: Operation[][] = [[]];
+  readonly #root = new Element('Document');
   #current = 0;
+  #part: Element = this.#root;
+  #isDecoration = false;
 
   /** @param scale points on paper for a unit of the sheet: under 1, more goes on a page and all of it is smaller */
   constructor(scale: number) {
@@ -74,8 +85,38 @@ export class Sheet {
     this.#current = page;
   }
 
-  #add(operation: Operation): void {
-    this.#pages[this.#current]?.push(operation);
+  #add(drawing: Drawing): void {
+    const part = this.#isDecoration || this.#part.isGroup ? null : this.#part;
+    this.#pages[this.#current]?.push({ ...drawing, part });
+  }
+
+  /** Begins an element of the structure at the present place of reading, to be drawn {@link into}, perhaps piecemeal. */
+  element(role: Role, options: ConstructorParameters<typeof Element>[1] = {}): Element {
+    const made = new Element(role, options);
+    if (!this.#isDecoration) this.#part.children.push(made);
+    return made;
+  }
+
+  /** What is drawn meanwhile belongs to an element. */
+  into<T>(part: Element, draw: () => T): T {
+    const before = this.#part;
+    this.#part = part;
+    const drawn = draw();
+    this.#part = before;
+    return drawn;
+  }
+
+  /** An element and what is drawn for it, at once. */
+  as<T>(role: Role, draw: () => T, options: ConstructorParameters<typeof Element>[1] = {}): T {
+    return this.into(this.element(role, options), draw);
+  }
+
+  /** What is drawn meanwhile is not read out: the foot of a page, a head that is repeated. */
+  decoration(draw: () => void): void {
+    const before = this.#isDecoration;
+    this.#isDecoration = true;
+    draw();
+    this.#isDecoration = before;
   }
 
   /** Text on one line with its baseline at y. `end` puts the end of the text at x. @returns its width */
@@ -89,15 +130,32 @@ export class Sheet {
     return width;
   }
 
-  /** Lines of a paragraph, the first one's top at y. @returns the y under the last line */
-  lines(lines: readonly Line[], x: number, y: number, align: 'start' | 'end' = 'start'): number {
+  /**
+   * Lines of a paragraph, the first one's top at y.
+   *
+   * @param parts the elements that spans of a style belong to, where not to the present one
+   * @returns the y under the last line
+   */
+  lines(
+    lines: readonly Line[],
+    x: number,
+    y: number,
+    align: 'start' | 'end' = 'start',
+    parts?: ReadonlyMap<Style, Element>,
+  ): number {
     let top = y;
     for (const line of lines) {
       const height = Math.max(...line.spans.map((span) => lineHeight(span.style)));
       const size = Math.max(...line.spans.map((span) => span.style.size));
+      const baseline = top + (height + size * 0.68) / 2;
       let at = align === 'end' ? x - line.width : x;
-      for (const span of line.spans)
-        at += this.text(span.text, at, top + (height + size * 0.68) / 2, span.style);
+      line.spans.forEach((span, index) => {
+        // The blank at which a line was broken is drawn too, or its last word would be read as one with the next.
+        const words = line.isBroken && index === line.spans.length - 1 ? `${span.text} ` : span.text;
+        at += this.into(parts?.get(span.style) ?? this.#part, () =>
+          this.text(words, at, baseline, span.style),
+        );
+      });
       top += height;
     }
     return top;
@@ -141,21 +199,42 @@ export class Sheet {
     this.#add({ kind: 'path', shapes: [{ centre, radius, half }], paint });
   }
 
-  /** Draws everything into a document. */
+  /** Draws everything into a document, with its structure. */
   async drawInto(document: PDFDocument): Promise<void> {
     const fonts = new FontBook(document);
-    for (const operations of this.#pages) {
+    const pages: PDFPage[] = [];
+    for (const [number, operations] of this.#pages.entries()) {
       const page = document.addPage([A4.width, A4.height]);
+      pages.push(page);
       // The origin moves to the upper left corner, with y running down as everywhere here.
       page.pushOperators(concatTransformationMatrix(this.#scale, 0, 0, -this.#scale, 0, A4.height));
       const names = new Map<FontKey, PDFName>();
+      let mcid = 0;
+      let open: Element | null | undefined;
       for (const operation of operations) {
+        const { part } = operation;
+        if (part !== open) {
+          if (open !== undefined) page.pushOperators(endMarkedContent());
+          open = part;
+          if (part === null) page.pushOperators(beginMarkedContent('Artifact'));
+          else {
+            page.pushOperators(beginPart(part.role, mcid));
+            part.pieces.push({ page: number, mcid });
+            mcid += 1;
+          }
+        }
         if (operation.kind === 'path')
           page.pushOperators(...pathOperators(operation.shapes, operation.paint));
         else page.pushOperators(...(await textOperators(operation, page, fonts, names)));
       }
+      if (open !== undefined) page.pushOperators(endMarkedContent());
     }
+    writeStructure(document, this.#root, pages);
   }
+}
+
+function beginPart(role: Role, mcid: number): PDFOperator {
+  return PDFOperator.of(PDFOperatorNames.BeginMarkedContentSequence, [`/${role}`, `<</MCID ${mcid}>>`]);
 }
 
 async function textOperators(

@@ -1,4 +1,5 @@
 import { COLOURS } from './colours';
+import type { Colour } from './colours';
 import type { Flow } from './flow';
 import { lineHeight, style, textWidth, wrapText } from './text-layout';
 import type { Line, Style } from './text-layout';
@@ -127,15 +128,16 @@ export function drawTable(flow: Flow, table: Table): void {
     wrapText(heading, HEAD, (widths[column] ?? 0) + 0.5),
   );
   const headHeight = Math.max(...heads.map(tall)) + 6;
+  const { sheet } = flow;
   const drawHead = () => {
-    heads.forEach((lines, column) => put(lines, column, flow.y + headHeight - 6 - tall(lines)));
+    sheet.as('TR', () => {
+      heads.forEach((lines, column) => {
+        const y = flow.y + headHeight - 6 - tall(lines);
+        sheet.as('TH', () => put(lines, column, y), { scope: 'Column' });
+      });
+    });
     flow.y += headHeight;
-    flow.sheet.line(
-      [flow.sheet.margin, flow.y],
-      [flow.sheet.margin + flow.sheet.contentWidth, flow.y],
-      COLOURS.ink,
-      1.2,
-    );
+    drawRule(flow, COLOURS.ink, 1.2);
   };
 
   const laidRows = table.rows.map((row) => {
@@ -144,29 +146,39 @@ export function drawTable(flow: Flow, table: Table): void {
       const width = (widths[column] ?? 0) + 0.5;
       const { prose } = table.columns[column] ?? { prose: true };
       const under = (cell.under ?? []).flatMap((text) => wrapText(text, UNDER, width));
-      return { cell, lines: [...wrapText(cell.text, cellStyle(prose, row.quiet), width), ...under] };
+      const lines = [...wrapText(cell.text, cellStyle(prose, row.quiet), width), ...under];
+      // What stands under a value is read after a blank, as the next line of a paragraph is.
+      return { cell, lines: lines.map((line, at) => ({ ...line, isBroken: at < lines.length - 1 })) };
     });
     const pad = row.quiet ? 7 : 11;
     return { cells, pad, height: Math.max(13, ...cells.map(({ lines }) => tall(lines))) + pad };
   });
 
   flow.need(headHeight + (laidRows[0]?.height ?? 0));
-  drawHead();
-  for (const { cells, pad, height } of laidRows) {
-    if (flow.need(height)) drawHead();
-    cells.forEach(({ cell, lines }, column) => {
-      if (cell !== null && 'verdict' in cell) {
-        drawVerdict(flow.sheet, cell.verdict, lefts[column] ?? 0, flow.y + pad / 2 + 10, VERDICT_SIZE);
-      } else {
-        put(lines, column, flow.y + pad / 2);
-      }
-    });
-    flow.y += height;
-    flow.sheet.line(
-      [flow.sheet.margin, flow.y],
-      [flow.sheet.margin + flow.sheet.contentWidth, flow.y],
-      COLOURS.rule,
-      0.6,
-    );
-  }
+  sheet.as('Table', () => {
+    drawHead();
+    for (const { cells, pad, height } of laidRows) {
+      if (flow.need(height)) sheet.decoration(drawHead);
+      const y = flow.y + pad / 2;
+      sheet.as('TR', () => {
+        cells.forEach(({ cell, lines }, column) => {
+          const draw = () => {
+            if (cell !== null && 'verdict' in cell) {
+              drawVerdict(sheet, cell.verdict, lefts[column] ?? 0, y + 10, VERDICT_SIZE);
+            } else {
+              put(lines, column, y);
+            }
+          };
+          if (column === 0) sheet.as('TH', draw, { scope: 'Row' });
+          else sheet.as('TD', draw);
+        });
+      });
+      flow.y += height;
+      drawRule(flow, COLOURS.rule, 0.6);
+    }
+  });
+}
+
+function drawRule({ sheet, y }: Flow, colour: Colour, lineWidth: number): void {
+  sheet.line([sheet.margin, y], [sheet.margin + sheet.contentWidth, y], colour, lineWidth);
 }

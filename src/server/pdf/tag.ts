@@ -27,9 +27,10 @@ export function layOutTag(
     leftWidth,
   );
   const about = wrapText(model.about, style('text', 10), leftWidth);
-  const right = model.right.flatMap(({ text, quiet }) =>
+  const paragraphs = model.right.map(({ text, quiet }) =>
     wrapText(text, style('text', quiet ? 9 : 10, quiet ? COLOURS.quiet : COLOURS.ink), rightWidth),
   );
+  const right = paragraphs.flat();
   const tall = (lines: typeof right) =>
     lines.reduce((sum, line) => sum + Math.max(...line.spans.map((span) => lineHeight(span.style))), 0);
   const height = Math.max(tall(serial) + tall(about), tall(right), 40) + 17;
@@ -54,9 +55,13 @@ export function layOutTag(
         stroke: COLOURS.copper,
         lineWidth: 2.6,
       });
-      const under = sheet.lines(serial, textX, y + (height - tall(serial) - tall(about)) / 2);
-      sheet.lines(about, textX, under);
-      sheet.lines(right, x + width - PAD, y + (height - tall(right)) / 2, 'end');
+      const top = y + (height - tall(serial) - tall(about)) / 2;
+      const under = sheet.as('H2', () => sheet.lines(serial, textX, top));
+      sheet.as('P', () => sheet.lines(about, textX, under));
+      let rightTop = y + (height - tall(right)) / 2;
+      for (const lines of paragraphs) {
+        rightTop = sheet.as('P', () => sheet.lines(lines, x + width - PAD, rightTop, 'end'));
+      }
     },
   };
 }

@@ -7,8 +7,8 @@ import type { Colour } from './colours';
 export type Style = { face: Face; size: number; colour: Colour };
 /** A stretch of text in one style; a paragraph is several. */
 export type Span = { text: string; style: Style };
-/** One line of a paragraph, ready to be drawn. */
-export type Line = { spans: Span[]; width: number };
+/** One line of a paragraph, ready to be drawn; a broken one goes on in the next, after a blank. */
+export type Line = { spans: Span[]; width: number; isBroken: boolean };
 
 const graphemes = new Intl.Segmenter('en', { granularity: 'grapheme' });
 
@@ -74,7 +74,8 @@ export function wrapSpans(spans: readonly Span[], width: number): Line[] {
   for (const word of wordsOf(spans, width)) {
     const blank = word.blank ? textWidth(' ', word.blank) : 0;
     if (!line || line.width + blank + word.width > width + 0.01) {
-      line = { spans: [{ text: word.text, style: word.style }], width: word.width };
+      if (line) line.isBroken = word.blank !== null;
+      line = { spans: [{ text: word.text, style: word.style }], width: word.width, isBroken: false };
       lines.push(line);
       continue;
     }
