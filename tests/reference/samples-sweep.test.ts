@@ -20,6 +20,9 @@ function read(bytes: Uint8Array, hints = {}) {
   return result;
 }
 
+/** What is asked about a sweep, in one text. */
+const asked = ({ questions }: ReturnType<typeof read>): string => questions.map(({ text }) => text).join(' ');
+
 /** The sentence of a refusal; empty where it is none. */
 const reasonOf = (result: { ok: true } | { ok: false; reason: string }): string =>
   result.ok ? '' : result.reason;
@@ -33,7 +36,7 @@ function expectTrace001(bytes: Uint8Array): void {
     units: { freq: 'Hz', level: 'dBm' },
     levelCalibrated: true,
   });
-  expect(sweep.questions.join(' ')).toMatch(/108\.696 kHz apart, wider than .* 300 Hz.*peak detector/);
+  expect(asked(sweep)).toMatch(/108\.696 kHz apart, wider than .* 300 Hz.*peak detector/);
   // The 0 Hz feed-through at −5.40 dBm is the highest point of the file.
   expect(Math.max(...sweep.points.level)).toBeCloseTo(-5.4, 2);
   const found = analyseSweep(sweep, { testFreqHz: 0.98e6, path: null });
@@ -100,7 +103,7 @@ describe.skipIf(!present)(`sweep files of other tools${reason}`, () => {
     const sweep = read(bytesOf('gocat_matrix_mhz_header.csv'));
     expect(sweep.understood).toMatchObject({ form: 'matrix', points: 50, spanHz: [433.42e6, 434.4e6] });
     expect(sweep.understood.levelCalibrated).toBe(false);
-    expect(sweep.questions.join(' ')).toMatch(/MHz.*unit of the level/);
+    expect(asked(sweep)).toMatch(/MHz.*unit of the level/);
     const columns = textOf('gocat_matrix_mhz_header.csv').trimEnd().split('\n').slice(1);
     const highest = Math.max(...columns.map((line) => Number(line.split(',')[1])));
     expect(sweep.points.level[0]).toBe(highest);
@@ -111,7 +114,7 @@ describe.skipIf(!present)(`sweep files of other tools${reason}`, () => {
     expect(sweep.understood).toMatchObject({ form: 'start and stop', points: 4097, spanHz: [0, 5000] });
     expect(sweep.points.freqHz[1]).toBeCloseTo(5000 / 4096, 9);
     expect(sweep.points.level[0]).toBe(-54.71917787790511);
-    expect(sweep.questions.join(' ')).toMatch(/2 traces.*unit of the level/);
+    expect(asked(sweep)).toMatch(/2 traces.*unit of the level/);
     const second = read(bytesOf('digilent_waveforms_spectrum.csv'), { levelColumn: 2 });
     expect(second.points.level[0]).toBe(-49.21571994425221);
   });
@@ -124,7 +127,7 @@ describe.skipIf(!present)(`sweep files of other tools${reason}`, () => {
       units: { level: null },
       levelCalibrated: false,
     });
-    expect(sweep.questions.join(' ')).toMatch(/network analyser/);
+    expect(asked(sweep)).toMatch(/network analyser/);
     expect(sweep.notes.join(' ')).toMatch(/More than one column is called “Formatted Data”/);
     expect(reasonOf(analyseSweep(sweep, { testFreqHz: 7e6, path: null }))).toMatch(
       /unit of the level is not known/,

@@ -1,7 +1,8 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { PathSpec } from '~/domain/bench/types';
-import { analyseSweep } from './analyse-sweep';
-import type { SweepTest } from './analyse-sweep';
+import { analyseSweep, whyNoVerdict } from './analyse-sweep';
+import type { SweepAnalysis, SweepProduct, SweepTest } from './analyse-sweep';
 import { readSweep } from './read-sweep';
 import type { Sweep } from './types';
 
@@ -99,8 +100,117 @@ describe('analyseSweep', () => {
   });
 });
 
+describe('a carrier', () => {
+  it('3 kHz off is measured where it is, and said', () => {
+    const points = 30_000;
+    const rows = Array.from({ length: points }, (_, index) => {
+      const freqHz = index * 1e3;
+      const order = freqHz / 7.033e6;
+      const level = order === 1 ? -5 : order === 2 ? -50 : order === 3 ? -62 : -90;
+      return `${String(freqHz)},${String(level)}`;
+    });
+    const text = `RBW: 1 kHz\nDetector: peak\nFreq (Hz),dBm\n${rows.join('\n')}`;
+    const sweep = readSweep(new TextEncoder().encode(text));
+    if (!sweep.ok) throw new Error(sweep.reason);
+    const found = analyse(sweep);
+    expect(found.fundamental.freqHz).toBe(7.033e6);
+    expect(found.harmonics[0]).toMatchObject({ freqHz: 14.066e6, meterDbc: -45 });
+    expect(found.notes).toEqual(['The carrier lies 3 kHz above the test frequency of 7.03 MHz.']);
+  });
+
+  it('that lies on the test frequency needs no words', () => {
+    expect(analyse(sweepOf(CLEAN))).toMatchObject({ notes: [], questions: [] });
+  });
+
+  it('of two, the nearer to the test frequency is taken, the other asked about and listed', () => {
+    const found = analyse(sweepOf([...CLEAN, [7.2e6, -3.1]]));
+    expect(found.fundamental.freqHz).toBe(7.03e6);
+    expect(found.questions).toHaveLength(1);
+    expect(found.questions[0]).toMatchObject({ about: 'carriers' });
+    expect(found.questions[0]?.text).toMatch(/7\.03 MHz and 7\.2 MHz, 2\.2 dB apart/);
+    expect(found.others[0]?.freqHz).toBe(7.2e6);
+  });
+
+  it('whose second is within the skirt is asked about all the same', () => {
+    const carriers: [number, number][] = [
+      [7.03e6, -5.3],
+      [7.05e6, -9],
+    ];
+    const sweep = sweepOf(carriers, { preamble: 'RBW: 1 kHz\nDetector: peak\n' });
+    const near = { ...sweep, understood: { ...sweep.understood, stepHz: 1e3 } };
+    expect(analyse(near).questions[0]?.text).toMatch(/Two strong signals/);
+  });
+});
+
+describe('a flank', () => {
+  it('with ripples on it is one line', () => {
+    const flank: [number, number][] = [];
+    for (let step = 1; step <= 30; step += 1) {
+      const level = -5.3 - 2 * step + (step % 2 === 0 ? 3 : 0);
+      flank.push([7.03e6 + step * STEP_HZ, level], [7.03e6 - step * STEP_HZ, level]);
+    }
+    expect(analyse(sweepOf([...CLEAN, ...flank])).others).toEqual([]);
+  });
+});
+
+describe('a sweep on which no verdict can rest', () => {
+  it('can be looked at', () => {
+    const uncalibrated = sweepOf(CLEAN, { unit: 'dB' });
+    const found = analyse(uncalibrated, { lookOnly: true });
+    expect(found.harmonics[0]?.meterDbc).toBeCloseTo(-51.1, 9);
+    expect(whyNoVerdict(uncalibrated)).toMatch(/not calibrated/);
+  });
+
+  it('is none where the points lie closer than the bandwidth, whatever the detector', () => {
+    expect(whyNoVerdict(sweepOf(CLEAN, { preamble: 'RBW: 30 kHz\nDetector: Sample\n' }))).toBeNull();
+  });
+});
+
+describe('analyseSweep, its law', () => {
+  it('moves every level by k and no ratio where the sweep is scaled by k dB', () => {
+    const line = fc.tuple(fc.integer({ min: 30, max: 4200 }), fc.integer({ min: -700, max: -200 }));
+    fc.assert(
+      fc.property(fc.array(line, { maxLength: 12 }), fc.integer({ min: -40, max: 4 }), (extra, k) => {
+        const lines = [
+          ...extra.map(([at, tenths]): [number, number] => [at * STEP_HZ, tenths / 10]),
+          ...CLEAN,
+        ];
+        const sweep = sweepOf(lines, { stopHz: 42e6 });
+        const { freqHz, level } = sweep.points;
+        const scaled = { ...sweep, points: { freqHz, level: level.map((each) => each + k) } };
+        const [before, after] = [analyse(sweep), analyse(scaled)];
+        const moved = (a: SweepProduct | undefined, b: SweepProduct): boolean =>
+          a !== undefined &&
+          a.freqHz === b.freqHz &&
+          Math.abs(a.levelDbm + k - b.levelDbm) < 1e-9 &&
+          Math.abs(a.meterDbc - b.meterDbc) < 1e-9 &&
+          Math.abs(a.unitDbc - b.unitDbc) < 1e-9;
+        const all = (found: SweepAnalysis): SweepProduct[] => [...found.harmonics, ...found.others];
+        return (
+          Math.abs(before.noiseFloorDbm + k - after.noiseFloorDbm) < 1e-9 &&
+          Math.abs(before.fundamental.levelDbm + k - after.fundamental.levelDbm) < 1e-9 &&
+          all(before).length === all(after).length &&
+          all(after).every((product, index) => moved(all(before)[index], product)) &&
+          after.harmonics.every(({ atMost }, index) => before.harmonics[index]?.atMost === atMost)
+        );
+      }),
+      { numRuns: 40 },
+    );
+  });
+});
+
 describe('analyseSweep refuses', () => {
   it.each<[string, () => string, RegExp]>([
+    [
+      'one that ends at the second harmonic',
+      () => refusal(sweepOf(CLEAN, { stopHz: 14.06e6 })),
+      /ends at 14\.06 MHz, below the third harmonic\. Sweep up to 70\.3 MHz/,
+    ],
+    [
+      'one that reaches just over its reference, not at a peak of its own',
+      () => refusal(sweepOf([...CLEAN, [7.04e6, -5.2]], { preamble: 'Ref Level: -5.2 dBm\n' })),
+      /overloaded: 7\.04 MHz reaches its reference level of −5\.20 dBm/,
+    ],
     [
       'one that ends below the third harmonic',
       () => refusal(sweepOf(CLEAN, { stopHz: 20e6 })),

@@ -1,15 +1,18 @@
-import { formatDbm, formatFrequency } from '~/domain/bench/format';
+import { formatDbm, formatFrequency, formatNumber } from '~/domain/bench/format';
 import { pathLoss } from '~/domain/bench/paths';
 import { MAX_HARMONIC } from '~/domain/bench/quantities';
 import type { PathSpec } from '~/domain/bench/types';
-import { findPeaks, medianOf, medianStep, strongestIn } from './peaks';
+import { medianAbove } from './medians';
+import { findPeaks, strongestIn } from './peaks';
 import type { Peak } from './peaks';
-import type { Sweep } from './types';
+import type { Sweep, SweepQuestion } from './types';
 
 /** A carrier stands at least this far over the noise floor, dB. */
 const CARRIER_OVER_FLOOR_DB = 20;
 /** Peaks within this of the strongest one may be the carrier, dB. */
 const STRONG_DB = 20;
+/** Another line within this of the carrier may be a second carrier, dB. */
+const SECOND_CARRIER_DB = 10;
 /** A carrier further from the test frequency than this part of it belongs to another test. */
 const CARRIER_NEAR = 0.03;
 /** A harmonic within this of the median floor cannot be told from the noise, dB. */
@@ -26,6 +29,8 @@ export interface SweepTest {
   path: PathSpec | null;
   /** Limit of a product, dBc; null where no rule says one. Absent: every peak over the floor is listed. */
   limitDbcAt?: (productFreqHz: number) => number | null;
+  /** Only to be looked at: a sweep on which no verdict can rest is analysed all the same. */
+  lookOnly?: boolean;
 }
 
 /** A product of the carrier. */
@@ -54,20 +59,33 @@ export interface SweepAnalysis {
   noiseFloorDbm: number;
   /** Strongest first. */
   others: SweepProduct[];
+  questions: SweepQuestion[];
+  notes: string[];
 }
 
 /** An analysis, or a sentence why nothing is to be stored. */
 export type SweepAnalysisResult = ({ ok: true } & SweepAnalysis) | { ok: false; reason: string };
 
-function unusable(sweep: Sweep, stepHz: number): string | null {
-  const { levelCalibrated, units, detector, rbwHz } = sweep.understood;
-  if (units.level === null && !levelCalibrated && sweep.understood.form !== 'row blocks') {
+type Refusal = { ok: false; reason: string };
+
+const refuse = (reason: string): Refusal => ({ ok: false, reason });
+
+/** Half-width of what belongs to one line, wherever it lies, Hz. */
+export function lineSpacing({ rbwHz, stepHz }: Sweep['understood']): number {
+  return Math.max(3 * (rbwHz ?? 0), 1.5 * stepHz);
+}
+
+/** Why no verdict can rest on a sweep; null where one can. */
+export function whyNoVerdict({ understood }: Sweep): string | null {
+  const { levelCalibrated, units, detector, rbwHz, stepHz, form } = understood;
+  if (units.level === null && !levelCalibrated && form !== 'row blocks') {
     return 'The unit of the level is not known: say whether it is dBm before the sweep is used.';
   }
-  if (!levelCalibrated) return 'The level of this sweep is not calibrated: no verdict can rest on it.';
+  if (!levelCalibrated) {
+    return 'The level of this sweep is not calibrated: no verdict can rest on it. It can be looked at; sweep with a calibrated instrument.';
+  }
   const isPeak = detector !== null && /peak|pos|max/i.test(detector) && !/neg|min/i.test(detector);
-  const missesPeaks = detector !== null && rbwHz !== null && stepHz > rbwHz && !isPeak;
-  if (missesPeaks) {
+  if (detector !== null && rbwHz !== null && stepHz > rbwHz && !isPeak) {
     return (
       `Points lie ${formatFrequency(stepHz)} apart, wider than the resolution bandwidth, and the detector was ` +
       `“${detector}”: lines may fall between them. Sweep again with a peak detector.`
@@ -81,124 +99,171 @@ function findFundamental(
   floorDbm: number,
   testFreqHz: number,
   toleranceHz: number,
-): { ok: true; peak: Peak } | { ok: false; reason: string } {
+): { ok: true; peak: Peak } | Refusal {
   const strongest = peaks.reduce<Peak | null>(
     (best, peak) => (best === null || peak.level > best.level ? peak : best),
     null,
   );
   if (strongest === null || strongest.level < floorDbm + CARRIER_OVER_FLOOR_DB) {
-    return { ok: false, reason: 'The sweep holds no carrier: nothing stands 20 dB over its noise.' };
+    return refuse(
+      'The sweep holds no carrier: nothing stands 20 dB over its noise. Was the key down, and the path connected?',
+    );
   }
+  const least = Math.max(strongest.level - STRONG_DB, floorDbm + CARRIER_OVER_FLOOR_DB);
   let nearest = strongest;
   for (const peak of peaks) {
-    if (peak.level < Math.max(strongest.level - STRONG_DB, floorDbm + CARRIER_OVER_FLOOR_DB)) continue;
+    if (peak.level < least) continue;
     if (Math.abs(peak.freqHz - testFreqHz) < Math.abs(nearest.freqHz - testFreqHz)) nearest = peak;
   }
   if (Math.abs(nearest.freqHz - testFreqHz) > Math.max(CARRIER_NEAR * testFreqHz, toleranceHz)) {
-    return {
-      ok: false,
-      reason:
-        `No carrier near ${formatFrequency(testFreqHz)}: the nearest strong signal is at ${formatFrequency(nearest.freqHz)}. ` +
+    return refuse(
+      `No carrier near ${formatFrequency(testFreqHz)}: the nearest strong signal is at ${formatFrequency(nearest.freqHz)}. ` +
         'Does the sweep belong to another band?',
-    };
+    );
   }
   return { ok: true, peak: nearest };
 }
 
+/** A second line about as strong as the carrier, which a person has to explain. */
+function secondCarrier(carrier: Peak, others: readonly Peak[]): SweepQuestion[] {
+  const second = others.reduce<Peak | null>(
+    (best, peak) => (best === null || peak.level > best.level ? peak : best),
+    null,
+  );
+  if (second === null || second.level < carrier.level - SECOND_CARRIER_DB) return [];
+  const apartDb = formatNumber(Math.abs(second.level - carrier.level), 1);
+  const text =
+    `Two strong signals: ${formatFrequency(carrier.freqHz)} and ${formatFrequency(second.freqHz)}, ${apartDb} dB apart. ` +
+    'The first was taken as the carrier. Is the second one the unit’s own?';
+  return [{ about: 'carriers', text, needsValue: false }];
+}
+
+function offsetNote(carrierHz: number, testFreqHz: number, toleranceHz: number): string[] {
+  const offHz = carrierHz - testFreqHz;
+  if (Math.abs(offHz) <= toleranceHz) return [];
+  return [
+    `The carrier lies ${formatFrequency(Math.abs(offHz))} ${offHz > 0 ? 'above' : 'below'} the test frequency of ${formatFrequency(testFreqHz)}.`,
+  ];
+}
+
+/** Corrects what stands at the meter to what stands at the unit, below a carrier. */
+class Products {
+  readonly #carrierLossDb: number;
+
+  constructor(
+    private readonly carrier: Peak,
+    private readonly path: PathSpec | null,
+    carrierLossDb: number,
+  ) {
+    this.#carrierLossDb = carrierLossDb;
+  }
+
+  of(peak: Peak): { ok: true; product: SweepProduct } | Refusal {
+    const loss = pathLoss(this.path, peak.freqHz);
+    if (!loss.ok) return loss;
+    const meterDbc = peak.level - this.carrier.level;
+    const unitDbc = meterDbc + loss.lossDb - this.#carrierLossDb;
+    return { ok: true, product: { freqHz: peak.freqHz, levelDbm: peak.level, meterDbc, unitDbc } };
+  }
+
+  /** Outside the path's table a peak is still shown, as it stands at the meter. */
+  shown(peak: Peak): SweepProduct {
+    const corrected = this.of(peak);
+    if (corrected.ok) return corrected.product;
+    const meterDbc = peak.level - this.carrier.level;
+    return { freqHz: peak.freqHz, levelDbm: peak.level, meterDbc, unitDbc: meterDbc };
+  }
+}
+
+/** What stands in the way before a carrier is looked for. */
+function problemBefore(sweep: Sweep, test: SweepTest, fromHz: number): string | null {
+  const { points, understood } = sweep;
+  if (test.lookOnly !== true) {
+    const reason = whyNoVerdict(sweep);
+    if (reason !== null) return reason;
+  }
+  const [lowestHz, highestHz] = understood.spanHz;
+  if (test.testFreqHz < lowestHz || test.testFreqHz > highestHz) {
+    return `The sweep does not cover the test frequency ${formatFrequency(test.testFreqHz)}: it runs from ${formatFrequency(lowestHz)} to ${formatFrequency(highestHz)}.`;
+  }
+  const { referenceDbm } = understood;
+  const strongest = strongestIn(points.freqHz, points.level, fromHz, Infinity);
+  if (referenceDbm !== null && strongest !== null && strongest.level >= referenceDbm) {
+    return (
+      `The analyser was overloaded: ${formatFrequency(strongest.freqHz)} reaches its reference level of ` +
+      `${formatDbm(referenceDbm)}. Put in more attenuation and sweep again.`
+    );
+  }
+  return null;
+}
+
 /**
  * Finds the fundamental (nearest strong peak to the test frequency), harmonics 2 to 10 (strongest point within
- * ±max(3 RBW, 1.5 point spacings, 0.2 %) of n·f), the noise floor (median) and other peaks. The spike at 0 Hz
- * is ignored. Refuses with a sentence a sweep that does not reach the third harmonic, holds no carrier, was
- * overloaded, is uncalibrated or belongs to another band.
+ * ±max(3 RBW, 1.5 point spacings, 0.2 %) of n·f), the noise floor (median) and every other peak over the floor by
+ * 12 dB and within 20 dB of its limit. The spike at 0 Hz and ±10 kHz around the carrier are left out. Refuses with
+ * a sentence a sweep that does not reach the third harmonic, holds no carrier, was overloaded, is uncalibrated or
+ * belongs to another band.
  */
 export function analyseSweep(sweep: Sweep, test: SweepTest): SweepAnalysisResult {
   const { freqHz, level } = sweep.points;
-  const { rbwHz, referenceDbm } = sweep.understood;
-  const stepHz = medianStep(freqHz);
-  const blocked = unusable(sweep, stepHz);
-  if (blocked !== null) return { ok: false, reason: blocked };
-
-  const spacing = Math.max(3 * (rbwHz ?? 0), 1.5 * stepHz);
+  const spacing = lineSpacing(sweep.understood);
   const windowAt = (productHz: number): number => Math.max(spacing, 0.002 * productHz);
-  const [lowestHz, highestHz] = sweep.understood.spanHz;
-  if (test.testFreqHz < lowestHz || test.testFreqHz > highestHz) {
-    return {
-      ok: false,
-      reason: `The sweep does not cover the test frequency ${formatFrequency(test.testFreqHz)}.`,
-    };
-  }
+  const { rbwHz, stepHz } = sweep.understood;
+  const [, highestHz] = sweep.understood.spanHz;
   // The analyser's own line at 0 Hz and its skirt; never as far up as the carrier.
   const fromHz = Math.min(Math.max(spacing, CARRIER_SKIRT_HZ), test.testFreqHz / 2);
-  const floorDbm = medianOf(freqHz, level, fromHz);
-  const peaks = findPeaks(freqHz, level, fromHz, spacing);
+  const problem = problemBefore(sweep, test, fromHz);
+  if (problem !== null) return refuse(problem);
 
+  const floorDbm = medianAbove(freqHz, level, fromHz);
+  const peaks = findPeaks(sweep.points, {
+    fromHz,
+    leastLevel: floorDbm + OTHER_OVER_FLOOR_DB,
+    apartHz: spacing,
+  });
   const found = findFundamental(peaks, floorDbm, test.testFreqHz, spacing);
   if (!found.ok) return found;
   const carrier = found.peak;
-  const overloaded = referenceDbm === null ? undefined : peaks.find((peak) => peak.level >= referenceDbm);
-  if (overloaded !== undefined) {
-    return {
-      ok: false,
-      reason:
-        `The analyser was overloaded: ${formatFrequency(overloaded.freqHz)} reaches its reference level of ` +
-        `${formatDbm(referenceDbm ?? 0)}. Put in more attenuation and sweep again.`,
-    };
-  }
   if (3 * carrier.freqHz > highestHz) {
-    return {
-      ok: false,
-      reason: `The sweep ends at ${formatFrequency(highestHz)}, below the third harmonic.`,
-    };
+    return refuse(
+      `The sweep ends at ${formatFrequency(highestHz)}, below the third harmonic. Sweep up to ${formatFrequency(MAX_HARMONIC * carrier.freqHz)}, or as far as the analyser goes.`,
+    );
   }
   const carrierLoss = pathLoss(test.path, carrier.freqHz);
   if (!carrierLoss.ok) return carrierLoss;
-
-  const productOf = (peak: Peak): { ok: true; product: SweepProduct } | { ok: false; reason: string } => {
-    const loss = pathLoss(test.path, peak.freqHz);
-    if (!loss.ok) return loss;
-    const meterDbc = peak.level - carrier.level;
-    const unitDbc = meterDbc + loss.lossDb - carrierLoss.lossDb;
-    return { ok: true, product: { freqHz: peak.freqHz, levelDbm: peak.level, meterDbc, unitDbc } };
-  };
+  const products = new Products(carrier, test.path, carrierLoss.lossDb);
 
   const harmonics: SweepHarmonic[] = [];
   const notCovered: SweepAnalysis['notCovered'] = [];
   for (let order = 2; order <= MAX_HARMONIC; order += 1) {
     const centreHz = order * carrier.freqHz;
-    const peak =
-      centreHz > highestHz
-        ? null
-        : strongestIn(freqHz, level, centreHz - windowAt(centreHz), centreHz + windowAt(centreHz));
+    const half = windowAt(centreHz);
+    const peak = centreHz > highestHz ? null : strongestIn(freqHz, level, centreHz - half, centreHz + half);
     if (peak === null) {
       notCovered.push({ order, reason: `The sweep ends at ${formatFrequency(highestHz)}.` });
       continue;
     }
-    const product = productOf(peak);
+    const product = products.of(peak);
     if (product.ok) harmonics.push({ order, ...product.product, atMost: peak.level < floorDbm + HIDDEN_DB });
-    else if (order <= 3) return product;
+    else if (order <= 3 && test.lookOnly !== true) return product;
     else notCovered.push({ order, reason: product.reason });
   }
 
-  const skirtHz = Math.max(CARRIER_SKIRT_HZ, spacing);
   const isHarmonic = (peakHz: number): boolean => {
     const order = Math.round(peakHz / carrier.freqHz);
     const centreHz = order * carrier.freqHz;
     return order >= 2 && order <= MAX_HARMONIC && Math.abs(peakHz - centreHz) <= windowAt(centreHz);
   };
-  const others: SweepProduct[] = [];
-  for (const peak of peaks) {
-    if (peak.level < floorDbm + OTHER_OVER_FLOOR_DB || isHarmonic(peak.freqHz)) continue;
-    if (Math.abs(peak.freqHz - carrier.freqHz) <= skirtHz) continue;
-    const corrected = productOf(peak);
-    const meterDbc = peak.level - carrier.level;
-    // Outside the path's table a peak is still shown, as it stands at the meter.
-    const product = corrected.ok
-      ? corrected.product
-      : { freqHz: peak.freqHz, levelDbm: peak.level, meterDbc, unitDbc: meterDbc };
-    const limit = test.limitDbcAt?.(peak.freqHz) ?? null;
-    if (limit === null || product.unitDbc >= limit - OTHER_NEAR_LIMIT_DB) others.push(product);
-  }
-  others.sort((a, b) => b.unitDbc - a.unitDbc);
+  const unrelated = peaks.filter((peak) => peak !== carrier && !isHarmonic(peak.freqHz));
+  const skirtHz = Math.max(CARRIER_SKIRT_HZ, spacing);
+  const others = unrelated
+    .filter((peak) => Math.abs(peak.freqHz - carrier.freqHz) > skirtHz)
+    .map((peak) => products.shown(peak))
+    .filter((product) => {
+      const limit = test.limitDbcAt?.(product.freqHz) ?? null;
+      return limit === null || product.unitDbc >= limit - OTHER_NEAR_LIMIT_DB;
+    })
+    .sort((a, b) => b.unitDbc - a.unitDbc);
   return {
     ok: true,
     fundamental: {
@@ -210,5 +275,7 @@ export function analyseSweep(sweep: Sweep, test: SweepTest): SweepAnalysisResult
     notCovered,
     noiseFloorDbm: floorDbm,
     others,
+    questions: secondCarrier(carrier, unrelated),
+    notes: offsetNote(carrier.freqHz, test.testFreqHz, Math.max(rbwHz ?? 0, stepHz)),
   };
 }

@@ -1,4 +1,4 @@
-import type { FreqUnit, LevelUnit, Understood } from './types';
+import type { FreqUnit, LevelUnit, SweepQuestion, Understood } from './types';
 
 /** A sweep before its frequencies are checked and its level is turned into dBm. */
 export interface Draft {
@@ -7,13 +7,15 @@ export interface Draft {
   freqColumn: number | null;
   levelColumn: number | null;
   freqHz: Float64Array;
+  /** The step in which the frequencies are written, Hz. */
+  resolutionHz: number;
   /** As in the file. */
   level: Float64Array;
   freqUnit: FreqUnit;
   levelUnit: LevelUnit | null;
   /** False where the kind of file says that its level is not to be trusted. */
   calibratedForm: boolean;
-  questions: string[];
+  questions: SweepQuestion[];
   notes: string[];
 }
 

@@ -2,7 +2,7 @@ import { dbUvToDbm, vRmsToW, wToDbm } from '~/domain/bench/units';
 import type { FreqUnit, LevelUnit } from './types';
 
 /** Load across which voltage levels of analysers stand, Ω. */
-const ANALYSER_OHM = 50;
+export const ANALYSER_OHM = 50;
 
 const LEVEL_SPELLINGS: Record<string, LevelUnit> = {
   dbm: 'dBm',
@@ -22,6 +22,18 @@ const FREQ_SPELLINGS: Record<string, FreqUnit> = { hz: 'Hz', khz: 'kHz', mhz: 'M
 
 const FREQ_FACTOR: Record<FreqUnit, number> = { Hz: 1, kHz: 1e3, MHz: 1e6, GHz: 1e9 };
 
+const SI_PREFIXES: Record<string, number> = {
+  f: 1e-15,
+  p: 1e-12,
+  n: 1e-9,
+  u: 1e-6,
+  µ: 1e-6,
+  μ: 1e-6,
+  m: 1e-3,
+  '': 1,
+  k: 1e3,
+};
+
 /** Hz in one of the unit. */
 export function freqFactor(unit: FreqUnit): number {
   return FREQ_FACTOR[unit];
@@ -37,9 +49,18 @@ export function levelUnitOf(text: string): LevelUnit | null {
   return LEVEL_SPELLINGS[text.trim().toLowerCase()] ?? null;
 }
 
-/** Words of a heading or preamble line, to look for units in. */
+/** A power or a voltage with an SI prefix, as it is glued to numbers that range over decades; null where it is none. */
+export function prefixedUnitOf(text: string): { unit: 'W' | 'V'; factor: number } | null {
+  const match = /^([fpnuµμmk]?)(w|v|vrms)$/i.exec(text.trim());
+  const factor = SI_PREFIXES[match?.[1] ?? '?'];
+  if (match === null || factor === undefined) return null;
+  return { unit: (match[2] ?? '').toLowerCase() === 'w' ? 'W' : 'V', factor };
+}
+
+/** Words of a heading or preamble line, to look for units in; `dB(µV)` is one word. */
 function wordsOf(text: string): string[] {
-  return text.split(/[^\p{L}µ]+/u).filter((word) => word !== '');
+  const joined = text.replace(/\bdB\s*\(\s*(m|[uµμm]?V)\s*\)/gi, 'dB$1');
+  return joined.split(/[^\p{L}µ]+/u).filter((word) => word !== '');
 }
 
 /** First frequency unit named in a text. */

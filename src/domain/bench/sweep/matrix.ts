@@ -3,7 +3,7 @@ import type { DraftResult } from './drafts';
 import { guessFreqUnit } from './drafts';
 import { freqFactor, freqUnitIn, freqUnitOf } from './level-units';
 import type { Table } from './table';
-import type { SweepHints } from './types';
+import type { SweepHints, SweepQuestion } from './types';
 
 /** Frequencies in the heading of a matrix, one row a time; null where the heading is no such row. */
 function headingFrequencies(table: Table): { values: number[]; unit: string } | null {
@@ -27,33 +27,36 @@ export function readMatrix(table: Table, hints: SweepHints): DraftResult {
   const found = headingFrequencies(table);
   if (found === null) return { ok: false, reason: 'The first row is no rising row of frequencies.' };
   const { values } = found;
-  const questions: string[] = [];
+  const questions: SweepQuestion[] = [];
   const named = hints.freqUnit ?? freqUnitOf(found.unit) ?? freqUnitIn(table.heading?.[0] ?? '');
   const guess = guessFreqUnit(values[values.length - 1] ?? 0);
-  if (named === null && guess.question !== null) questions.push(guess.question);
+  if (named === null && guess.question !== null)
+    questions.push({ about: 'frequency unit', text: guess.question, needsValue: false });
   const unit = named ?? guess.unit;
+  const factor = freqFactor(unit);
   const level = new Float64Array(values.length).fill(-Infinity);
-  for (const row of table.rows) {
+  for (let row = 0; row < table.rows; row += 1) {
     for (let column = 0; column < values.length; column += 1) {
-      const cell = numberCell(row[column + 1] ?? '', table.dialect.decimal);
-      if (cell !== null && cell.value > (level[column] ?? Infinity)) level[column] = cell.value;
+      const here = table.values[row * table.width + column + 1] ?? NaN;
+      if (here > (level[column] ?? Infinity)) level[column] = here;
     }
   }
   return {
     ok: true,
     draft: {
       form: 'matrix',
-      columns: table.heading ?? [],
+      columns: ['frequencies in the heading'],
       freqColumn: null,
       levelColumn: null,
-      freqHz: Float64Array.from(values, (value) => value * freqFactor(unit)),
+      freqHz: Float64Array.from(values, (value) => value * factor),
+      resolutionHz: 0,
       level,
       freqUnit: unit,
       levelUnit: null,
       calibratedForm: true,
       questions,
       notes: [
-        `The frequencies are the heading; of ${String(table.rows.length)} rows the highest level of each column was kept.`,
+        `The frequencies are the heading; of ${String(table.rows)} rows the highest level of each column was kept.`,
       ],
     },
   };

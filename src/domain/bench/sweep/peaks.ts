@@ -4,19 +4,19 @@ export interface Peak {
   level: number;
 }
 
-/** Median level of the points from a frequency on. */
-export function medianOf(freqHz: Float64Array, level: Float64Array, fromHz: number): number {
-  const kept = level.filter((_, index) => (freqHz[index] ?? 0) > fromHz).sort();
-  return kept[Math.floor(kept.length / 2)] ?? NaN;
-}
+/** A line rises this far over what lies between it and the next; less is a ripple on a flank or on the noise, dB. */
+const RISE_DB = 6;
 
-/** Median distance between neighbouring points, Hz. */
-export function medianStep(freqHz: Float64Array): number {
-  const steps = freqHz
-    .slice(1)
-    .map((value, index) => value - (freqHz[index] ?? 0))
-    .sort();
-  return steps[Math.floor(steps.length / 2)] ?? 0;
+/** Place of the first point at or above a frequency. */
+function firstAt(freqHz: Float64Array, fromHz: number): number {
+  let low = 0;
+  let high = freqHz.length;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if ((freqHz[middle] ?? Infinity) < fromHz) low = middle + 1;
+    else high = middle;
+  }
+  return low;
 }
 
 /** Strongest point between two frequencies, both included; null where there is none. */
@@ -27,9 +27,8 @@ export function strongestIn(
   highHz: number,
 ): Peak | null {
   let best: Peak | null = null;
-  for (let index = 0; index < freqHz.length; index += 1) {
-    const here = freqHz[index] ?? 0;
-    if (here < lowHz) continue;
+  for (let index = firstAt(freqHz, lowHz); index < freqHz.length; index += 1) {
+    const here = freqHz[index] ?? Infinity;
     if (here > highHz) break;
     const value = level[index] ?? -Infinity;
     if (best === null || value > best.level) best = { freqHz: here, level: value };
@@ -38,24 +37,42 @@ export function strongestIn(
 }
 
 /**
- * Local maxima above a frequency, in order. Of maxima closer together than `apartHz` the highest is kept: it is
- * one line as the analyser's filter draws it.
+ * Lines above a frequency, in order: maxima of at least a level that rise 6 dB over the lowest point on either
+ * side. Of maxima closer together than `apartHz` the highest is kept: it is one line as the analyser's filter
+ * draws it.
  */
 export function findPeaks(
-  freqHz: Float64Array,
-  level: Float64Array,
-  fromHz: number,
-  apartHz: number,
+  { freqHz, level }: { freqHz: Float64Array; level: Float64Array },
+  { fromHz, leastLevel, apartHz }: { fromHz: number; leastLevel: number; apartHz: number },
 ): Peak[] {
   const peaks: Peak[] = [];
-  for (let index = 0; index < freqHz.length; index += 1) {
-    const here = freqHz[index] ?? 0;
-    if (here <= fromHz) continue;
-    const value = level[index] ?? -Infinity;
-    if (value < (level[index - 1] ?? -Infinity) || value < (level[index + 1] ?? -Infinity)) continue;
+  const keep = (at: number): void => {
+    const peak = { freqHz: freqHz[at] ?? NaN, level: level[at] ?? -Infinity };
+    if (peak.level < leastLevel) return;
     const last = peaks[peaks.length - 1];
-    if (last === undefined || here - last.freqHz > apartHz) peaks.push({ freqHz: here, level: value });
-    else if (value > last.level) peaks[peaks.length - 1] = { freqHz: here, level: value };
+    if (last === undefined || peak.freqHz - last.freqHz > apartHz) peaks.push(peak);
+    else if (peak.level > last.level) peaks[peaks.length - 1] = peak;
+  };
+  const start = firstAt(freqHz, fromHz);
+  // Where the points begin on the flank of what was left out below them, the first rise comes first.
+  let isRising = start === 0;
+  let top = start;
+  let lowest = level[start] ?? Infinity;
+  for (let index = start + 1; index < level.length; index += 1) {
+    const value = level[index] ?? NaN;
+    if (isRising) {
+      if (value > (level[top] ?? -Infinity)) top = index;
+      else if (value < (level[top] ?? -Infinity) - RISE_DB) {
+        keep(top);
+        isRising = false;
+        lowest = value;
+      }
+    } else if (value < lowest) lowest = value;
+    else if (value > lowest + RISE_DB) {
+      isRising = true;
+      top = index;
+    }
   }
+  if (isRising && start < level.length) keep(top);
   return peaks;
 }

@@ -73,6 +73,7 @@ export function readRowBlocks(lines: readonly string[], dialect: Dialect): Draft
       freqColumn: null,
       levelColumn: null,
       freqHz: Float64Array.from(ordered, ([freqHz]) => freqHz),
+      resolutionHz: 0,
       level: Float64Array.from(ordered, ([, level]) => level),
       freqUnit: 'Hz',
       levelUnit: null,

@@ -1,5 +1,5 @@
 import { MAX_HARMONIC } from '~/domain/bench/quantities';
-import { medianStep, strongestIn } from './peaks';
+import { strongestIn } from './peaks';
 import type { Peak } from './peaks';
 import type { Sweep } from './types';
 
@@ -14,7 +14,7 @@ const HARMONIC_WINDOW = 0.01;
  */
 export function strongestElsewhere({ points, understood }: Sweep, carrierHz: number): Peak | null {
   const { freqHz, level } = points;
-  const spacing = Math.max(3 * (understood.rbwHz ?? 0), 1.5 * medianStep(freqHz));
+  const spacing = Math.max(3 * (understood.rbwHz ?? 0), 1.5 * understood.stepHz);
   const skirtHz = Math.max(SKIRT_HZ, spacing);
   const [, highestHz] = understood.spanHz;
   let fromHz = Math.min(skirtHz, carrierHz / 2);

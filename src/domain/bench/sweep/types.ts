@@ -4,14 +4,23 @@ export type LevelUnit = 'dBm' | 'dBµV' | 'dBmV' | 'dBV' | 'W' | 'mW' | 'V' | 'd
 /** Units of the frequency column. */
 export type FreqUnit = 'Hz' | 'kHz' | 'MHz' | 'GHz';
 
-/** What a person answers to the reader's questions; each overrides what the file says. */
+/** What a person answers to the reader's questions or corrects; each overrides what the file says. */
 export interface SweepHints {
   freqUnit?: FreqUnit;
   levelUnit?: LevelUnit;
-  /** Column of the level, counted from 0 in the file, where there are several traces. */
+  /** Columns, counted from 0 in the file. */
+  freqColumn?: number;
   levelColumn?: number;
   rbwHz?: number;
   detector?: string;
+}
+
+/** Something that the file leaves open. */
+export interface SweepQuestion {
+  about: 'trace' | 'frequency unit' | 'level unit' | 'bandwidth' | 'detector' | 'carriers';
+  text: string;
+  /** Only a stated value answers it; otherwise it is enough to say that what was understood is right. */
+  needsValue: boolean;
 }
 
 /** How the file was taken. */
@@ -28,6 +37,8 @@ export interface Understood {
   points: number;
   /** Lowest and highest frequency, Hz. */
   spanHz: [number, number];
+  /** Median distance between neighbouring points, Hz. */
+  stepHz: number;
   rbwHz: number | null;
   detector: string | null;
   /** Reference level of the analyser, dBm; a level at or over it was overloaded. */
@@ -40,7 +51,7 @@ export interface Understood {
 export interface Sweep {
   understood: Understood;
   /** What a person must answer before anything rests on the sweep. */
-  questions: string[];
+  questions: SweepQuestion[];
   /** What was done with the file that its reader should know. */
   notes: string[];
   points: { freqHz: Float64Array; level: Float64Array };
