@@ -112,6 +112,7 @@ export const paths = {
     holds: (serial: string) => `/api/units/${segment(serial)}/holds`,
     hold: (serial: string, holdId: number) => `/api/units/${segment(serial)}/holds/${segment(holdId)}`,
     reworks: (serial: string) => `/api/units/${segment(serial)}/reworks`,
+    reworkFinding: (serial: string) => `/api/units/${segment(serial)}/reworks/finding`,
     reworkClosing: (serial: string) => `/api/units/${segment(serial)}/reworks/closing`,
     runs: (serial: string) => `/api/units/${segment(serial)}/runs`,
     run: (runId: number) => `/api/runs/${segment(runId)}`,

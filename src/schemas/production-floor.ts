@@ -63,7 +63,23 @@ export const newRework = z.object({
   cause: z.string().trim().min(1, 'Say what was wrong.').max(300, 'At most 300 characters.'),
 });
 
-export const reworkEnd = z.object({
-  remedy: z.string().trim().min(1, 'Say what was done.').max(300, 'At most 300 characters.'),
-  minutes,
+/** One of the likely causes, or another that was typed; what was typed counts. */
+const foundCause = { foundCause: optional(120), otherCause: optional(120) };
+
+export const reworkFinding = z.object(foundCause).transform(({ foundCause: chosen, otherCause }, issue) => {
+  const found = otherCause ?? chosen;
+  if (found !== undefined) return { foundCause: found };
+  issue.addIssue({ code: 'custom', path: ['otherCause'], message: 'Choose a cause, or type one.' });
+  return z.NEVER;
 });
+
+export const reworkEnd = z
+  .object({
+    remedy: z.string().trim().min(1, 'Say what was done.').max(300, 'At most 300 characters.'),
+    minutes,
+    ...foundCause,
+  })
+  .transform(({ foundCause: chosen, otherCause, ...rest }) => ({
+    ...rest,
+    foundCause: otherCause ?? chosen,
+  }));

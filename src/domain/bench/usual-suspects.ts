@@ -232,3 +232,8 @@ export function usualSuspects(quantityKey: string, direction: Direction): Suspec
     .map(({ cause, look, weight }) => ({ cause, look, weight }))
     .sort((a, b) => b.weight - a.weight);
 }
+
+/** Which way a point that failed is out of its limits. */
+export function directionOf({ value, upper }: { value: number | null; upper: number | null }): Direction {
+  return value !== null && upper !== null && value > upper ? 'over' : 'under';
+}

@@ -60,7 +60,12 @@ export async function findUnit(reader: Reader, serial: string) {
   const [openHolds, rework, labels, balanceDue] = await Promise.all([
     listOpenHolds(reader, { unitId: unit.id, batchId: unit.batchId, orderId }),
     reader
-      .select({ id: reworks.id, cause: reworks.cause })
+      .select({
+        id: reworks.id,
+        cause: reworks.cause,
+        foundCause: reworks.foundCause,
+        testRunId: reworks.testRunId,
+      })
       .from(reworks)
       .where(and(eq(reworks.unitId, unit.id), isNull(reworks.closedAt))),
     readOptionLabels(reader, unit.modelId, unit.options),

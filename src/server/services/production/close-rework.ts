@@ -8,13 +8,18 @@ import type { Ctx, WriteContext } from '~/server/write';
 import { lockUnit } from './lock-unit';
 
 /**
- * Ends a unit's rework with its remedy and the minutes it took; the unit goes on at its final test, or at
+ * Ends a unit's rework with what was found behind it, its remedy and the minutes it took; the unit goes on at its final test, or at
  * the build stage where it was.
  *
  * @throws DomainError `not_found`, or `conflict` where no rework is open or a part that was put back is not replaced
  */
 export async function closeRework(
-  input: { serial: string; remedy: string; minutes?: number | undefined },
+  input: {
+    serial: string;
+    remedy: string;
+    minutes?: number | undefined;
+    foundCause?: string | undefined;
+  },
   ctx: Ctx,
 ): Promise<{ reworkId: number; serial: string; stage: UnitStage }> {
   return write(ctx, async (w) => {
@@ -31,12 +36,19 @@ export async function closeRework(
     const minutes = input.minutes ?? null;
     await w.tx
       .update(reworks)
-      .set({ remedy: input.remedy, minutes, closedAt: w.now, closedBy: actingUserId(w) })
+      .set({
+        remedy: input.remedy,
+        minutes,
+        // What was found earlier stands where nothing is said now.
+        ...(input.foundCause === undefined ? {} : { foundCause: input.foundCause }),
+        closedAt: w.now,
+        closedBy: actingUserId(w),
+      })
       .where(eq(reworks.id, openReworkId));
     await w.record({
       action: 'rework.close',
       subjects: [{ type: 'unit', id: unit.id }],
-      details: { remedy: input.remedy, minutes },
+      details: { cause: input.foundCause ?? null, remedy: input.remedy, minutes },
     });
     return { reworkId: openReworkId, serial: unit.serial, stage: unit.stage };
   });
