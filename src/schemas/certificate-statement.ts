@@ -33,6 +33,7 @@ const pointSchema = z
     decision: z.enum(['guarded', 'simple']),
     verdict: z.enum(['pass', 'too_close', 'fail', 'not_run']),
     concession: z.string().min(1).nullable(),
+    origin: z.enum(['computed', 'history']).optional(),
   })
   .strict();
 
@@ -53,7 +54,11 @@ export const publicStatementSchema = z
     number: z.string().min(1),
     letter: z.string().regex(/^[A-Z]{0,2}$/u),
     replaces: z
-      .object({ number: z.string().min(1), reason: z.string().min(1) })
+      .object({
+        number: z.string().min(1),
+        reason: z.string().min(1),
+        changes: z.array(z.string().min(1)).optional(),
+      })
       .strict()
       .nullable(),
     unit: z
@@ -75,6 +80,7 @@ export const publicStatementSchema = z
     testedAt: z.string().datetime(),
     issuedOn: day,
     testedBy: z.string().min(1),
+    place: z.string().min(1).optional(),
     issuedBy: z.string().min(1),
     conditions: z.object({ supply: z.string(), load: z.string(), ambient: z.string() }).strict(),
     testPlan: z.object({ name: z.string().min(1), revision: z.string().min(1) }).strict(),

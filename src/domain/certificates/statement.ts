@@ -50,6 +50,8 @@ export type StatedPoint = {
   verdict: Verdict;
   /** The owner's reason for letting a reading outside the works' own limit go; null where none was needed. */
   concession: string | null;
+  /** Where it was not read in this run: computed from other readings of it, or taken over from an old test sheet. */
+  origin?: 'computed' | 'history' | undefined;
 };
 
 export type StatedInstrument = {
@@ -72,7 +74,20 @@ export type BuyerPart = {
   salt: string;
 };
 
-/** What is signed and may be shown to anyone. JSON-safe: strings, finite numbers, null, arrays and objects. */
+/** On an amendment, the certificate (number and letter) that it replaces, and why. */
+export type Replacement = {
+  number: string;
+  reason: string;
+  /** What differs from it, a sentence each; of the buyer's part only that it differs. */
+  changes?: string[] | undefined;
+};
+
+/**
+ * What is signed and may be shown to anyone. JSON-safe: strings, finite numbers, null, arrays and objects.
+ *
+ * A member that came in after the first certificates is optional, and is never filled in on reading: a statement has
+ * to come out as it was signed.
+ */
 export type PublicStatement = {
   format: 'certificate-statement/1';
   works: { name: string; addressLines: string[] };
@@ -80,8 +95,7 @@ export type PublicStatement = {
   number: string;
   /** Empty on the first issue, then `A`, `B`, … */
   letter: string;
-  /** On an amendment, the certificate (number and letter) that it replaces, and why. */
-  replaces: { number: string; reason: string } | null;
+  replaces: Replacement | null;
   unit: {
     serial: string;
     model: string;
@@ -102,6 +116,8 @@ export type PublicStatement = {
   /** Day of issue, `YYYY-MM-DD`. */
   issuedOn: string;
   testedBy: string;
+  /** Where it was tested, in words. */
+  place?: string | undefined;
   issuedBy: string;
   conditions: { supply: string; load: string; ambient: string };
   testPlan: { name: string; revision: string };

@@ -30,6 +30,7 @@ export const writeCertificateIssued: LetterWriter = async (reader, payload) => {
     certificateNumber,
     issuedOn: formatDayOf(facts.issuedAt, timeZone),
     checkUrl: fullUrl(paths.certificateByCode(facts.code)),
+    replaces: facts.replaces,
     orderUrl: fullUrl(paths.orderByLink(linkToken(env().secret, 'order', facts.orderId))),
   });
   return {

@@ -11,11 +11,14 @@ interface CertificateIssued {
   /** The public page on which anyone can check the certificate. */
   checkUrl: string;
   orderUrl: string;
+  /** On an amendment, the certificate that it replaces, and why. */
+  replaces: { number: string; reason: string } | null;
 }
 
 /** Goes out with the certificate as PDF. */
 export function certificateIssuedLetter(certificate: CertificateIssued): Letter {
-  const { serial, certificateNumber, issuedOn } = certificate;
+  const { serial, certificateNumber, issuedOn, replaces } = certificate;
+  if (replaces !== null) return amendedLetter(certificate, replaces);
   return setLetter({
     sender: certificate.sender,
     subject: `Test certificate ${certificateNumber} for ${serial}`,
@@ -30,6 +33,36 @@ export function certificateIssuedLetter(certificate: CertificateIssued): Letter 
         kind: 'facts',
         rows: [
           ['Certificate', certificateNumber],
+          ['Issued', issuedOn],
+          ['Order', certificate.orderNumber],
+        ],
+      },
+      { kind: 'button', words: 'See your order', url: certificate.orderUrl },
+      { kind: 'link', words: 'Check this certificate', url: certificate.checkUrl },
+    ],
+  });
+}
+
+function amendedLetter(
+  { sender, serial, modelName, certificateNumber, issuedOn, ...certificate }: CertificateIssued,
+  replaces: { number: string; reason: string },
+): Letter {
+  return setLetter({
+    sender,
+    subject: `Corrected test certificate ${certificateNumber} for ${serial}`,
+    heading: 'We corrected your certificate',
+    blocks: [
+      { kind: 'tag', serial, modelName },
+      {
+        kind: 'paragraph',
+        text: `The new one is attached and takes the place of ${replaces.number}. What we measured stays as it was; a fact around it was wrong.`,
+      },
+      {
+        kind: 'facts',
+        rows: [
+          ['Certificate', certificateNumber],
+          ['Replaces', replaces.number],
+          ['Why', replaces.reason],
           ['Issued', issuedOn],
           ['Order', certificate.orderNumber],
         ],

@@ -100,7 +100,11 @@ function layOutAt(scale: number, statement: CertificateStatement, signature: Sta
 function drawAmendment(flow: Flow, { replaces }: CertificateStatement): void {
   if (!replaces) return;
   const words = `Amendment to report, serial number ${replaces.number}.`;
-  const why = `It replaces certificate ${replaces.number}. Why: ${replaces.reason}`;
+  const changes = replaces.changes ?? [];
+  const why = [
+    `It replaces certificate ${replaces.number}. Why: ${replaces.reason}`,
+    ...(changes.length > 0 ? ['What differs:', ...changes] : []),
+  ].join(' ');
   drawParagraph(flow, { text: why, style: BODY }, 8, { text: `${words} `, style: STRONG });
 }
 
@@ -132,7 +136,7 @@ function factsOf(statement: CertificateStatement): (readonly [string, string])[]
   return [
     ['Tested', formatTimeOf(new Date(statement.testedAt), 'UTC')],
     ['Supply', conditions.supply],
-    ['By', statement.testedBy],
+    ['By', [statement.testedBy, statement.place].filter((text) => text !== undefined).join(', ')],
     ['Load, ambient', [conditions.load, conditions.ambient].filter((text) => text !== '').join(', ')],
     ['Test plan', `${testPlan.name} rev ${testPlan.revision}`],
     ['Run', `${run.number}, ${statement.result}${run.note === '' ? '' : ` (${run.note})`}`],

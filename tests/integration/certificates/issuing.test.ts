@@ -14,23 +14,16 @@ import { verifyCertificate } from '~/server/queries/certificates/verify-certific
 import { readFile } from '~/server/queries/files/read-file';
 import { closeRun } from '~/server/services/bench/close-run';
 import { openRun } from '~/server/services/bench/open-run';
-import { recordReading } from '~/server/services/bench/record-reading';
 import { addSigningKey } from '~/server/services/certificates/add-signing-key';
 import { attachCertificatePdf } from '~/server/services/certificates/attach-certificate-pdf';
 import { issueCertificate } from '~/server/services/certificates/issue-certificate';
 import { callAs, seedBench } from '../../factories/bench';
 import type { SeededBench } from '../../factories/bench';
+import { fillRun, issueFor } from '../../factories/certificates';
 import { testDatabase } from '../../setup/database';
 
 const run = promisify(execFile);
 const database = testDatabase();
-const passing = {
-  rf_power: '-6.03 dBm',
-  harmonic_2: '51.1',
-  harmonic_3: '61.6',
-  current_key_down: '612 mA',
-  frequency_error: '38',
-};
 let bench: SeededBench;
 
 beforeEach(async () => {
@@ -40,31 +33,8 @@ beforeEach(async () => {
 
 afterAll(stopCertificateThread);
 
-async function openAndFill(change: Partial<typeof passing> = {}): Promise<number> {
-  const { runId } = await openRun({ serial: bench.serial }, bench.ctx);
-  for (const [key, text] of Object.entries({ ...passing, ...change })) {
-    await recordReading(
-      {
-        runId,
-        testPointId: bench.pointId(key),
-        text,
-        again: false,
-        confirmed: false,
-        attenuationHeld: false,
-        instrumentRevisionId: bench.instrumentRevisionId,
-        pathRevisionId: bench.pathRevisionId,
-      },
-      bench.ctx,
-    );
-  }
-  return runId;
-}
-
-async function issue() {
-  const runId = await openAndFill();
-  await closeRun({ runId }, bench.ctx);
-  return { runId, ...(await issueCertificate({ runId }, bench.ctx)) };
-}
+const openAndFill = (change: Parameters<typeof fillRun>[1] = {}) => fillRun(bench, change);
+const issue = () => issueFor(bench);
 
 describe('issuing a certificate', () => {
   it('signs the statement with the works’ key, to be checked without this program', async () => {

@@ -1,6 +1,9 @@
 import { eq } from 'drizzle-orm';
+import { alias } from 'drizzle-orm/mysql-core';
 import type { Reader } from '~/server/db/client';
 import { certificates, contacts, models, orderLines, orders, units } from '~/server/db/schema';
+
+const replaced = alias(certificates, 'replaced');
 
 /** What the letter that carries a certificate needs; null where its buyer has been erased. */
 export async function readCertificateLetter(reader: Reader, certificateId: number) {
@@ -17,6 +20,9 @@ export async function readCertificateLetter(reader: Reader, certificateId: numbe
       erasedAt: contacts.erasedAt,
       orderId: orders.id,
       orderNumber: orders.number,
+      reason: certificates.reason,
+      replacedNumber: replaced.number,
+      replacedLetter: replaced.letter,
     })
     .from(certificates)
     .innerJoin(units, eq(units.id, certificates.unitId))
@@ -24,6 +30,12 @@ export async function readCertificateLetter(reader: Reader, certificateId: numbe
     .innerJoin(contacts, eq(contacts.id, certificates.contactId))
     .innerJoin(orderLines, eq(orderLines.id, units.orderLineId))
     .innerJoin(orders, eq(orders.id, orderLines.orderId))
+    .leftJoin(replaced, eq(replaced.id, certificates.replacesId))
     .where(eq(certificates.id, certificateId));
-  return row === undefined || row.erasedAt !== null ? null : row;
+  if (row === undefined || row.erasedAt !== null) return null;
+  const { reason, replacedNumber, replacedLetter, ...facts } = row;
+  return {
+    ...facts,
+    replaces: replacedNumber === null ? null : { number: `${replacedNumber}${replacedLetter}`, reason },
+  };
 }

@@ -1,5 +1,7 @@
-import { and, desc, eq, or, sql } from 'drizzle-orm';
+import { eq, sql } from 'drizzle-orm';
 import type { SQL } from 'drizzle-orm';
+import { standingOf } from '~/domain/certificates/standing';
+import { fullNumber } from '~/domain/certificates/statement';
 import type { StatementSignature } from '~/domain/certificates/statement';
 import { publicStatementSchema } from '~/schemas/certificate-statement';
 import type { Reader } from '~/server/db/client';
@@ -18,8 +20,8 @@ function condition(wanted: Wanted): SQL | undefined {
 }
 
 /**
- * A certificate with everything by which it can be checked. `isCurrent` is false once another certificate of
- * the same unit names it as replaced, or the unit was certified anew.
+ * A certificate with everything by which it can be checked, the amendment that took its place, and the unit's
+ * certificate that counts where it is another one.
  */
 export async function readSignedCertificate(reader: Reader, wanted: Wanted) {
   const [row] = await reader
@@ -53,24 +55,29 @@ export async function readSignedCertificate(reader: Reader, wanted: Wanted) {
   if (row === undefined) return null;
   const { signatureValue, keyId, publicKey, buyerSalt, buyerCallSign, buyerOrderNumber, ...rest } = row;
   const signature: StatementSignature = { algorithm: 'Ed25519', keyId, publicKey, value: signatureValue };
-  const [later] = await reader
-    .select({ number: certificates.number, letter: certificates.letter, replacesId: certificates.replacesId })
+  const issued = await reader
+    .select({
+      id: certificates.id,
+      number: certificates.number,
+      letter: certificates.letter,
+      testRunId: certificates.testRunId,
+      replacesId: certificates.replacesId,
+      code: certificates.code,
+      reason: certificates.reason,
+    })
     .from(certificates)
-    .where(
-      and(
-        sql`${certificates.id} > ${row.id}`,
-        or(eq(certificates.replacesId, row.id), eq(certificates.unitId, row.unitId)),
-      ),
-    )
-    .orderBy(desc(certificates.id))
-    .limit(1);
+    .where(eq(certificates.unitId, row.unitId));
+  const { successor, newest, isTestedAgain } = standingOf(row.id, issued);
   return {
     ...rest,
     signature,
     statement: publicStatementSchema.parse(JSON.parse(row.signedText)),
     buyer:
       buyerSalt === null ? null : { callSign: buyerCallSign, orderNumber: buyerOrderNumber, salt: buyerSalt },
-    replacedBy: later !== undefined && later.replacesId === row.id ? `${later.number}${later.letter}` : null,
-    newerNumber: later === undefined ? null : `${later.number}${later.letter}`,
+    replacedBy: successor === null ? null : fullNumber(successor),
+    replacedByCode: successor?.code ?? null,
+    replacedWhy: successor?.reason ?? null,
+    newerNumber: newest === null ? null : fullNumber(newest),
+    isTestedAgain,
   };
 }

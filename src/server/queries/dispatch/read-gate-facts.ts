@@ -14,6 +14,7 @@ import {
   testRuns,
   units,
 } from '~/server/db/schema';
+import { oldestFirst } from '~/server/queries/certificates/order';
 import { sumPayments } from '~/server/queries/orders/sum-payments';
 
 /** What decides whether a unit may leave, with the certificate that would go with it. */
@@ -86,7 +87,7 @@ export async function readGateFacts(reader: Reader, unitIds: readonly number[]):
       })
       .from(certificates)
       .where(inArray(certificates.unitId, ids))
-      .orderBy(asc(certificates.id)),
+      .orderBy(...oldestFirst),
     ({ unitId }) => unitId,
   );
 

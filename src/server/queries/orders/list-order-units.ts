@@ -14,6 +14,7 @@ import {
   testRuns,
   units,
 } from '~/server/db/schema';
+import { oldestFirst } from '~/server/queries/certificates/order';
 
 /** A unit as its buyer sees it: how far it is, what was issued for it, and where it went. */
 export interface OrderUnit {
@@ -69,7 +70,7 @@ export async function listOrderUnits(reader: Reader, orderId: number): Promise<O
     })
     .from(certificates)
     .where(inArray(certificates.unitId, ids))
-    .orderBy(asc(certificates.id));
+    .orderBy(...oldestFirst);
   const parcels = await reader
     .select({
       unitId: shipmentUnits.unitId,
