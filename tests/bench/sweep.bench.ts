@@ -1,9 +1,30 @@
-import { analyseSweep } from '~/domain/bench/sweep/analyse-sweep';
+import { planForBand } from '~/domain/bench/frequency-plan';
+import type { FrequencyPlan } from '~/domain/bench/frequency-plan';
+import { productNamer } from '~/domain/bench/name-products';
+import { analyseSweep, lineSpacing } from '~/domain/bench/sweep/analyse-sweep';
 import { readSweep } from '~/domain/bench/sweep/read-sweep';
 import { byTurns, figure } from '../setup/figures';
 
 const points = 100_000;
 const stepHz = 800;
+
+const fixed = (symbol: string, name: string, freqHz: number) => ({
+  ...{ symbol, name },
+  ranges: [{ band: null, lowHz: freqHz, highHz: freqHz }],
+});
+
+/** A premixed local oscillator less an intermediate frequency, as the lines of the spectrum below have it. */
+const plan: FrequencyPlan = {
+  oscillators: [
+    { symbol: 'VFO', name: 'VFO', ranges: [{ band: null, lowHz: 3.0e6, highHz: 3.1e6 }] },
+    fixed('XO', 'Crystal oscillator', 8.93e6),
+    fixed('BFO', 'BFO', 4.915e6),
+  ],
+  stages: [{ symbol: 'LO', name: 'Local oscillator', band: null, expression: 'XO + VFO' }],
+  carriers: [{ band: null, expression: 'LO − BFO' }],
+  spacings: [],
+};
+const names = ['BFO leak', 'local oscillator leak', 'image', 'unexplained'];
 
 /** A spectrum as an analyser writes it: a 7.03 MHz carrier, its harmonics, some other lines, and noise. */
 function writeSweep(): string {
@@ -15,7 +36,7 @@ function writeSweep(): string {
     [4.915e6, -58.2],
     [11.945e6, -61.4],
     [16.86e6, -66.3],
-    [33.21e6, -69.8],
+    [34.567e6, -69.8],
   ] as const) {
     put(freqHz, levelDbm);
   }
@@ -40,7 +61,14 @@ figure({
         if (!sweep.ok) throw new Error(sweep.reason);
         const found = analyseSweep(sweep, { testFreqHz: 7.03e6, path: null });
         if (!found.ok) throw new Error(found.reason);
-        if (sweep.points.freqHz.length !== points || found.others.length !== 4) throw new Error('misread');
+        const planned = planForBand(plan, '40m');
+        if (!planned.ok) throw new Error(planned.reason);
+        const toleranceHz = lineSpacing(sweep.understood);
+        const name = productNamer({ plan: planned.plan, carrierHz: found.fundamental.freqHz, toleranceHz });
+        const named = found.others.map(({ freqHz }) => name(freqHz).name);
+        if (sweep.points.freqHz.length !== points || named.join() !== names.join()) {
+          throw new Error(`Misread: ${named.join()}`);
+        }
       },
       () => {
         const freqHz = new Float64Array(points);
