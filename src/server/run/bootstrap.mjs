@@ -9,7 +9,7 @@ const root = join(dirname(fileURLToPath(import.meta.url)), '..', '..', '..');
 /** @type {import('./install.mjs').DebianPackage[]} */
 const forDatabase = ['mariadb-server-core', 'mariadb-client'];
 /** @type {import('./install.mjs').DebianPackage[]} */
-const forTests = [...forDatabase, 'chromium', 'poppler-utils', 'qpdf'];
+const forTests = [...forDatabase, 'chromium', 'poppler-utils', 'qpdf', 'openssl'];
 
 /** @type {Record<string, { script: string, debian: import('./install.mjs').DebianPackage[] }>} */
 const commands = {

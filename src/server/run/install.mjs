@@ -9,8 +9,9 @@ const debianPackages = {
   'mariadb-server-core': ['mariadbd', 'mariadb-install-db'],
   'mariadb-client': ['mariadb', 'mariadb-dump'],
   chromium: ['chromium'],
-  'poppler-utils': ['pdftotext', 'pdftoppm'],
+  'poppler-utils': ['pdftotext', 'pdftoppm', 'pdfdetach'],
   qpdf: ['qpdf'],
+  openssl: ['openssl'],
 };
 
 /** @typedef {keyof typeof debianPackages} DebianPackage */
