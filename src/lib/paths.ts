@@ -40,6 +40,7 @@ export const paths = {
     withQuery(`/works/models/${segment(slug)}/bom-import`, {
       file: fileId === undefined ? undefined : String(fileId),
     }),
+  frequencyPlan: (slug: string) => `/works/models/${segment(slug)}/frequency-plan`,
   stores: (query: Record<'q' | 'sort' | 'desc' | 'page', string | undefined> | Record<string, never> = {}) =>
     withQuery('/works/parts', query),
   part: (number: string) => `/works/parts/${segment(number)}`,
@@ -94,6 +95,7 @@ export const paths = {
     bomLine: (slug: string, letter: string, lineNo: number) =>
       `/api/models/${segment(slug)}/boms/${segment(letter)}/lines/${segment(lineNo)}`,
     releases: (slug: string) => `/api/models/${segment(slug)}/releases`,
+    frequencyPlans: (slug: string) => `/api/models/${segment(slug)}/frequency-plans`,
     bomReading: () => '/api/bom-readings',
     parts: () => '/api/parts',
     part: (number: string) => `/api/parts/${segment(number)}`,
@@ -126,6 +128,7 @@ export const paths = {
     runTester: (runId: number) => `/api/runs/${segment(runId)}/tester`,
     runClosing: (runId: number) => `/api/runs/${segment(runId)}/closing`,
     firstEquipment: () => '/api/equipment',
+    wireReadings: () => '/api/bench/readings',
     instruments: () => '/api/instruments',
     instrumentRevisions: (id: number) => `/api/instruments/${segment(id)}/revisions`,
     signalPaths: () => '/api/paths',
