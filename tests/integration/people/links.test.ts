@@ -166,7 +166,11 @@ test('the first owner founds the works by a link, once', async () => {
   const lacking = takeLink({ token: 'first', password }, callContext(database.db));
   await expect(lacking).rejects.toMatchObject({ code: 'invalid' });
   expect(await database.db.$count(works)).toBe(0);
-  const founding = { token: 'first', password, ...about };
+  const withoutAddress = takeLink({ token: 'first', password, ...about }, callContext(database.db));
+  await expect(withoutAddress).rejects.toMatchObject({
+    fields: { addressLines: expect.any(String) as string },
+  });
+  const founding = { token: 'first', password, ...about, addressLines: ['1 Quiet Lane'] };
   const tries = await Promise.allSettled([
     takeLink(founding, callContext(database.db)),
     takeLink(founding, callContext(database.db)),

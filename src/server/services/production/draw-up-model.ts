@@ -5,8 +5,9 @@ import type { NewModel } from '~/schemas/bench-alone';
 import type { Tx } from '~/server/db/client';
 import { models, optionGroups, options, testPlanRevisions, testPoints } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
-import { actingUserId, databaseErrno, write } from '~/server/write';
+import { databaseErrno, write } from '~/server/write';
 import type { Ctx } from '~/server/write';
+import { releaseTestPlanRevision } from './release-revision';
 
 const duplicate = 1062;
 const loadOhm = 50;
@@ -48,9 +49,8 @@ export async function drawUpModel(
     if (bandsVary) await offerBands(w.tx, modelId, bands);
     const letter = 'A';
     const [{ insertId: revisionId }] = await w.tx.insert(testPlanRevisions).values({
-      ...{ modelId, letter, state: 'released', note: 'Drawn from the model’s bands and rated power.' },
+      ...{ modelId, letter, state: 'draft', note: 'Drawn from the model’s bands and rated power.' },
       ...{ supplyV: input.supplyV, loadOhm, createdAt: w.now },
-      ...{ releasedAt: w.now, releasedBy: actingUserId(w) },
     });
     const points = templatePoints({
       ...{ bands, bandsVary, ratedPowerW, measure: input.measure },
@@ -62,6 +62,7 @@ export async function drawUpModel(
         ...{ lowerLimit: lower, upperLimit: upper, testPlanRevisionId: revisionId, position: index + 1 },
       })),
     );
+    await releaseTestPlanRevision({ model: slug, letter }, w);
     await w.record({
       action: 'model.draw_up',
       subjects: [
