@@ -53,6 +53,11 @@ export const paths = {
   bench: () => '/works/bench',
   testRig: (model?: string) => withQuery('/works/bench/rig', { model }),
   firstEquipment: () => '/works/bench/equipment',
+  compareRuns: (serial: string, before?: number, after?: number) =>
+    withQuery(`/works/units/${segment(serial)}/runs/compare`, {
+      a: before?.toString(),
+      b: after?.toString(),
+    }),
   run: (serial: string, runNo: number) => `/works/units/${segment(serial)}/runs/${segment(runNo)}`,
   instruments: () => '/works/instruments',
   instrument: (number: string) => `/works/instruments/${segment(number)}`,
@@ -118,6 +123,7 @@ export const paths = {
     reworkClosing: (serial: string) => `/api/units/${segment(serial)}/reworks/closing`,
     runs: (serial: string) => `/api/units/${segment(serial)}/runs`,
     run: (runId: number) => `/api/runs/${segment(runId)}`,
+    runAlike: (runId: number) => `/api/runs/${segment(runId)}/alike`,
     readings: (runId: number) => `/api/runs/${segment(runId)}/readings`,
     reading: (runId: number, readingId: number) =>
       `/api/runs/${segment(runId)}/readings/${segment(readingId)}`,

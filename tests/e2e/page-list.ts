@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, gt, isNotNull, sql } from 'drizzle-orm';
+import { and, asc, desc, eq, gt, isNotNull, isNull, sql } from 'drizzle-orm';
 import type { StaffRole } from '~/domain/people/roles';
 import { invariant } from '~/lib/invariant';
 import { paths } from '~/lib/paths';
@@ -8,6 +8,7 @@ import {
   batches,
   certificates,
   contacts,
+  instruments,
   lots,
   models,
   optionGroups,
@@ -15,6 +16,9 @@ import {
   orderLines,
   orders,
   parts,
+  pathParts,
+  paths as signalPaths,
+  reworks,
   shipments,
   signInLinks,
   testRuns,
@@ -50,7 +54,7 @@ function viewersOf(pattern: string): Viewer[] {
 /** The floor, the stores and the bench also work on a tablet held in one hand; the shop from a telephone on. */
 function narrowOf(pattern: string): ExamplePage['narrow'] {
   if (!pattern.startsWith('/works')) return 390;
-  const onTablet = /^\/works\/(parts|lots|floor|bench|instruments|units)(\/|$)/;
+  const onTablet = /^\/works\/(parts|lots|floor|bench|instruments|paths|path-parts|checks|units)(\/|$)/;
   return onTablet.test(pattern) ? 800 : 1024;
 }
 
@@ -154,6 +158,37 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     await atStage('gone'),
   ];
   const [open, closed] = [await run('open'), await run('closed')];
+  const retested = await one(
+    db
+      .select({ serial: units.serial })
+      .from(testRuns)
+      .innerJoin(units, eq(units.id, testRuns.unitId))
+      .where(and(eq(testRuns.runNo, 2), eq(testRuns.result, 'passed')))
+      .orderBy(desc(testRuns.id)),
+    'a unit that was tested twice',
+  );
+  const failed = await one(
+    db
+      .select({ serial: units.serial, runNo: testRuns.runNo })
+      .from(reworks)
+      .innerJoin(testRuns, eq(testRuns.id, reworks.testRunId))
+      .innerJoin(units, eq(units.id, testRuns.unitId))
+      .where(isNull(reworks.closedAt))
+      .orderBy(desc(testRuns.id)),
+    'a unit in rework after a failed run',
+  );
+  const instrument = await one(
+    db.select({ number: instruments.number }).from(instruments).orderBy(asc(instruments.id)),
+    'an instrument',
+  );
+  const pathPart = await one(
+    db.select({ number: pathParts.number }).from(pathParts).orderBy(asc(pathParts.id)),
+    'a path part',
+  );
+  const signalPath = await one(
+    db.select({ number: signalPaths.number }).from(signalPaths).orderBy(desc(signalPaths.id)),
+    'a path',
+  );
   const [signInLink] = await db
     .select({ id: signInLinks.id })
     .from(signInLinks)
@@ -195,6 +230,7 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     '/works/models/new': { '': paths.newModel() },
     '/works/models/[slug]': { '': paths.worksModel(model.slug) },
     '/works/models/[slug]/bom-import': { '': paths.bomImport(model.slug) },
+    '/works/models/[slug]/frequency-plan': { '': paths.frequencyPlan(model.slug) },
     '/works/parts': { '': paths.stores() },
     '/works/parts/[number]': { '': paths.part(lot.part) },
     '/works/lots/receive': { '': paths.receive(lot.part) },
@@ -203,11 +239,17 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     '/works/units/[serial]': {
       'at-kit': paths.unit(kit.serial),
       'at-pack': paths.unit(tested.serial),
+      'in-rework': paths.unit(failed.serial),
       gone: paths.unit(gone.serial),
     },
     '/works/units/[serial]/kit': { '': paths.unitKit(kit.serial) },
     '/works/units/[serial]/build': { '': paths.unitBuild(boards.serial) },
+    '/works/units/[serial]/runs/compare': {
+      '': paths.compareRuns(retested.serial),
+      single: paths.compareRuns(open.serial),
+    },
     '/works/units/[serial]/runs/[run]': {
+      failed: paths.run(failed.serial, failed.runNo),
       open: paths.run(open.serial, open.runNo),
       closed: paths.run(closed.serial, closed.runNo),
     },
@@ -215,6 +257,12 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     '/works/bench/rig': { '': paths.testRig(model.slug) },
     '/works/bench/equipment': { '': paths.firstEquipment() },
     '/works/instruments': { '': paths.instruments() },
+    '/works/instruments/[number]': { '': paths.instrument(instrument.number) },
+    '/works/paths': { '': paths.signalPaths() },
+    '/works/paths/[number]': { '': paths.signalPath(signalPath.number) },
+    '/works/path-parts': { '': paths.pathParts() },
+    '/works/path-parts/[number]': { '': paths.pathPart(pathPart.number) },
+    '/works/checks': { '': paths.checks() },
     '/works/certificates/[number]': {
       '': paths.worksCertificate(`${certificate.number}${certificate.letter}`),
     },

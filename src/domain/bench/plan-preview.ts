@@ -21,6 +21,8 @@ export interface BandPreview {
   band: BandKey;
   /** Where the oscillators put the carrier; null where the plan cannot say. */
   carrier: { lowHz: number; highHz: number } | null;
+  /** What the last mixer makes besides; null where the carrier is no sum or difference of two. */
+  image: { lowHz: number; highHz: number } | null;
   /** A sentence where something is wrong with the plan there. */
   problem: string | null;
   inBand: ProductInBand[];
@@ -44,8 +46,10 @@ function productsInBand(plan: BandPlan, band: BandKey): ProductInBand[] {
 export function previewPlan(plan: FrequencyPlan): BandPreview[] {
   return bandsOf(plan).map((band) => {
     const resolved = planForBand(plan, band);
-    if (!resolved.ok) return { band, carrier: null, problem: resolved.reason, inBand: [] };
+    if (!resolved.ok) return { band, carrier: null, image: null, problem: resolved.reason, inBand: [] };
     const carrier = reachOf(resolved.plan.carrier.mix, resolved.plan);
+    const { image: imageMix } = resolved.plan.carrier;
+    const image = imageMix === null ? null : reachOf(imageMix, resolved.plan);
     const edges = commonEdges(band);
     if (carrier.highHz < edges.lowHz || carrier.lowHz > edges.highHz) {
       const lies =
@@ -53,9 +57,9 @@ export function previewPlan(plan: FrequencyPlan): BandPreview[] {
           ? `at ${formatFrequency(carrier.lowHz)}`
           : `from ${formatFrequency(carrier.lowHz)} to ${formatFrequency(carrier.highHz)}`;
       const problem = `The oscillators put the carrier ${lies}, outside ${bandLabel(band)}. Look at their frequencies and signs.`;
-      return { band, carrier, problem, inBand: [] };
+      return { band, carrier, image, problem, inBand: [] };
     }
-    return { band, carrier, problem: null, inBand: productsInBand(resolved.plan, band) };
+    return { band, carrier, image, problem: null, inBand: productsInBand(resolved.plan, band) };
   });
 }
 

@@ -1,3 +1,4 @@
+import { reviseFrequencyPlan } from '~/server/services/bench/revise-frequency-plan';
 import { createBomRevision } from '~/server/services/production/create-bom-revision';
 import {
   releaseBomRevision,
@@ -6,6 +7,7 @@ import {
 } from '~/server/services/production/release-revision';
 import type { WriteContext } from '~/server/write';
 import { demoBoms } from './boms';
+import { demoFrequencyPlans } from './frequency-plans';
 import { addModels, demoModels, sellModels } from './models';
 import { addParts } from './parts';
 import { draftTestPlan } from './plans';
@@ -21,6 +23,8 @@ export async function addCatalog(w: WriteContext): Promise<void> {
     await draftTestPlan(w.tx, model, w.now);
     await releaseBuildSheetRevision({ model, letter: 'A' }, w);
     await releaseTestPlanRevision({ model, letter: 'A' }, w);
+    const plan = demoFrequencyPlans[model];
+    if (plan !== undefined) await reviseFrequencyPlan({ model, plan }, w);
   }
   await sellModels(w.tx);
 }
