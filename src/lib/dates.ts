@@ -29,6 +29,13 @@ function utcOf(day: Day): Date {
   return date;
 }
 
+/** Whether a text is a day of the calendar, as `2027-03-09`. */
+export function isDay(text: string): boolean {
+  if (!/^\d{4}-\d{2}-\d{2}$/.test(text)) return false;
+  const date = new Date(`${text}T00:00:00Z`);
+  return !Number.isNaN(date.getTime()) && date.toISOString().startsWith(text);
+}
+
 /** `2027-03-09` as `9 March 2027`. */
 export function formatDay(day: Day): string {
   const date = utcOf(day);

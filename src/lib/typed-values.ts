@@ -18,3 +18,20 @@ export function typedList(
   const value = form.values[name] ?? [];
   return typeof value === 'string' ? [value] : value;
 }
+
+/**
+ * All single fields that a refused form held; null where nothing came back.
+ *
+ * @param having a field by which the form is told from others of its page
+ */
+export function typedFields(
+  form: { values: Record<string, string | string[]> } | null,
+  having?: string,
+): Record<string, string> | null {
+  if (form === null || (having !== undefined && form.values[having] === undefined)) return null;
+  return Object.fromEntries(
+    Object.entries(form.values).flatMap(([name, value]) =>
+      typeof value === 'string' ? [[name, value]] : [],
+    ),
+  );
+}

@@ -2,6 +2,7 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { invariant } from '~/lib/invariant';
 import {
+  checkQuestion,
   checkState,
   checkValue,
   closingProblem,
@@ -88,6 +89,12 @@ describe('how far a check is off', () => {
     const of = reference('rf_power');
     expect([0.2, -0.2, 0].map((deviation) => isGood(of, deviation))).toEqual([true, true, true]);
     expect([0.2001, -0.21, NaN].map((deviation) => isGood(of, deviation))).toEqual([false, false, false]);
+  });
+
+  it('is asked about where it is rather a slip of the hand', () => {
+    const of = reference('rf_power');
+    expect(checkQuestion(of, 2)).toBeNull();
+    expect(checkQuestion(of, -6.02)).toMatch(/off by −6\.02 dB, more than ten times its band/);
   });
 
   it('grows with the distance from the nominal value', () => {

@@ -80,6 +80,14 @@ export function deviationText({ quantity }: Pick<Reference, 'quantity'>, deviati
   return `${deviation > 0 ? '+' : '\u2212'}${text}`;
 }
 
+const FAR_OFF = 10;
+
+/** Asks about a value that is rather a slip of the hand than a drift of the bench; null where it is neither. */
+export function checkQuestion(reference: Reference, deviation: number): string | null {
+  if (Math.abs(deviation) <= FAR_OFF * reference.tolerance) return null;
+  return `That is off by ${deviationText(reference, deviation)}, more than ten times its band. Is it meant as typed?`;
+}
+
 /** A reference in use with its newest check, as the closing of a run asks for it. */
 export interface CheckedReference {
   number: string;

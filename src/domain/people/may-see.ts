@@ -17,3 +17,8 @@ export function maySeeStockValue(roles: readonly StaffRole[]): boolean {
 export function mayWorkOnFloor(roles: readonly StaffRole[]): boolean {
   return roles.includes('owner') || roles.includes('builder');
 }
+
+/** Who enters and revises the bench's instruments and paths, and does the daily checks; the others read. */
+export function mayKeepEquipment(roles: readonly StaffRole[]): boolean {
+  return roles.includes('owner') || roles.includes('tester');
+}

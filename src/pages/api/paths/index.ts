@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { paths } from '~/lib/paths';
 import { newPath } from '~/schemas/bench-equipment';
 import { pathSpecSchema } from '~/schemas/bench-specs';
 import { door } from '~/server/door';
@@ -24,9 +25,10 @@ export const GET = door({
 
 export const POST = door({
   rule: staff('tester'),
-  summary: 'Enter a new path with its first revision',
+  summary: 'Enter a new path, by its parts in order',
   input: newPath,
   output: z.object({ pathId: z.number().int(), pathRevisionId: z.number().int(), number: z.string() }),
   said: ({ number }) => `${number} can be chosen at the bench now.`,
+  next: ({ number }) => paths.signalPath(number),
   run: ({ input, ctx }) => createPath(input, ctx),
 });

@@ -1,6 +1,8 @@
-import type { InstrumentSpec, PathSpec } from '~/domain/bench/types';
-import { instrumentRevisions, instruments, pathRevisions, paths } from '~/server/db/schema';
-import type { Tx } from '~/server/db/client';
+import type { AccuracyUnit, InstrumentCalibration, InstrumentSpec } from '~/domain/bench/types';
+import { createInstrument } from '~/server/services/bench/create-instrument';
+import { createPath } from '~/server/services/bench/create-path';
+import { createPathPart } from '~/server/services/bench/create-path-part';
+import type { WriteContext } from '~/server/write';
 import type { Calendar } from './calendar';
 
 interface DemoInstrument {
@@ -15,8 +17,18 @@ const plain = {
   flatnessDb: null,
   vswr: null,
   ownDistortionDbc: null,
+  detector: null,
   calibration: null,
 };
+
+function calibrated(
+  expanded: number,
+  unit: AccuracyUnit,
+  { on, due, no }: { on: string; due: string; no: string },
+): InstrumentCalibration {
+  const laboratory = 'Northmoor Metrology';
+  return { expanded, unit, k: 2, calibratedOn: on, dueOn: due, laboratory, certificateNumber: no };
+}
 
 function demoInstruments(calendar: Calendar): DemoInstrument[] {
   return [
@@ -33,7 +45,11 @@ function demoInstruments(calendar: Calendar): DemoInstrument[] {
           },
         },
         vswr: 1.12,
-        calibration: { expanded: 0.09, unit: 'dB', k: 2, dueOn: calendar.day(214) },
+        calibration: calibrated(0.09, 'dB', {
+          on: calendar.day(-151),
+          due: calendar.day(214),
+          no: 'NM-7731',
+        }),
       },
     },
     {
@@ -56,7 +72,7 @@ function demoInstruments(calendar: Calendar): DemoInstrument[] {
         flatnessDb: 0.45,
         vswr: 1.2,
         ownDistortionDbc: -82,
-        calibration: { expanded: 0.4, unit: 'dB', k: 2, dueOn: calendar.day(122) },
+        calibration: calibrated(0.4, 'dB', { on: calendar.day(-243), due: calendar.day(122), no: 'NM-7458' }),
       },
     },
     {
@@ -115,7 +131,7 @@ function demoInstruments(calendar: Calendar): DemoInstrument[] {
         flatnessDb: 1.2,
         vswr: 1.4,
         ownDistortionDbc: -68,
-        calibration: { expanded: 0.8, unit: 'dB', k: 2, dueOn: calendar.day(-38) },
+        calibration: calibrated(0.8, 'dB', { on: calendar.day(-768), due: calendar.day(-38), no: 'NM-5102' }),
       },
     },
     {
@@ -130,61 +146,36 @@ function demoInstruments(calendar: Calendar): DemoInstrument[] {
   ];
 }
 
-const tap: PathSpec = {
-  parts: [
-    {
-      name: 'Dummy load with 40 dB tap, 50 W',
-      loss: [
-        [1e6, 40.05],
-        [10e6, 40.02],
-        [30e6, 40.0],
-        [60e6, 39.96],
-        [150e6, 39.8],
-      ],
-      ...{ uncertaintyDb: 0.1, k: 2, flatnessDb: 0.12, ratingW: 50, vswr: 1.05 },
-    },
-    {
-      name: 'Cable, 60 cm',
-      loss: [
-        [1e6, 0.02],
-        [10e6, 0.05],
-        [30e6, 0.09],
-        [150e6, 0.21],
-      ],
-      ...{ uncertaintyDb: 0.03, k: 2, flatnessDb: 0.03, ratingW: null, vswr: null },
-    },
-  ],
-};
-
-const demoPaths: readonly { number: string; name: string; spec: PathSpec }[] = [
-  { number: 'T-1', name: '40 dB tap and cable', spec: tap },
+/** Losses as the works has measured them. */
+const demoParts = [
   {
-    number: 'T-2',
-    name: '40 dB tap, cable and 10 dB pad',
-    spec: {
-      parts: [
-        ...tap.parts,
-        {
-          name: '10 dB pad, 2 W',
-          loss: [
-            [1e6, 10.01],
-            [150e6, 10.06],
-          ],
-          ...{ uncertaintyDb: 0.06, k: 2, flatnessDb: 0.05, ratingW: 2, vswr: 1.08 },
-        },
-      ],
-    },
+    number: 'L-50',
+    name: 'Dummy load with 40 dB tap, 50 W',
+    lossTable: '1 MHz 40.05\n10 MHz 40.02\n30 MHz 40\n60 MHz 39.96\n150 MHz 39.8',
+    ...{ uncertaintyDb: 0.1, k: 2, flatnessDb: 0.12, ratingW: 50, vswr: 1.05 },
+  },
+  {
+    number: 'C-60',
+    name: 'Cable, 60 cm',
+    lossTable: '1 MHz 0.02\n10 MHz 0.05\n30 MHz 0.09\n150 MHz 0.21',
+    ...{ uncertaintyDb: 0.03, k: 2, flatnessDb: 0.03, ratingW: null, vswr: null },
+  },
+  {
+    number: 'A-10',
+    name: '10 dB pad, 2 W',
+    lossTable: '1 MHz 10.01\n150 MHz 10.06',
+    ...{ uncertaintyDb: 0.06, k: 2, flatnessDb: 0.05, ratingW: 2, vswr: 1.08 },
   },
 ];
 
-/** Enters the bench's instruments and paths, each with its first revision. */
-export async function addEquipment(tx: Tx, calendar: Calendar, createdAt: Date): Promise<void> {
-  for (const { spec, ...instrument } of demoInstruments(calendar)) {
-    const [{ insertId: instrumentId }] = await tx.insert(instruments).values(instrument);
-    await tx.insert(instrumentRevisions).values({ instrumentId, revision: 1, spec, createdAt });
-  }
-  for (const { spec, ...path } of demoPaths) {
-    const [{ insertId: pathId }] = await tx.insert(paths).values(path);
-    await tx.insert(pathRevisions).values({ pathId, revision: 1, spec, createdAt });
-  }
+const demoPaths = [
+  { number: 'T-1', name: '40 dB tap and cable', parts: ['L-50', 'C-60'] },
+  { number: 'T-2', name: '40 dB tap, cable and 10 dB pad', parts: ['L-50', 'C-60', 'A-10'] },
+];
+
+/** Enters the bench's instruments, and the paths with the parts that they are built from. */
+export async function addEquipment(w: WriteContext, calendar: Calendar): Promise<void> {
+  for (const instrument of demoInstruments(calendar)) await createInstrument(instrument, w);
+  for (const part of demoParts) await createPathPart(part, w);
+  for (const path of demoPaths) await createPath({ ...path, direction: 'to_instrument' }, w);
 }

@@ -9,6 +9,7 @@ import { buyerSource } from './buyers';
 import type { Calendar } from './calendar';
 import { calendarAround } from './calendar';
 import { addCatalog, issueBom } from './catalog';
+import { checkScenes } from './checks';
 import { addEquipment } from './equipment';
 import { endOldCheckouts, unpaidOrderScene } from './orders';
 import type { Cast } from './people';
@@ -36,12 +37,12 @@ export async function seedDemo(): Promise<void> {
   const calendar = calendarAround(new Date());
   const founded = calendar.at(-240, 9);
   const cast = await database.transaction(async (tx) => {
-    await addEquipment(tx, calendar, founded);
     await addSuppliers(tx);
     return addPeople(tx, founded);
   });
   await play(database, [
     { at: founded, actor: cast.owner, play: addSigningKey },
+    { at: founded, actor: cast.owner, play: (w) => addEquipment(w, calendar) },
     { at: founded, actor: cast.owner, play: addCatalog },
     ...history(calendar, cast),
     { at: calendar.now, actor: { kind: 'system' }, play: endOldCheckouts },
@@ -57,6 +58,7 @@ function history(calendar: Calendar, cast: Cast): Scene[] {
   return [
     ...stockScenes(calendar, cast, random),
     ...made.flatMap(({ scenes }) => scenes),
+    ...checkScenes(calendar, cast, seededRandom(seed)),
     { at: calendar.at(-100, 14.5), actor: cast.owner, play: (w) => issueBom(w, 'holm-3', 1) },
     ...(newest === undefined ? [] : unpaid(newest.batch, newest.story.slug, studio)),
   ];

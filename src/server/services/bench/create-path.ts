@@ -1,22 +1,24 @@
-import type { NewPath } from '~/schemas/bench-equipment';
 import { pathRevisions, paths } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
 import { databaseErrno, write } from '~/server/write';
 import type { Ctx } from '~/server/write';
+import { pictureOf } from './path-entry';
+import type { PathEntry } from './path-entry';
 
 const duplicate = 1062;
 
 /**
- * Enters a path with its first revision.
+ * Enters a path with its first revision, a picture of its parts as they are now.
  *
- * @throws DomainError `conflict` where the number is taken
+ * @throws DomainError `conflict` where the number is taken; `refused` where a part is not in use
  */
 export async function createPath(
-  input: NewPath,
+  input: PathEntry & { number: string; name: string },
   ctx: Ctx,
 ): Promise<{ pathId: number; pathRevisionId: number; number: string }> {
-  const { number, name, spec } = input;
+  const { number, name } = input;
   return write(ctx, async (w) => {
+    const spec = await pictureOf(w, input);
     const [{ insertId: pathId }] = await w.tx
       .insert(paths)
       .values({ number, name })
@@ -31,7 +33,7 @@ export async function createPath(
     await w.record({
       action: 'path.create',
       subjects: [{ type: 'path', id: pathId }],
-      details: { number, name, spec },
+      details: { number, name, parts: spec.parts.map(({ partNumber, name: part }) => partNumber ?? part) },
     });
     return { pathId, pathRevisionId, number };
   });

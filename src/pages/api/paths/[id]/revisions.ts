@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { paths } from '~/lib/paths';
 import { pathRevision } from '~/schemas/bench-equipment';
 import { door } from '~/server/door';
 import { staff } from '~/server/rules';
@@ -12,8 +13,10 @@ export const POST = door({
   output: z.object({
     pathId: z.number().int(),
     pathRevisionId: z.number().int(),
+    number: z.string(),
     revision: z.number().int(),
   }),
   said: ({ revision }) => `Revision ${revision} applies from now on.`,
+  next: ({ number }) => paths.signalPath(number),
   run: ({ params, input, ctx }) => revisePath({ ...input, pathId: params.id }, ctx),
 });
