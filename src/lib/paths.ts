@@ -128,6 +128,7 @@ export const paths = {
     reading: (runId: number, readingId: number) =>
       `/api/runs/${segment(runId)}/readings/${segment(readingId)}`,
     sweeps: (runId: number) => `/api/runs/${segment(runId)}/sweeps`,
+    sweepLooks: (runId: number) => `/api/runs/${segment(runId)}/sweep-looks`,
     readingVoiding: (runId: number, readingId: number) =>
       `/api/runs/${segment(runId)}/readings/${segment(readingId)}/voiding`,
     runConditions: (runId: number) => `/api/runs/${segment(runId)}/conditions`,

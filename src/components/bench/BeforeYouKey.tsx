@@ -85,6 +85,16 @@ export function BeforeYouKey({ station, equipment, pathRevisionId }: Props) {
           Earlier runs
         </h2>
         {earlier.length === 0 && <p className="quiet">None: this is the first.</p>}
+        {earlier[0] !== undefined && (
+          <p className="mb-2">
+            <a
+              href={paths.compareRuns(unit.serial, earlier[0].runNo, run.runNo)}
+              className="inline-flex min-h-7 items-center"
+            >
+              Side by side with run {earlier[0].runNo}
+            </a>
+          </p>
+        )}
         <ul className="grid gap-3">
           {earlier.map((before) => (
             <li key={before.runNo}>

@@ -18,16 +18,24 @@ const weakFilter: RunPlan = { fault: { kind: 'fail', quantityKey: 'harmonic_2', 
 const tooClose: RunPlan = { fault: { kind: 'too_close', quantityKey: 'harmonic_2', band: '20m' } };
 
 const lowPassTurns: Remedy = {
+  cause: 'Low-pass coil has a wrong number of turns',
   text: 'Low-pass coil turns: L302 had 13, rewound to 12.',
   ...{ minutes: 35, stepAgain: 'Wind the toroids' },
 };
+const lowPassCapacitor: Remedy = {
+  cause: 'Low-pass capacitor of a wrong value',
+  text: 'C311 was 330 pF instead of 220 pF; exchanged.',
+  minutes: 22,
+};
 const lowPower: RunPlan = { fault: { kind: 'fail', quantityKey: 'rf_power', band: '30m' } };
 const outputStage: Remedy = {
+  cause: 'Output transistor is weak or damaged',
   text: 'Output transistor Q9 leaked at the gate; replaced, and its pad with it.',
   ...{ minutes: 42, place: 'Q9' },
 };
 const thirsty: RunPlan = { fault: { kind: 'fail', quantityKey: 'current_key_down', band: '40m' } };
-const solderBridge: Remedy = {
+const outputTransformer: Remedy = {
+  cause: 'Output transformer has a wrong number of turns',
   text: 'T2 of the output stage had one turn too few; rewound.',
   ...{ minutes: 28, stepAgain: 'Wind the toroids' },
 };
@@ -54,9 +62,9 @@ export const dispatchedFates: readonly Fate[] = [
   { ...gone, runs: [tooClose, passes] },
   gone,
   gone,
-  { ...gone, runs: [thirsty, passes], remedies: [solderBridge] },
+  { ...gone, runs: [thirsty, passes], remedies: [outputTransformer] },
   gone,
-  gone,
+  { ...gone, runs: [weakFilter, passes], remedies: [lowPassCapacitor] },
   gone,
   gone,
 ];
@@ -71,7 +79,7 @@ export const testedFates: readonly Fate[] = [
   certified,
   certified,
   certified,
-  { ...certified, runs: [thirsty, passes], remedies: [solderBridge] },
+  { ...certified, runs: [thirsty, passes], remedies: [outputTransformer] },
   { ...built, runs: [weakFilter] },
   { ...built, runs: [tooClose] },
   { ...built, runs: [{ fault: null, stopAfter: 11 }], openedMinutesAgo: 48 },

@@ -144,6 +144,8 @@ async function pickLine(
 
 /** What was found wrong with a unit that failed, and what was done. */
 export interface Remedy {
+  /** What was behind it. */
+  cause: string;
   text: string;
   minutes: number;
   /** The build step that was done again. */
@@ -160,7 +162,15 @@ export function remedyScene(unit: DemoUnit, remedy: Remedy, at: Date, cast: Cast
     play: async (w) => {
       if (remedy.place !== undefined) await replacePart(w, unit, remedy.place);
       if (remedy.stepAgain !== undefined) await tick(w, unit, remedy.stepAgain, undefined, remedy.minutes);
-      await closeRework({ serial: unit.serial, remedy: remedy.text, minutes: remedy.minutes }, w);
+      await closeRework(
+        {
+          serial: unit.serial,
+          foundCause: remedy.cause,
+          remedy: remedy.text,
+          minutes: remedy.minutes,
+        },
+        w,
+      );
     },
   };
 }

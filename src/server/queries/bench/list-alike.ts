@@ -1,0 +1,117 @@
+import { and, asc, desc, eq, inArray, isNotNull, lt, ne } from 'drizzle-orm';
+import { invariant } from '~/lib/invariant';
+import type { AlikePoint } from '~/schemas/bench-alike';
+import type { Reader } from '~/server/db/client';
+import { runPoints, testPoints, testRuns, units } from '~/server/db/schema';
+
+/** So many values of a point are shown. */
+export const MOST_ALIKE = 40;
+/** So many runs are looked through at a time; most points of a plan stand in nearly all of them. */
+const runsAtATime = 50;
+/** A point that only a rare option has is not looked for in all the runs that a works ever made. */
+const mostRuns = 500;
+
+/**
+ * The last values of each point of a run, as closed runs of the same model kept them: the same quantity on the same
+ * band, whichever revision of the test plan asked for it; the newest first.
+ *
+ * Runs are walked from the newest backwards, some at a time, so that a long history is not read whole.
+ *
+ * @returns null where there is no such run
+ */
+export async function listAlike(reader: Reader, runId: number): Promise<AlikePoint[] | null> {
+  const [run] = await reader
+    .select({ modelId: units.modelId, planId: testRuns.testPlanRevisionId })
+    .from(testRuns)
+    .innerJoin(units, eq(units.id, testRuns.unitId))
+    .where(eq(testRuns.id, runId));
+  if (run === undefined) return null;
+  const points = await reader
+    .select({ testPointId: testPoints.id, quantityKey: testPoints.quantityKey, band: testPoints.band })
+    .from(testPoints)
+    .where(eq(testPoints.testPlanRevisionId, run.planId))
+    .orderBy(asc(testPoints.position));
+  const found = new Map(points.map((point) => [keyOf(point), [] as AlikePoint['values']]));
+  let before = Number.MAX_SAFE_INTEGER;
+  for (let looked = 0; looked < mostRuns; looked += runsAtATime) {
+    const lacking = points.filter((point) => (found.get(keyOf(point))?.length ?? 0) < MOST_ALIKE);
+    if (lacking.length === 0) break;
+    const runs = await listClosedRuns(reader, run.modelId, { before, except: runId });
+    const oldest = runs.at(-1);
+    if (oldest === undefined) break;
+    for (const { key, value } of await listValues(reader, runs, lacking)) {
+      const values = found.get(key);
+      if (values !== undefined && values.length < MOST_ALIKE) values.push(value);
+    }
+    before = oldest.id;
+  }
+  return points.map((point) => ({ ...point, values: found.get(keyOf(point)) ?? [] }));
+}
+
+interface ClosedRun {
+  id: number;
+  runNo: number;
+  serial: string;
+  closedAt: Date | null;
+}
+
+async function listClosedRuns(
+  reader: Reader,
+  modelId: number,
+  { before, except }: { before: number; except: number },
+): Promise<ClosedRun[]> {
+  return reader
+    .select({ id: testRuns.id, runNo: testRuns.runNo, serial: units.serial, closedAt: testRuns.closedAt })
+    .from(testRuns)
+    .innerJoin(units, eq(units.id, testRuns.unitId))
+    .where(
+      and(
+        eq(units.modelId, modelId),
+        eq(testRuns.state, 'closed'),
+        lt(testRuns.id, before),
+        ne(testRuns.id, except),
+      ),
+    )
+    .orderBy(desc(testRuns.id))
+    .limit(runsAtATime);
+}
+
+async function listValues(
+  reader: Reader,
+  runs: readonly ClosedRun[],
+  lacking: readonly { quantityKey: string }[],
+) {
+  const rows = await reader
+    .select({
+      runId: runPoints.testRunId,
+      quantityKey: testPoints.quantityKey,
+      band: testPoints.band,
+      value: runPoints.value,
+      verdict: runPoints.verdict,
+    })
+    .from(runPoints)
+    .innerJoin(testPoints, eq(testPoints.id, runPoints.testPointId))
+    .where(
+      and(
+        inArray(
+          runPoints.testRunId,
+          runs.map(({ id }) => id),
+        ),
+        inArray(testPoints.quantityKey, [...new Set(lacking.map(({ quantityKey }) => quantityKey))]),
+        ne(runPoints.verdict, 'not_run'),
+        isNotNull(runPoints.value),
+      ),
+    )
+    .orderBy(desc(runPoints.testRunId), asc(testPoints.position));
+  const runOf = new Map(runs.map((run) => [run.id, run]));
+  return rows.map(({ runId, value, verdict, ...point }) => {
+    const run = runOf.get(runId);
+    invariant(run !== undefined && value !== null, 'a value of one of the runs');
+    const { serial, runNo, closedAt } = run;
+    return { key: keyOf(point), value: { value, verdict, serial, runNo, closedAt } };
+  });
+}
+
+function keyOf({ quantityKey, band }: { quantityKey: string; band: string | null }): string {
+  return `${quantityKey} ${band ?? ''}`;
+}
