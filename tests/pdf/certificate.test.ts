@@ -67,7 +67,7 @@ describe('the certificate', () => {
       '7F3K-92QD-HM0V',
       'https://works.example/c/7F3K92QDHM0V',
       `Signed with the works’ key ${keyId(publicKey)} (Ed25519).`,
-      'The results are of this unit alone.',
+      'The results relate only to the unit tested. Not to be reproduced except in full.',
       'page 1 of 1',
     ]) {
       expect(text).toContain(words);

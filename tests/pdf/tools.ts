@@ -2,6 +2,7 @@ import { execFileSync, spawnSync } from 'node:child_process';
 import { mkdtempSync, readFileSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import type { GreyPicture } from './grey-picture';
 
 /** Runs a program on a PDF written to a folder of its own, which is removed afterwards. */
 function withFile<T>(program: string, pdf: Uint8Array, use: (file: string, folder: string) => T): T {
@@ -111,8 +112,8 @@ export function fontsOf(pdf: Uint8Array): { name: string; embedded: boolean; sub
     });
 }
 
-/** The first page in shades of grey at a resolution: from column and row to 0 (black) to 255 (white). */
-export function pixelsOf(pdf: Uint8Array, dpi: number): (column: number, row: number) => number {
+/** The first page in shades of grey at a resolution. */
+export function pictureOf(pdf: Uint8Array, dpi: number): GreyPicture {
   const image = withFile('pdftoppm', pdf, (file) =>
     execFileSync('pdftoppm', ['-r', String(dpi), '-gray', '-f', '1', '-l', '1', file], {
       maxBuffer: 1 << 28,
@@ -120,6 +121,12 @@ export function pixelsOf(pdf: Uint8Array, dpi: number): (column: number, row: nu
   );
   const head = /^P5\s+(\d+)\s+(\d+)\s+255\s/u.exec(image.subarray(0, 40).toString('latin1'));
   if (!head) throw new Error('The picture of the page is not in the form that was asked for.');
-  const width = Number(head[1]);
-  return (column, row) => image[head[0].length + Math.floor(row) * width + Math.floor(column)] ?? 255;
+  const pixels = new Uint8Array(image.subarray(head[0].length));
+  return { width: Number(head[1]), height: Number(head[2]), pixels };
+}
+
+/** The same, from column and row to 0 (black) to 255 (white). */
+export function pixelsOf(pdf: Uint8Array, dpi: number): (column: number, row: number) => number {
+  const { width, pixels } = pictureOf(pdf, dpi);
+  return (column, row) => pixels[Math.floor(row) * width + Math.floor(column)] ?? 255;
 }

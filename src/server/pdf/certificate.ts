@@ -4,6 +4,7 @@ import { fullNumber } from '~/domain/certificates/statement';
 import type {
   CertificateStatement,
   StatedInstrument,
+  StatedPoint,
   StatementSignature,
 } from '~/domain/certificates/statement';
 import { formatDay, formatTimeOf } from '~/lib/dates';
@@ -92,7 +93,7 @@ function layOutAt(scale: number, statement: CertificateStatement, signature: Sta
   drawCheck(flow, statement, signature);
   drawFeet(
     flow,
-    `${number}. The results are of this unit alone. This certificate may be copied only as a whole.`,
+    `${number}. The results relate only to the unit tested. Not to be reproduced except in full.`,
   );
   return flow;
 }
@@ -146,20 +147,42 @@ function factsOf(statement: CertificateStatement): (readonly [string, string])[]
   ];
 }
 
-function instrumentText({ name, grade, gradeNote, calibrationDueOn }: StatedInstrument): string {
+/** @param testedOn day of the test, by which a calibration was in date or not */
+function instrumentText(
+  { name, grade, gradeNote, calibrationDueOn }: StatedInstrument,
+  testedOn: string,
+): string {
+  const isOverdue = calibrationDueOn !== null && calibrationDueOn < testedOn;
   const details = [
     gradeNote === '' ? GRADES[grade] : `${grade === 'checked' ? 'checked' : GRADES[grade]} ${gradeNote}`,
-    calibrationDueOn === null ? 'no calibration due date' : `calibration due ${formatDay(calibrationDueOn)}`,
+    calibrationDueOn === null
+      ? 'no calibration due date'
+      : `calibration ${isOverdue ? 'OVERDUE since' : 'due'} ${formatDay(calibrationDueOn)}`,
   ];
   return `${name} (${details.join(', ')})`;
+}
+
+function pointName({ label, band }: StatedPoint): string {
+  return band === null ? label : `${label}, ${band}`;
+}
+
+/** What was not read in this run, so that nobody takes it for a reading. */
+function originSentences({ points }: CertificateStatement): string[] {
+  const named = (origin: StatedPoint['origin']) =>
+    [...new Set(points.filter((point) => point.origin === origin).map(pointName))].join('; ');
+  const [history, computed] = [named('history'), named('computed')];
+  return [
+    ...(history === '' ? [] : [`Taken over from an earlier test sheet, not read in this run: ${history}.`]),
+    ...(computed === '' ? [] : [`Computed from other readings of this run: ${computed}.`]),
+  ];
 }
 
 function concessionSentences({ points }: CertificateStatement): string[] {
   return points
     .filter((point) => printedVerdict(point) === 'concession')
-    .map(({ label, band, text, limitText, concession }) => {
-      const what = band === null ? label : `${label}, ${band}`;
-      return `By concession of the owner: ${what}, ${text} where ${limitText} is asked. ${concession}`;
+    .map((point) => {
+      const { text, limitText, concession } = point;
+      return `By concession of the owner: ${pointName(point)}, ${text} where ${limitText} is asked. ${concession}`;
     });
 }
 
@@ -170,10 +193,15 @@ function drawWords(flow: Flow, statement: CertificateStatement): void {
   drawParagraph(flow, body([first]), 3, lead('Statement of conformity.'));
   for (const paragraph of others) drawParagraph(flow, body([paragraph]), 3);
   drawParagraph(flow, body(statement.notAssessed), 3);
-  const departures = [...statement.deviations, ...concessionSentences(statement)];
+  const departures = [
+    ...statement.deviations,
+    ...concessionSentences(statement),
+    ...originSentences(statement),
+  ];
   if (departures.length > 0) drawParagraph(flow, body(departures), 3, lead('Departures.'));
 
   flow.y += 2;
+  const testedOn = statement.testedAt.slice(0, 10);
   const small = (name: string, sentences: readonly string[]) => {
     const text = sentences.filter((sentence) => sentence !== '').join(' ');
     if (text === '') return;
@@ -181,7 +209,9 @@ function drawWords(flow: Flow, statement: CertificateStatement): void {
   };
   small('Decided by:', [statement.decisionRule, ...ruleSentences(statement.points)]);
   small('Measured with:', [
-    statement.instruments.length === 0 ? '' : `${statement.instruments.map(instrumentText).join('; ')}.`,
+    statement.instruments.length === 0
+      ? ''
+      : `${statement.instruments.map((each) => instrumentText(each, testedOn)).join('; ')}.`,
     statement.path === '' ? '' : `By way of ${statement.path}.`,
     'Figures are at the unit; what the meters showed is in the attached data.',
     `Computation ${statement.computationVersion}.`,
