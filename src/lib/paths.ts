@@ -36,6 +36,8 @@ export const paths = {
   newModel: () => '/works/models/new',
   worksModel: (slug: string, query: { show?: string; letter?: string } = {}) =>
     withQuery(`/works/models/${segment(slug)}`, query),
+  testPlan: (slug: string, letter: string) =>
+    `/works/models/${segment(slug)}/test-plans/${segment(letter.toLowerCase())}`,
   bomImport: (slug: string, fileId?: number) =>
     withQuery(`/works/models/${segment(slug)}/bom-import`, {
       file: fileId === undefined ? undefined : String(fileId),
@@ -99,6 +101,8 @@ export const paths = {
     boms: (slug: string) => `/api/models/${segment(slug)}/boms`,
     bomLine: (slug: string, letter: string, lineNo: number) =>
       `/api/models/${segment(slug)}/boms/${segment(letter)}/lines/${segment(lineNo)}`,
+    testPlans: (slug: string) => `/api/models/${segment(slug)}/test-plans`,
+    testPlan: (slug: string, letter: string) => `/api/models/${segment(slug)}/test-plans/${segment(letter)}`,
     releases: (slug: string) => `/api/models/${segment(slug)}/releases`,
     frequencyPlans: (slug: string) => `/api/models/${segment(slug)}/frequency-plans`,
     bomReading: () => '/api/bom-readings',
@@ -136,6 +140,7 @@ export const paths = {
     runClosing: (runId: number) => `/api/runs/${segment(runId)}/closing`,
     firstEquipment: () => '/api/equipment',
     wireReadings: () => '/api/bench/readings',
+    wireSweeps: () => '/api/bench/sweeps',
     instruments: () => '/api/instruments',
     instrumentRevisions: (id: number) => `/api/instruments/${segment(id)}/revisions`,
     signalPaths: () => '/api/paths',

@@ -1,5 +1,4 @@
 import { z } from 'zod';
-import { BAND_KEYS } from '~/domain/bench/bands';
 
 const revisionId = z.coerce.number().int().positive();
 const chosenRevision = z
@@ -66,37 +65,3 @@ export const runConditions = z.object({
 });
 
 export type RunConditions = z.infer<typeof runConditions>;
-
-const hintText = z
-  .string()
-  .trim()
-  .transform((text) => (text === '' ? undefined : text))
-  .optional();
-
-/** What goes with a sweep file; the hints are what the person answered about it. */
-export const sweepLoading = z.object({
-  file: z.instanceof(File, { message: 'Choose a sweep file.' }),
-  band: z.enum(BAND_KEYS as [(typeof BAND_KEYS)[number], ...typeof BAND_KEYS], { message: 'Choose a band.' }),
-  instrumentRevisionId: chosenRevision,
-  pathRevisionId: chosenRevision,
-  levelUnit: z
-    .enum(['', 'dBm', 'dBµV', 'dBmV', 'dBV', 'W', 'mW', 'V'])
-    .transform((unit) => (unit === '' ? undefined : unit))
-    .optional(),
-  freqUnit: z
-    .enum(['', 'Hz', 'kHz', 'MHz', 'GHz'])
-    .transform((unit) => (unit === '' ? undefined : unit))
-    .optional(),
-  levelColumn: z
-    .union([z.literal('').transform(() => undefined), z.coerce.number().int().nonnegative()])
-    .optional(),
-  /** kHz, as analysers show it. */
-  rbwKhz: z.union([z.literal('').transform(() => undefined), z.coerce.number().positive()]).optional(),
-  detector: hintText,
-  /** The person has looked at what was understood and says that it is right. */
-  understood: z.coerce.boolean().default(false),
-  attenuationHeld: z.coerce.boolean().default(false),
-});
-
-/** Largest sweep file, bytes. */
-export const MAX_SWEEP_BYTES = 16 * 1024 * 1024;

@@ -64,8 +64,10 @@ describe('analyseSweep', () => {
 
   it('corrects each harmonic by the path at its own frequency', () => {
     const path: PathSpec = {
+      direction: 'to_instrument',
       parts: [
         {
+          partNumber: null,
           name: 'Tap',
           loss: [
             [1e6, 40],

@@ -19,9 +19,9 @@ const CARRIER_NEAR = 0.03;
 const HIDDEN_DB = 6;
 /** Other peaks count from here over the floor, and within this of their limit, dB. */
 const OTHER_OVER_FLOOR_DB = 12;
-const OTHER_NEAR_LIMIT_DB = 20;
+export const NEAR_LIMIT_DB = 20;
 /** Left out around the carrier, Hz. */
-const CARRIER_SKIRT_HZ = 10e3;
+export const CARRIER_SKIRT_HZ = 10e3;
 
 /** What the analysis needs besides the sweep. */
 export interface SweepTest {
@@ -94,6 +94,11 @@ export function whyNoVerdict({ understood }: Sweep): string | null {
   return null;
 }
 
+/** Whether a carrier may be the one of a test, or belongs to another band. */
+export function sameCarrier(freqHz: number, testFreqHz: number, toleranceHz: number): boolean {
+  return Math.abs(freqHz - testFreqHz) <= Math.max(CARRIER_NEAR * testFreqHz, toleranceHz);
+}
+
 function findFundamental(
   peaks: readonly Peak[],
   floorDbm: number,
@@ -115,7 +120,7 @@ function findFundamental(
     if (peak.level < least) continue;
     if (Math.abs(peak.freqHz - testFreqHz) < Math.abs(nearest.freqHz - testFreqHz)) nearest = peak;
   }
-  if (Math.abs(nearest.freqHz - testFreqHz) > Math.max(CARRIER_NEAR * testFreqHz, toleranceHz)) {
+  if (!sameCarrier(nearest.freqHz, testFreqHz, toleranceHz)) {
     return refuse(
       `No carrier near ${formatFrequency(testFreqHz)}: the nearest strong signal is at ${formatFrequency(nearest.freqHz)}. ` +
         'Does the sweep belong to another band?',
@@ -261,7 +266,7 @@ export function analyseSweep(sweep: Sweep, test: SweepTest): SweepAnalysisResult
     .map((peak) => products.shown(peak))
     .filter((product) => {
       const limit = test.limitDbcAt?.(product.freqHz) ?? null;
-      return limit === null || product.unitDbc >= limit - OTHER_NEAR_LIMIT_DB;
+      return limit === null || product.unitDbc >= limit - NEAR_LIMIT_DB;
     })
     .sort((a, b) => b.unitDbc - a.unitDbc);
   return {

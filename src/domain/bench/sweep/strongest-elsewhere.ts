@@ -1,10 +1,9 @@
 import { MAX_HARMONIC } from '~/domain/bench/quantities';
+import { CARRIER_SKIRT_HZ, lineSpacing } from './analyse-sweep';
 import { strongestIn } from './peaks';
 import type { Peak } from './peaks';
 import type { Sweep } from './types';
 
-/** Left out around the carrier and at 0 Hz, Hz. */
-const SKIRT_HZ = 10e3;
 /** Left out around each harmonic, as a part of its frequency. */
 const HARMONIC_WINDOW = 0.01;
 
@@ -14,8 +13,8 @@ const HARMONIC_WINDOW = 0.01;
  */
 export function strongestElsewhere({ points, understood }: Sweep, carrierHz: number): Peak | null {
   const { freqHz, level } = points;
-  const spacing = Math.max(3 * (understood.rbwHz ?? 0), 1.5 * understood.stepHz);
-  const skirtHz = Math.max(SKIRT_HZ, spacing);
+  const spacing = lineSpacing(understood);
+  const skirtHz = Math.max(CARRIER_SKIRT_HZ, spacing);
   const [, highestHz] = understood.spanHz;
   let fromHz = Math.min(skirtHz, carrierHz / 2);
   let best: Peak | null = null;

@@ -15,8 +15,17 @@ export interface ReadReading extends Equipment {
   freqHz: number | null;
   atMost: boolean;
   attenuationHeld: boolean;
-  source: 'typed' | 'sweep';
+  source: 'typed' | 'sweep' | 'wire';
   sweepId: number | null;
+}
+
+/** Where a reading goes. */
+interface Place {
+  again: boolean;
+  /** The one that is corrected, where it is not the newest. */
+  corrects?: StoredReading | null;
+  /** Number of the last one of this point that was added since `before` was read. */
+  after?: number | undefined;
 }
 
 /** One reading as the ledger of changes shows it. */
@@ -29,7 +38,7 @@ export interface PutReading {
 }
 
 /**
- * Writes a reading of a point of a locked run: corrects the newest one, or adds the next.
+ * Writes a reading of a point of a locked run: corrects the newest one or the one given, or adds the next.
  *
  * @param before the run's readings
  */
@@ -38,9 +47,9 @@ export async function putReading(
   run: { id: number },
   point: TestPoint,
   before: readonly StoredReading[],
-  { again, ...read }: ReadReading & { again: boolean },
+  { again, corrects, after = 0, ...read }: ReadReading & Place,
 ): Promise<PutReading> {
-  const corrected = again ? undefined : newestReading(before, point.id);
+  const corrected = again ? undefined : (corrects ?? newestReading(before, point.id));
   const who = { at: w.now, byUserId: actingUserId(w) };
   if (corrected !== undefined) {
     const version = corrected.version + 1;
@@ -57,12 +66,12 @@ export async function putReading(
     };
   }
   const readingNo =
-    1 + Math.max(0, ...before.filter((one) => one.testPointId === point.id).map((one) => one.readingNo));
+    1 + Math.max(after, ...before.filter((one) => one.testPointId === point.id).map((one) => one.readingNo));
   const [{ insertId: readingId }] = await w.tx.insert(readings).values({
     testRunId: run.id,
     testPointId: point.id,
     readingNo,
-    quantityKey: point.quantityKey,
+    quantityKey: point.quantity.key,
     band: point.band,
     ...read,
     ...who,
