@@ -72,6 +72,7 @@ describe('how far a check is off', () => {
     expect(deviationOf(of, 5)).toBe(0);
     expect(deviationOf(of, 10)).toBeCloseTo(3.0103, 4);
     expect(deviationText(of, deviationOf(of, 2.5))).toBe('−3.01 dB');
+    expect(deviationText(of, -0.001)).toBe('0.00 dB');
   });
 
   it.each([

@@ -76,7 +76,8 @@ export function deviationText({ quantity }: Pick<Reference, 'quantity'>, deviati
     : quantity.unit === 'K'
       ? `${formatNumber(size, 1)} K`
       : formatValue(size, quantity).replace('+', '');
-  if (deviation === 0) return text;
+  // What is nothing in the digits shown has no sign.
+  if (!/[1-9]/.test(text)) return text;
   return `${deviation > 0 ? '+' : '\u2212'}${text}`;
 }
 

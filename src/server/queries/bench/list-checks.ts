@@ -36,11 +36,16 @@ export async function listChecks(reader: Reader, limit: number): Promise<ListedC
     const rules = referenceOf(reference, book);
     return {
       ...{ id: check.id, number: reference.number, name: reference.name, at: check.at, by },
-      entered: `${check.enteredText} ${check.enteredUnit}`.trim(),
+      entered: withUnit(check.enteredText, check.enteredUnit),
       value: formatValue(check.value, rules.quantity),
       deviation: deviationText(rules, check.deviation),
       isGood: check.isGood,
       explanation: check.explanation,
     };
   });
+}
+
+/** What was typed, with the unit it was taken in where none was typed. */
+function withUnit(text: string, unit: string): string {
+  return /[\p{L}%°]/u.test(text.replace(/e[+-]?\d+/i, '')) ? text : `${text} ${unit}`.trim();
 }
