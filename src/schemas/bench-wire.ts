@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { BAND_KEYS } from '~/domain/bench/bands';
 import type { BandKey } from '~/domain/bench/types';
 import { judgementSchema } from './bench-station';
+import { sweepLoading } from './bench-sweeps';
 
 /** So many readings go into one request. */
 const MOST_READINGS = 200;
@@ -97,6 +98,9 @@ export const wireReadings = z.preprocess(
     .max(MOST_READINGS, `At most ${String(MOST_READINGS)} readings in one request.`),
 );
 
+/** The point as it stands with all that was sent. Value and limits are in `unit`, U is in `uUnit`. */
+const judgement = judgementSchema.extend({ unit: z.string(), uUnit: z.string().nullable() });
+
 export const recordedReadings = z.object({
   readings: z.array(
     z.object({
@@ -107,10 +111,28 @@ export const recordedReadings = z.object({
       readingId: z.number().int(),
       readingNo: z.number().int(),
       version: z.number().int(),
-      /** The point as it stands with all that was sent. Value and limits are in `unit`, U is in `uUnit`. */
-      judgement: judgementSchema.extend({ unit: z.string(), uUnit: z.string().nullable() }),
+      judgement,
     }),
   ),
 });
 
 export type RecordedReadings = z.input<typeof recordedReadings>;
+
+/** A sweep file with the unit, instrument and path as they stand on the bench. */
+export const wireSweep = z.intersection(sweepLoading, z.object({ serial, instrument, path }));
+
+export type WireSweep = Pick<z.output<typeof wireSweep>, 'serial' | 'instrument' | 'path'>;
+
+export const recordedSweep = z.object({
+  serial: z.string(),
+  runNo: z.number().int(),
+  sweepId: z.number().int(),
+  band: z.string(),
+  /** So many readings were taken from it. */
+  readings: z.number().int(),
+  notes: z.array(z.string()),
+  /** Of every point on the band. */
+  judgements: z.array(judgement),
+});
+
+export type RecordedSweep = z.input<typeof recordedSweep>;
