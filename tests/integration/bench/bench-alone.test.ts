@@ -256,6 +256,7 @@ it('the way to the first certificate is known step by step', async () => {
     'test_plan.release',
     'model.draw_up',
     'instrument.create',
+    'path_part.create',
     'path.create',
     'bench.equip',
     'run.open',

@@ -1,11 +1,13 @@
 import { eq } from 'drizzle-orm';
-import type { InstrumentSpec, PathSpec, SpecHalfWidth } from '~/domain/bench/types';
+import { lossTableText } from '~/domain/bench/loss-table';
+import type { InstrumentSpec, SpecHalfWidth } from '~/domain/bench/types';
 import type { FirstEquipment } from '~/schemas/bench-alone';
-import { instruments, paths } from '~/server/db/schema';
+import { instruments, pathParts, paths } from '~/server/db/schema';
 import { nextNumber, write } from '~/server/write';
 import type { Ctx, WriteContext } from '~/server/write';
 import { createInstrument } from './create-instrument';
 import { createPath } from './create-path';
+import { createPathPart } from './create-path-part';
 
 /** Over which a loss that was given as one figure is taken to be the same, Hz. */
 const flatFromHz = 1e6;
@@ -24,17 +26,7 @@ export async function enterFirstEquipment(
       { number: await freeNumber(w, instruments, 'M'), name: input.name, spec: specOf(input) },
       w,
     );
-    const path =
-      input.attenuationDb === 0
-        ? null
-        : await createPath(
-            {
-              number: await freeNumber(w, paths, 'P'),
-              name: `${input.attenuationDb} dB before ${input.name}`.slice(0, 120),
-              spec: pathOf(input),
-            },
-            w,
-          );
+    const path = input.attenuationDb === 0 ? null : await buildPath(w, input);
     await w.record({
       action: 'bench.equip',
       subjects: [
@@ -46,11 +38,38 @@ export async function enterFirstEquipment(
   });
 }
 
+/** A path of one part, of which nothing is known but how much it attenuates. */
+async function buildPath(
+  w: WriteContext,
+  { name, attenuationDb, ratingW }: FirstEquipment,
+): Promise<{ pathId: number; number: string }> {
+  const part = await createPathPart(
+    {
+      number: await freeNumber(w, pathParts, 'A'),
+      name: `${attenuationDb} dB, taken as the same from 1 MHz to 1 GHz`,
+      lossTable: lossTableText([
+        [flatFromHz, attenuationDb],
+        [flatToHz, attenuationDb],
+      ]),
+      ...{ uncertaintyDb: 0, k: 2, flatnessDb: null, ratingW, vswr: null },
+    },
+    w,
+  );
+  return createPath(
+    {
+      number: await freeNumber(w, paths, 'P'),
+      name: `${attenuationDb} dB before ${name}`.slice(0, 120),
+      ...{ direction: 'to_instrument', parts: [part.number] },
+    },
+    w,
+  );
+}
+
 /** The next of the series that nobody has given to one of their own. */
 async function freeNumber(
   w: WriteContext,
-  table: typeof instruments | typeof paths,
-  prefix: 'M' | 'P',
+  table: typeof instruments | typeof paths | typeof pathParts,
+  prefix: 'M' | 'P' | 'A',
 ): Promise<string> {
   for (;;) {
     const number = `${prefix}-${await nextNumber(w.tx, `equipment:${prefix}`)}`;
@@ -86,22 +105,5 @@ function specOf(input: FirstEquipment): InstrumentSpec {
     detector: null,
     ownDistortionDbc: ownDistortionDb === null ? null : -ownDistortionDb,
     calibration: null,
-  };
-}
-
-function pathOf({ attenuationDb, ratingW }: FirstEquipment): PathSpec {
-  return {
-    direction: 'to_instrument',
-    parts: [
-      {
-        partNumber: null,
-        name: `${attenuationDb} dB, taken as the same from 1 MHz to 1 GHz`,
-        loss: [
-          [flatFromHz, attenuationDb],
-          [flatToHz, attenuationDb],
-        ],
-        ...{ uncertaintyDb: 0, k: 2, flatnessDb: null, ratingW, vswr: null },
-      },
-    ],
   };
 }
