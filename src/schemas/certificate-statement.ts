@@ -34,6 +34,7 @@ const pointSchema = z
     verdict: z.enum(['pass', 'too_close', 'fail', 'not_run']),
     concession: z.string().min(1).nullable(),
     origin: z.enum(['computed', 'history']).optional(),
+    condition: z.string().min(1).optional(),
   })
   .strict();
 

@@ -113,6 +113,17 @@ describe('what has to be said where it is so', () => {
     expect(text).toContain('Taken over from an earlier test sheet, not read in this run: Sensitivity, 40 m.');
   });
 
+  it('how a sensitivity was judged, and a supply that is not the run’s', async () => {
+    const points = [
+      ...buildBandPoints(),
+      buildPoint({ label: 'Sensitivity', quantityKey: 'sensitivity', condition: '10 dB (S+N)/N in 500 Hz' }),
+      buildPoint({ quantityKey: 'low', label: 'Power, flat cells', condition: 'supply 11.00 V' }),
+    ];
+    const text = await drawn({ points });
+    expect(text).toContain('Sensitivity, 40 m: 10 dB (S+N)/N in 500 Hz.');
+    expect(text).toContain('Power, flat cells, 40 m: supply 11.00 V.');
+  });
+
   it('what was not assessed', async () => {
     expect(await drawn()).toContain('Not assessed to EN 301 783.');
     expect(await drawn({ notAssessed: ['Harmonics above the 5th were not assessed.'] })).not.toContain(

@@ -52,6 +52,8 @@ export type StatedPoint = {
   concession: string | null;
   /** Where it was not read in this run: computed from other readings of it, or taken over from an old test sheet. */
   origin?: 'computed' | 'history' | undefined;
+  /** How it was read, in words: criterion and bandwidth of a sensitivity, a supply that is not the run's. */
+  condition?: string | undefined;
 };
 
 export type StatedInstrument = {

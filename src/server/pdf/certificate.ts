@@ -162,7 +162,7 @@ function instrumentText(
   return `${name} (${details.join(', ')})`;
 }
 
-function pointName({ label, band }: StatedPoint): string {
+function pointName({ label, band }: Pick<StatedPoint, 'label' | 'band'>): string {
   return band === null ? label : `${label}, ${band}`;
 }
 
@@ -175,6 +175,16 @@ function originSentences({ points }: CertificateStatement): string[] {
     ...(history === '' ? [] : [`Taken over from an earlier test sheet, not read in this run: ${history}.`]),
     ...(computed === '' ? [] : [`Computed from other readings of this run: ${computed}.`]),
   ];
+}
+
+/** How what was read, where the test plan says more than the quantity does. */
+function conditionSentences({ points }: CertificateStatement): string[] {
+  const conditions = new Map<string, string[]>();
+  for (const { condition, ...point } of points) {
+    if (condition === undefined) continue;
+    conditions.set(condition, [...(conditions.get(condition) ?? []), pointName(point)]);
+  }
+  return [...conditions].map(([condition, names]) => `${[...new Set(names)].join('; ')}: ${condition}.`);
 }
 
 function concessionSentences({ points }: CertificateStatement): string[] {
@@ -213,6 +223,7 @@ function drawWords(flow: Flow, statement: CertificateStatement): void {
       ? ''
       : `${statement.instruments.map((each) => instrumentText(each, testedOn)).join('; ')}.`,
     statement.path === '' ? '' : `By way of ${statement.path}.`,
+    ...conditionSentences(statement),
     'Figures are at the unit; what the meters showed is in the attached data.',
     `Computation ${statement.computationVersion}.`,
   ]);

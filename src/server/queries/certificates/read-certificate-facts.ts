@@ -1,4 +1,5 @@
-import { and, asc, eq, inArray } from 'drizzle-orm';
+import { and, asc, eq, inArray, isNull } from 'drizzle-orm';
+import { z } from 'zod';
 import { invariant } from '~/lib/invariant';
 import { pathSpecSchema } from '~/schemas/bench-specs';
 import type { Reader } from '~/server/db/client';
@@ -13,12 +14,15 @@ import {
   orders,
   pathRevisions,
   paths,
+  readings,
   reworks,
+  sweeps,
   testPlanRevisions,
   testRuns,
   units,
   userProfiles,
 } from '~/server/db/schema';
+import { asBand } from '~/server/queries/bench/read-run-sheet';
 
 /** What a certificate says about a run besides its readings. */
 export async function readCertificateFacts(reader: Reader, runId: number) {
@@ -93,4 +97,20 @@ export async function listUsedPaths(reader: Reader, revisionIds: number[]) {
     .where(inArray(pathRevisions.id, revisionIds))
     .orderBy(asc(paths.number));
   return rows.map(({ spec, ...row }) => ({ ...row, spec: pathSpecSchema.parse(spec) }));
+}
+
+const spanSchema = z.object({ understood: z.object({ spanHz: z.tuple([z.number(), z.number()]) }) });
+
+/** What the sweeps whose readings count covered of the spectrum, by band. */
+export async function listSweepSpans(reader: Reader, runId: number) {
+  const rows = await reader
+    .selectDistinct({ id: sweeps.id, band: sweeps.band, understood: sweeps.understood })
+    .from(sweeps)
+    .innerJoin(readings, and(eq(readings.sweepId, sweeps.id), isNull(readings.voidedAt)))
+    .where(eq(sweeps.testRunId, runId))
+    .orderBy(asc(sweeps.id));
+  return rows.map(({ band, understood }) => {
+    const [fromHz, toHz] = spanSchema.parse(understood).understood.spanHz;
+    return { band: asBand(band), fromHz, toHz };
+  });
 }
