@@ -27,6 +27,7 @@ export const pageRules: Readonly<Record<string, Rule>> = {
   '/works/models': everyStaff,
   '/works/models/new': staff(),
   '/works/models/[slug]': everyStaff,
+  '/works/models/[slug]/test-plans/[letter]': everyStaff,
   '/works/models/[slug]/bom-import': staff(),
   '/works/models/[slug]/frequency-plan': everyStaff,
   '/works/parts': everyStaff,

@@ -229,6 +229,7 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     '/works/models': { '': paths.worksModels() },
     '/works/models/new': { '': paths.newModel() },
     '/works/models/[slug]': { '': paths.worksModel(model.slug) },
+    '/works/models/[slug]/test-plans/[letter]': { '': paths.testPlan(model.slug, 'A') },
     '/works/models/[slug]/bom-import': { '': paths.bomImport(model.slug) },
     '/works/models/[slug]/frequency-plan': { '': paths.frequencyPlan(model.slug) },
     '/works/parts': { '': paths.stores() },

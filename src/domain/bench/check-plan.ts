@@ -75,8 +75,10 @@ function frequencyFaults(point: Point, quantities: QuantityBook, regions: readon
   const { band, freqHz, position } = point;
   if (band === null) return [];
   if (freqHz === null) {
-    const isRead = quantities.get(point.quantityKey)?.formula === null;
-    return isRead ? [`Point ${position}: a band needs its test frequency.`] : [];
+    const quantity = quantities.get(point.quantityKey);
+    const goesByIt =
+      quantity !== undefined && (quantity.path !== 'none' || quantity.format === 'frequency_error');
+    return goesByIt ? [`Point ${position}: a band needs its test frequency.`] : [];
   }
   const outside = regions.filter((region) => bandOf(freqHz, region) !== band);
   if (outside.length === 0) return [];

@@ -165,6 +165,7 @@ describe('build sheets and test plans', () => {
       testPlanRevisionId,
       quantityKey: 'rf_power',
       band: '40m',
+      freqHz: 7_030_000,
       limitRule: 'fixed',
       decision: 'guarded',
     } as const;

@@ -1,16 +1,16 @@
 import { and, asc, eq, ne } from 'drizzle-orm';
+import { planFaults } from '~/domain/bench/check-plan';
 import { checkBom } from '~/domain/planning/resolve-bom';
 import { checkBuildSheet, checkTestPlan } from '~/domain/production/check-revision';
+import { invariant } from '~/lib/invariant';
+import { outputStageSchema } from '~/schemas/bench-specs';
 import type { RevisionKind } from '~/schemas/production-models';
 import type { Tx } from '~/server/db/client';
-import {
-  bomRevisions,
-  buildSheetRevisions,
-  buildSteps,
-  testPlanRevisions,
-  testPoints,
-} from '~/server/db/schema';
+import { bomRevisions, buildSheetRevisions, buildSteps, testPlanRevisions } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
+import { listQuantities } from '~/server/queries/bench/list-quantities';
+import { listTestPoints } from '~/server/queries/bench/read-run-sheet';
+import { listRegionsOfModel } from '~/server/queries/bench/read-test-plan';
 import { listOptionGroups } from '~/server/queries/catalog/list-option-groups';
 import type { ShopOptionGroup } from '~/server/queries/catalog/list-option-groups';
 import { readBomLines } from '~/server/queries/production/read-bom';
@@ -61,20 +61,21 @@ export async function releaseBuildSheetRevision(input: Ask, ctx: Ctx): Promise<R
 /** As {@link releaseBomRevision}, for a test plan. */
 export async function releaseTestPlanRevision(input: Ask, ctx: Ctx): Promise<Released> {
   return release('test_plan', testPlanRevisions, input, ctx, async (tx, revisionId, groups) => {
-    const points = await tx
-      .select({
-        position: testPoints.position,
-        quantityKey: testPoints.quantityKey,
-        lower: testPoints.lowerLimit,
-        upper: testPoints.upperLimit,
-        limitRule: testPoints.limitRule,
-        condition: testPoints.condition,
-      })
-      .from(testPoints)
-      .where(eq(testPoints.testPlanRevisionId, revisionId))
-      .orderBy(asc(testPoints.position));
-    const checked = checkTestPlan(points, groups);
-    return checked.ok ? [] : checked.reasons;
+    const [revision] = await tx
+      .select({ modelId: testPlanRevisions.modelId, outputStage: testPlanRevisions.outputStage })
+      .from(testPlanRevisions)
+      .where(eq(testPlanRevisions.id, revisionId));
+    invariant(revision !== undefined, 'the revision is there');
+    const [quantities, read, regions] = [
+      await listQuantities(tx),
+      await listTestPoints(tx, revisionId),
+      await listRegionsOfModel(tx, revision.modelId),
+    ];
+    const points = read.map(({ quantity, ...point }) => ({ ...point, quantityKey: quantity.key }));
+    const checked = checkTestPlan(points, groups, quantities);
+    if (!checked.ok) return checked.reasons;
+    const outputStage = revision.outputStage === null ? null : outputStageSchema.parse(revision.outputStage);
+    return planFaults({ points, outputStage }, quantities, regions, groups);
   });
 }
 
