@@ -135,6 +135,30 @@ describe.each(callers)('as $who', ({ who, roles }) => {
   });
 });
 
+test(
+  'no door takes a form of another site, or one with a cookie and no origin',
+  { timeout: 300_000 },
+  async () => {
+    const { doors } = await listDoors();
+    const url = server?.url ?? '';
+    const wrong: string[] = [];
+    for (const { pattern, method } of doors.filter((door) => door.method !== 'GET')) {
+      const session = await openSession(userIds.get('the owner') ?? 0);
+      for (const origin of [{ origin: 'https://elsewhere.example' }, {}]) {
+        const response = await fetch(new URL(addressOf(pattern), url), {
+          method,
+          redirect: 'manual',
+          body: new URLSearchParams({ name: 'x' }),
+          headers: { cookie: `${session.name}=${session.value}`, ...origin },
+        });
+        const isRight = response.status === 403 && (await response.text()).includes('a page of another site');
+        if (!isRight) wrong.push(`${method} ${pattern}: ${response.status}`);
+      }
+    }
+    expect(wrong).toEqual([]);
+  },
+);
+
 describe('with an access token', () => {
   const bearing = (token: string) => ({ authorization: `Bearer ${token}` });
 

@@ -72,9 +72,9 @@ export const dispatchedFates: readonly Fate[] = [
 /** Sixteen units in their final tests. */
 export const testedFates: readonly Fate[] = [
   gone,
-  gone,
+  { ...gone, runs: [weakFilter, passes], remedies: [{ ...lowPassTurns, minutes: 30 }] },
   { ...gone, runs: [weakFilter, passes], remedies: [lowPassTurns] },
-  gone,
+  { ...gone, runs: [weakFilter, passes], remedies: [lowPassCapacitor] },
   { ...certified, end: 'packed' },
   certified,
   certified,
