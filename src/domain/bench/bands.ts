@@ -91,3 +91,12 @@ const REGION_BY_COUNTRY = new Map<string, Region>([
 export function regionOf(countryCode: string): Region | null {
   return REGION_BY_COUNTRY.get(countryCode.toUpperCase()) ?? null;
 }
+
+/**
+ * What a unit's destination leaves open, as a sentence; null where nothing is. A code that is in no table is judged by the
+ * rule for elsewhere, and in no Region are its bands' edges known.
+ */
+export function destinationNote(countryCode: string | null): string | null {
+  if (countryCode === null || regionOf(countryCode) !== null) return null;
+  return 'Its ITU Region is not known here: the rule for elsewhere applies, and band edges are not checked.';
+}

@@ -13,6 +13,7 @@ import {
   testRuns,
   units,
 } from '~/server/db/schema';
+import { readStation } from '~/server/queries/bench/read-station';
 import { closeRun } from '~/server/services/bench/close-run';
 import { openRun } from '~/server/services/bench/open-run';
 import { reviseInstrument } from '~/server/services/bench/revise-instrument';
@@ -166,6 +167,8 @@ describe('a reading that a script sends', () => {
     const [, other] = await accepted(await send([power, second]));
     expect(other?.judgement).toMatchObject({ verdict: 'pass' });
     expect(other?.judgement.ruleText).toContain('ITU');
+    const station = await readStation(database.db, runId);
+    expect(station?.limits.destination).toContain('band edges are not checked');
   });
 });
 
