@@ -1,10 +1,17 @@
+import { formatDay, isDay } from '~/lib/dates';
 import { formatFrequency, formatNumber, formatPower } from './format';
+import { pathLoss } from './paths';
 import type { InstrumentSpec, PathPart, PathSpec } from './types';
 
-/** `checked against the works' reference, 1 March 2027`: the grade as a certificate words it. */
+/** `checked against MM-1, 1 March 2027`: the grade as the pages word it. */
 export function gradeText({ grade, checkedAgainst }: InstrumentSpec): string {
   if (grade === 'accredited') return 'accredited';
-  if (grade === 'checked') return `checked against ${checkedAgainst ?? 'another'}`;
+  if (grade === 'checked') {
+    const against = (checkedAgainst ?? 'another').replace(/\d{4}-\d{2}-\d{2}$/, (day) =>
+      isDay(day) ? formatDay(day) : day,
+    );
+    return `checked against ${against}`;
+  }
   return 'unchecked: specification alone';
 }
 
@@ -23,14 +30,17 @@ export function calibrationWords({ calibration }: InstrumentSpec): string {
 
 /** The parts in order. */
 export function partsText({ parts }: PathSpec): string {
-  return parts.length === 0 ? 'straight in' : parts.map(({ name }) => name).join(', ');
+  return parts.length === 0 ? 'straight in' : parts.map(({ name }) => name).join('; ');
 }
 
-/** The loss of the whole path where its tables begin, as an idea of it. */
-export function lossText({ parts }: PathSpec): string {
-  const first = Math.max(0, ...parts.map(({ loss }) => loss[0]?.[0] ?? 0));
-  const lossDb = parts.reduce((sum, { loss }) => sum + (loss[0]?.[1] ?? 0), 0);
-  return parts.length === 0 ? '0 dB' : `${formatNumber(lossDb, 1)} dB from ${formatFrequency(first)}`;
+/** The loss of the whole path at the lowest frequency that all its tables have, as an idea of it. */
+export function lossText(path: PathSpec): string {
+  if (path.parts.length === 0) return '0 dB';
+  const first = Math.max(...path.parts.map(({ loss }) => loss[0]?.[0] ?? 0));
+  const loss = pathLoss(path, first);
+  return loss.ok
+    ? `${formatNumber(loss.lossDb, 1)} dB at ${formatFrequency(first)}`
+    : 'none: the tables do not meet';
 }
 
 /** Which way a path leads. */

@@ -4,6 +4,13 @@ import { door } from '~/server/door';
 import { staff } from '~/server/rules';
 import { recordDailyCheck } from '~/server/services/bench/record-daily-check';
 
+function inDoubt(flagged: number): string {
+  if (flagged === 0) return 'No run was closed since it was last good.';
+  return flagged === 1
+    ? 'One run closed since it was last good is flagged for the owner.'
+    : `${flagged} runs closed since it was last good are flagged for the owner.`;
+}
+
 export const POST = door({
   rule: staff('tester'),
   summary: 'Write down what a reference of the daily check reads',
@@ -18,7 +25,6 @@ export const POST = door({
   said: ({ number, isGood, deviation, flagged }) =>
     isGood
       ? `${number} is inside its band, off by ${deviation}.`
-      : `${number} is outside its band, off by ${deviation}: no run can be closed until it is explained. ` +
-        `${flagged === 1 ? '1 run is' : `${flagged} runs are`} flagged for the owner.`,
+      : `Written down: ${number} is off by ${deviation}, outside its band. ${inDoubt(flagged)}`,
   run: ({ input, ctx }) => recordDailyCheck(input, ctx),
 });

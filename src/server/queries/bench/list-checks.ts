@@ -47,5 +47,6 @@ export async function listChecks(reader: Reader, limit: number): Promise<ListedC
 
 /** What was typed, with the unit it was taken in where none was typed. */
 function withUnit(text: string, unit: string): string {
-  return /[\p{L}%°]/u.test(text.replace(/e[+-]?\d+/i, '')) ? text : `${text} ${unit}`.trim();
+  const shown = text.replace(/^-/, '\u2212');
+  return /[\p{L}%°]/u.test(text.replace(/e[+-]?\d+/i, '')) ? shown : `${shown} ${unit}`.trim();
 }
