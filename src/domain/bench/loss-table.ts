@@ -1,6 +1,6 @@
 import { FREQ_UNITS, freqUnitOf, rowProblem } from './loss-rows';
 import type { FreqUnit, LossReading } from './loss-rows';
-import { decodeText } from './sweep/decode';
+import { decodeText } from '~/domain/bench/sweep/decode';
 import { readTouchstone } from './touchstone';
 
 /** Where frequency and loss stand in a line, and how they are to be taken. */

@@ -3,7 +3,7 @@ import { paths } from '~/lib/paths';
 import { MAX_CALIBRATION_BYTES, newInstrument } from '~/schemas/bench-equipment';
 import { instrumentSpecSchema } from '~/schemas/bench-specs';
 import { door } from '~/server/door';
-import { sentFile } from '~/server/files/sent-file';
+import { sentFile } from '~/lib/sent-file';
 import { listInstruments } from '~/server/queries/bench/list-equipment';
 import { staff } from '~/server/rules';
 import { createInstrument } from '~/server/services/bench/create-instrument';

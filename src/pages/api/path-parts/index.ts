@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { paths } from '~/lib/paths';
 import { MAX_LOSS_BYTES, newPathPart } from '~/schemas/bench-equipment';
 import { door } from '~/server/door';
-import { sentFile } from '~/server/files/sent-file';
+import { sentFile } from '~/lib/sent-file';
 import { staff } from '~/server/rules';
 import { createPathPart } from '~/server/services/bench/create-path-part';
 

@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { paths } from '~/lib/paths';
 import { instrumentRevision, MAX_CALIBRATION_BYTES } from '~/schemas/bench-equipment';
 import { door } from '~/server/door';
-import { sentFile } from '~/server/files/sent-file';
+import { sentFile } from '~/lib/sent-file';
 import { staff } from '~/server/rules';
 import { reviseInstrument } from '~/server/services/bench/revise-instrument';
 

@@ -3,7 +3,7 @@ import { listed } from '~/lib/listed';
 import { paths } from '~/lib/paths';
 import { MAX_LOSS_BYTES, pathPartRevision } from '~/schemas/bench-equipment';
 import { door } from '~/server/door';
-import { sentFile } from '~/server/files/sent-file';
+import { sentFile } from '~/lib/sent-file';
 import { staff } from '~/server/rules';
 import { revisePathPart } from '~/server/services/bench/revise-path-part';
 
