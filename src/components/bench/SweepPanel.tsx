@@ -1,23 +1,24 @@
-import { useMutation } from '@tanstack/react-query';
-import { useRef, useState } from 'react';
+import { useState } from 'react';
 import type { RefObject } from 'react';
 import { Button } from '~/components/ui/Button';
-import { Checkbox } from '~/components/ui/Checkbox';
-import { Field } from '~/components/ui/Field';
-import { Notice } from '~/components/ui/Notice';
-import { Select } from '~/components/ui/Select';
+import { formatFrequency } from '~/domain/bench/format';
 import type { PointJudgement } from '~/domain/bench/judge-point';
-import { paths } from '~/lib/paths';
-import type { Station } from '~/schemas/bench-station';
+import type { Station, StationSweep } from '~/schemas/bench-station';
 import { asBandLabel } from './run-sheet';
-import { Refused, send } from './send';
+import type { Equipment } from './run-sheet';
+import { limitsOn } from './sweep-limits';
+import { SweepLook } from './SweepLook';
 import { SweepPlot } from './SweepPlot';
+import { SweepTable } from './SweepTable';
 import type { Chosen } from './use-equipment';
+import { isAcceptable, useSweepLooks } from './use-sweep-looks';
+import type { PendingSweep } from './use-sweep-looks';
 
 interface Props {
   station: Station;
   judgements: ReadonlyMap<number, PointJudgement>;
-  /** The band in hand, for which a sweep is loaded. */
+  equipment: Equipment;
+  /** The band in hand, whose sweep is shown. */
   band: string | null;
   chosen: Chosen;
   editable: boolean;
@@ -26,37 +27,19 @@ interface Props {
   onRead: () => Promise<unknown>;
 }
 
-const levelUnits = ['dBm', 'dBµV', 'dBmV', 'dBV', 'W', 'mW', 'V'].map((value) => ({ value, label: value }));
-
-/** The sweep of the band in hand: dropped or chosen, asked about, drawn. */
-export function SweepPanel({ station, judgements, band, chosen, editable, fileInput, onRead }: Props) {
-  const [file, setFile] = useState<File | null>(null);
+/** Sweeps of the run: dropped or chosen, looked at, accepted, and drawn with what they came to. */
+export function SweepPanel(props: Props) {
+  const { station, judgements, equipment, band, chosen, editable, fileInput, onRead } = props;
+  const looks = useSweepLooks(station.run.id, onRead);
   const [isOver, setIsOver] = useState(false);
-  const form = useRef<HTMLFormElement>(null);
-  const shown = station.sweeps.find((sweep) => sweep.band === band) ?? station.sweeps[0];
+  const { pending, shown } = looks;
+  const kept = station.sweeps.find((sweep) => sweep.band === band) ?? station.sweeps[0];
+  const bands = [...new Set(station.sheet.points.flatMap((point) => point.band ?? []))];
+  const ready = pending.filter(isAcceptable);
 
-  const reading = useMutation({
-    mutationFn: (body: FormData) => send(paths.api.sweeps(station.run.id), body, crypto.randomUUID()),
-    onSuccess: async () => {
-      setFile(null);
-      if (fileInput.current !== null) fileInput.current.value = '';
-      await onRead();
-    },
-  });
-
-  const read = (sweepFile: File): void => {
-    if (band === null || !editable) return;
-    setFile(sweepFile);
-    const body = form.current === null ? new FormData() : new FormData(form.current);
-    body.set('file', sweepFile);
-    body.set('band', band);
-    body.set('instrumentRevisionId', String(chosen.instrumentRevisionId ?? ''));
-    body.set('pathRevisionId', String(chosen.pathRevisionId ?? ''));
-    reading.mutate(body);
+  const take = (files: FileList | null): void => {
+    if (editable && files !== null && files.length > 0) looks.add([...files], chosen);
   };
-
-  const refusal = reading.error instanceof Refused ? reading.error.refusal : null;
-  const asked = file !== null && reading.isError;
   return (
     <section
       className={`sheet mt-5 ${isOver ? 'bench-drop' : ''}`}
@@ -70,92 +53,120 @@ export function SweepPanel({ station, judgements, band, chosen, editable, fileIn
       onDrop={(event) => {
         event.preventDefault();
         setIsOver(false);
-        const [dropped] = event.dataTransfer.files;
-        if (dropped !== undefined) read(dropped);
+        take(event.dataTransfer.files);
       }}
     >
       <input
         ref={fileInput}
         type="file"
+        multiple
         className="sr-only"
         tabIndex={-1}
-        aria-label="Sweep file"
+        aria-label="Sweep files"
         accept=".csv,.txt,.tsv,.dat,.trc,text/*"
         onChange={(event) => {
-          const [picked] = event.currentTarget.files ?? [];
-          if (picked !== undefined) read(picked);
+          take(event.currentTarget.files);
+          event.currentTarget.value = '';
         }}
       />
-      {reading.isPending && <p role="status">Reading {file?.name}.</p>}
-      {asked && (
-        <div className="mb-4 grid gap-3">
-          <Notice tone="stop" title={`“${file.name}” was not read, and nothing was stored`}>
-            {refusal?.detail ?? 'The server did not answer. Try again.'}
-          </Notice>
-          <form
-            ref={form}
-            className="grid gap-3 sm:grid-cols-2"
-            onSubmit={(event) => {
-              event.preventDefault();
-              read(file);
-            }}
-          >
-            <Select
-              name="levelUnit"
-              label="Unit of the level"
-              placeholder="as in the file"
-              options={levelUnits}
-            />
-            <Select
-              name="freqUnit"
-              label="Unit of the frequency"
-              placeholder="as in the file"
-              options={['Hz', 'kHz', 'MHz', 'GHz'].map((value) => ({ value, label: value }))}
-            />
-            <Field name="rbwKhz" label="Resolution bandwidth" unit="kHz" inputMode="decimal" mono />
-            <Select
-              name="detector"
-              label="Detector"
-              placeholder="as in the file"
-              options={[
-                { value: 'positive peak', label: 'peak' },
-                { value: 'sample', label: 'sample' },
-                { value: 'average', label: 'average' },
-              ]}
-            />
-            <Field
-              name="levelColumn"
-              label="Column of the level"
-              hint="Counted from 0, where the file has several traces"
-              inputMode="numeric"
-              mono
-            />
-            <Checkbox name="understood" value="yes" label="What was understood is right" />
-            <p className="flex flex-wrap gap-3 sm:col-span-2">
-              <Button kind="outlined">Read the sweep again</Button>
-              <Button
-                kind="link"
-                type="button"
-                onClick={() => {
-                  setFile(null);
-                  reading.reset();
-                }}
-              >
-                Leave it
-              </Button>
-            </p>
-          </form>
+      {pending.length > 1 && (
+        <div className="mb-4 flex flex-wrap items-center gap-3">
+          <Waiting pending={pending} shownId={shown?.id} onShow={looks.show} />
+          {ready.length > 1 && (
+            <Button kind="outlined" type="button" onClick={() => void looks.accept(ready)}>
+              Accept all {ready.length}
+            </Button>
+          )}
         </div>
       )}
-      {shown === undefined ? (
+      {shown !== undefined && (
+        <SweepLook
+          key={shown.id}
+          sweep={shown}
+          {...{ bands, equipment }}
+          limitAt={limitsOn(shown.look?.band ?? null, station, judgements)}
+          onCorrect={(fields) => looks.correct(shown.id, fields)}
+          onAccept={() => void looks.accept([shown])}
+          onLeave={() => looks.leave(shown.id)}
+        />
+      )}
+      {shown === undefined && kept === undefined && (
         <p className="text-ink-2">
           {editable
-            ? `No sweep yet. Drop a spectrum file here for ${band === null ? 'a band' : asBandLabel(band)}, or load one above: its harmonics fill the row.`
+            ? 'No sweep yet. Drop spectrum files here, one a band, or load them above: each is shown before anything is kept.'
             : 'No sweep was read into this run.'}
         </p>
-      ) : (
-        <SweepPlot sweep={shown} station={station} judgements={judgements} />
       )}
+      {shown === undefined && kept !== undefined && <KeptSweep sweep={kept} {...{ station, judgements }} />}
     </section>
+  );
+}
+
+/** Files that wait, each with the band it was told to be of. */
+function Waiting({
+  pending,
+  shownId,
+  onShow,
+}: {
+  pending: readonly PendingSweep[];
+  shownId: number | undefined;
+  onShow: (id: number) => void;
+}) {
+  return (
+    <ul className="flex flex-wrap gap-x-4" aria-label="Files that wait">
+      {pending.map((each) => (
+        <li key={each.id}>
+          <button
+            type="button"
+            aria-current={each.id === shownId ? 'true' : undefined}
+            className={`min-h-(--control) border-b-3 px-1 ${each.id === shownId ? 'border-copper font-semibold' : 'border-transparent'}`}
+            onClick={() => onShow(each.id)}
+          >
+            {each.file.name} · {stateOf(each)}
+          </button>
+        </li>
+      ))}
+    </ul>
+  );
+}
+
+function stateOf(sweep: PendingSweep): string {
+  if (sweep.isBusy) return 'being read';
+  if (sweep.look === null) return 'no sweep';
+  if (sweep.look.band === null) return 'no band';
+  const band = asBandLabel(sweep.look.band);
+  if (sweep.look.refusal !== null) return `${band}, not to be accepted`;
+  return isAcceptable(sweep) ? `${band}, ready` : `${band}, asks`;
+}
+
+function KeptSweep({
+  sweep,
+  station,
+  judgements,
+}: {
+  sweep: StationSweep;
+  station: Station;
+  judgements: ReadonlyMap<number, PointJudgement>;
+}) {
+  const { understood, analysis, notes } = sweep;
+  const limitAt = limitsOn(sweep.band, station, judgements);
+  const facts = [
+    sweep.fileName,
+    understood.rbwHz === null ? 'RBW not known' : `RBW ${formatFrequency(understood.rbwHz)}`,
+    `${understood.points.toLocaleString('en')} points`,
+  ].join(' · ');
+  return (
+    <>
+      <SweepPlot title={`Sweep, ${asBandLabel(sweep.band)}`} {...{ facts, sweep, limitAt }} />
+      <details className="mt-2">
+        <summary className="font-semibold">The sweep as a table</summary>
+        <SweepTable {...{ analysis, limitAt }} />
+      </details>
+      {notes.map((note) => (
+        <p key={note} className="quiet">
+          {note}
+        </p>
+      ))}
+    </>
   );
 }

@@ -1,48 +1,69 @@
-import { formatDbm, formatFrequency, formatNumber } from '~/domain/bench/format';
-import type { PointJudgement } from '~/domain/bench/judge-point';
-import { limitDbc } from '~/domain/bench/limit-rules';
-import { quantityOf } from '~/domain/bench/quantities';
-import type { Station, StationSweep } from '~/schemas/bench-station';
-import { asBandLabel } from './run-sheet';
+import { formatFrequency, formatNumber } from '~/domain/bench/format';
+import { ordinal } from '~/domain/bench/plan-products';
+import type { DrawnSweep } from '~/schemas/bench-sweeps';
+import { placeLabels } from './sweep-labels';
+import type { PlotLabel } from './sweep-labels';
+import type { LimitAt } from './sweep-limits';
 
 interface Props {
-  sweep: StationSweep;
-  station: Station;
-  judgements: ReadonlyMap<number, PointJudgement>;
+  title: string;
+  /** What is known of the sweep, beside its title. */
+  facts: string;
+  sweep: Pick<DrawnSweep, 'understood' | 'trace'> & { analysis: DrawnSweep['analysis'] | null };
+  limitAt: LimitAt;
 }
 
 const width = 720;
-const height = 250;
+const height = 270;
 const left = 62;
 const right = 8;
 const top = 14;
 const bottom = 26;
+/** Names that are lettered; all stand in the table. */
+const letteredOrders = 5;
+const letteredProducts = 6;
+const longestName = 24;
 
-/** A sweep as a picture, with its harmonics and its limit, and as a table. */
-export function SweepPlot({ sweep, station, judgements }: Props) {
-  const { understood, analysis, trace, band } = sweep;
+const fills = {
+  patina: 'fill-patina',
+  copper: 'fill-copper',
+  stop: 'fill-stop',
+  slate: 'fill-slate',
+} as const;
+
+/** A sweep as a picture: trace, harmonics, named products, limit and noise floor. */
+export function SweepPlot({ title, facts, sweep, limitAt }: Props) {
+  const { understood, analysis, trace } = sweep;
   const [lowHz, highHz] = understood.spanHz;
-  const floor = Math.min(-80, ...trace.map(([, dbc]) => dbc));
-  const lowest = Math.floor(floor / 20) * 20;
+  const lowest = Math.floor(Math.min(-80, ...trace.map(([, db]) => db)) / 20) * 20;
   const x = (freqHz: number) => left + ((freqHz - lowHz) / (highHz - lowHz)) * (width - left - right);
-  const y = (dbc: number) => top + (Math.min(0, Math.max(lowest, dbc)) / lowest) * (height - top - bottom);
+  const y = (db: number) => top + (Math.min(0, Math.max(lowest, db)) / lowest) * (height - top - bottom);
   const levels = Array.from({ length: Math.round(-lowest / 20) + 1 }, (_, index) => -20 * index);
-  const limits = limitLine(sweep, station, judgements);
+  const limits = analysis === null ? [] : limitLine(lowHz, highHz, limitAt);
   // Lettered between the carrier and its second harmonic, where nothing else stands.
   const lettered = limits[Math.floor(limits.length / 4)];
-  const drawn = analysis.harmonics.filter(({ order, freqHz }) => order <= 5 && freqHz <= highHz);
-  const title = `Sweep, ${asBandLabel(band)}`;
+  const floorDb = analysis === null ? null : analysis.noiseFloorDbm - analysis.fundamental.levelDbm;
+  const at = (freqHz: number, db: number) => ({ x: x(freqHz), y: y(db) });
+  const lines: PlotLabel[] = [];
+  if (lettered !== undefined) {
+    const text = `limit ${formatNumber(lettered[1], 1)}`;
+    lines.push({ ...at(...lettered), key: 'limit', text, tone: 'stop', isMarked: false });
+  }
+  if (floorDb !== null) {
+    const text = `floor ${formatNumber(floorDb, 1)}`;
+    lines.push({ ...at(highHz, floorDb - 12), key: 'floor', text, tone: 'slate', isMarked: false });
+  }
+  const placed = placeLabels([...lines, ...labelsOf(analysis, at, highHz)], {
+    left,
+    right: width - right,
+    top: top - 8,
+    bottom: height - bottom,
+  });
   return (
     <figure>
       <figcaption className="mb-2 flex flex-wrap items-baseline justify-between gap-x-4">
         <span className="font-head text-[1.1875rem] font-bold">{title}</span>
-        <span className="quiet">
-          {[
-            sweep.fileName,
-            understood.rbwHz === null ? 'RBW not known' : `RBW ${formatFrequency(understood.rbwHz)}`,
-            `${understood.points.toLocaleString('en')} points`,
-          ].join(' · ')}
-        </span>
+        <span className="quiet">{facts}</span>
       </figcaption>
       <svg
         viewBox={`0 0 ${width} ${height}`}
@@ -51,166 +72,115 @@ export function SweepPlot({ sweep, station, judgements }: Props) {
         aria-label={`${title}: the table below says the same`}
         className="sweep-plot block"
       >
-        {levels.map((dbc) => (
-          <g key={dbc}>
+        {levels.map((db) => (
+          <g key={db}>
             <line
               x1={left}
               x2={width - right}
-              y1={y(dbc)}
-              y2={y(dbc)}
+              y1={y(db)}
+              y2={y(db)}
               className="stroke-rule"
               strokeWidth="1"
             />
-            {dbc % 40 === 0 && (
-              <text x={left - 8} y={y(dbc) + 4} textAnchor="end" className="fill-ink-2">
-                {dbc === 0 ? '0 dBc' : formatNumber(dbc, 0)}
+            {db % 40 === 0 && (
+              <text x={left - 8} y={y(db) + 4} textAnchor="end" className="fill-ink-2">
+                {db === 0 ? (analysis === null ? '0 dB' : '0 dBc') : formatNumber(db, 0)}
               </text>
             )}
           </g>
         ))}
         {ticks(lowHz, highHz).map((freqHz) => (
           <text key={freqHz} x={x(freqHz)} y={height - 6} textAnchor="middle" className="fill-ink-2">
-            {formatNumber(freqHz / 1e6, 0)}
+            {formatNumber(freqHz / 1e6, highHz - lowHz < 5e6 ? 2 : 0)}
           </text>
         ))}
         <text x={width - right} y={height - 6} textAnchor="end" className="fill-ink-2">
           MHz
         </text>
-        <polyline
-          points={trace.map(([freqHz, dbc]) => `${round(x(freqHz))},${round(y(dbc))}`).join(' ')}
-          fill="none"
-          className="stroke-ink"
-          strokeWidth="1.5"
-        />
-        {lettered !== undefined && (
-          <>
-            <polyline
-              points={limits.map(([freqHz, dbc]) => `${round(x(freqHz))},${round(y(dbc))}`).join(' ')}
-              fill="none"
-              className="stroke-stop"
-              strokeWidth="2"
-              strokeDasharray="7 5"
-            />
-            <text x={x(lettered[0]) + 4} y={y(lettered[1]) - 8} textAnchor="middle" className="fill-stop">
-              limit {formatNumber(lettered[1], 1)}
-            </text>
-          </>
+        {floorDb !== null && (
+          <line
+            x1={left}
+            x2={width - right}
+            y1={y(floorDb)}
+            y2={y(floorDb)}
+            className="stroke-slate"
+            strokeWidth="1.5"
+            strokeDasharray="2 4"
+          />
         )}
-        {drawn.map(({ order, freqHz, meterDbc, unitDbc, atMost }) => (
-          <text
-            key={order}
-            x={x(freqHz) + 5}
-            y={Math.max(top + 10, y(meterDbc) - (x(freqHz) > width - 110 ? 21 : 5))}
-            textAnchor={x(freqHz) > width - 110 ? 'end' : 'start'}
-            paintOrder="stroke"
-            strokeWidth="4"
-            className="fill-patina stroke-sheet font-semibold"
-          >
-            {nameOf(order)} {atMost ? '≤ ' : ''}
-            {formatNumber(unitDbc, 1)}
-          </text>
+        <polyline points={pathOf(trace, x, y)} fill="none" className="stroke-ink" strokeWidth="1.5" />
+        {limits.length > 0 && (
+          <polyline
+            points={pathOf(limits, x, y)}
+            fill="none"
+            className="stroke-stop"
+            strokeWidth="2"
+            strokeDasharray="7 5"
+          />
+        )}
+        {placed.map((label) => (
+          <g key={label.key}>
+            {label.isMarked && <circle cx={label.x} cy={label.y} r="3.5" className={fills[label.tone]} />}
+            <text
+              x={label.left}
+              y={label.top}
+              paintOrder="stroke"
+              strokeWidth="4"
+              className={`${fills[label.tone]} stroke-sheet ${label.isMarked ? 'font-semibold' : ''}`}
+            >
+              {label.text}
+            </text>
+          </g>
         ))}
       </svg>
-      <details className="mt-2">
-        <summary className="font-semibold">The sweep as a table</summary>
-        <Products sweep={sweep} limits={limits} />
-      </details>
-      {sweep.notes.map((note) => (
-        <p key={note} className="quiet">
-          {note}
-        </p>
-      ))}
     </figure>
   );
 }
 
-function Products({ sweep, limits }: { sweep: StationSweep; limits: [number, number][] }) {
-  const { fundamental, harmonics, others, notCovered, noiseFloorDbm } = sweep.analysis;
-  const rows = [
-    ...harmonics.map((each) => ({ ...each, name: `${nameOf(each.order)} harmonic` })),
-    ...others.map((each) => ({ ...each, atMost: false, name: 'other' })),
-  ];
-  return (
-    <div className="table-frame mt-2" role="region" aria-label="Products of the sweep" tabIndex={0}>
-      <table className="table">
-        <caption className="sr-only">Products of the sweep</caption>
-        <thead>
-          <tr>
-            <th scope="col">Product</th>
-            <th scope="col" className="num">
-              Frequency
-            </th>
-            <th scope="col" className="num">
-              At the meter
-            </th>
-            <th scope="col" className="num">
-              At the unit
-            </th>
-            <th scope="col" className="num">
-              Limit
-            </th>
-          </tr>
-        </thead>
-        <tbody>
-          <tr>
-            <th scope="row">carrier</th>
-            <td className="num">{formatFrequency(fundamental.freqHz)}</td>
-            <td className="num">{formatDbm(fundamental.levelDbm)}</td>
-            <td className="num">{formatDbm(fundamental.unitDbm)}</td>
-            <td className="num" />
-          </tr>
-          {rows.map(({ name, freqHz, meterDbc, unitDbc, atMost }) => (
-            <tr key={`${name} ${freqHz}`}>
-              <th scope="row">{name}</th>
-              <td className="num">{formatFrequency(freqHz)}</td>
-              <td className="num">
-                {atMost ? '≤ ' : ''}
-                {formatNumber(meterDbc, 1)} dBc
-              </td>
-              <td className="num">
-                {atMost ? '≤ ' : ''}
-                {formatNumber(unitDbc, 1)} dBc
-              </td>
-              <td className="num">{limitAt(limits, freqHz)}</td>
-            </tr>
-          ))}
-        </tbody>
-      </table>
-      <p className="quiet">
-        Noise floor {formatDbm(noiseFloorDbm)} at the meter.
-        {notCovered.length > 0 && ` Not covered: ${notCovered.map(({ order }) => nameOf(order)).join(', ')}.`}
-      </p>
-    </div>
-  );
+function labelsOf(
+  analysis: DrawnSweep['analysis'] | null,
+  at: (freqHz: number, db: number) => { x: number; y: number },
+  highHz: number,
+): PlotLabel[] {
+  if (analysis === null) return [];
+  const harmonics = analysis.harmonics
+    .filter(({ order, freqHz }) => order <= letteredOrders && freqHz <= highHz)
+    .map(({ order, freqHz, meterDbc, unitDbc, atMost }) => ({
+      ...at(freqHz, meterDbc),
+      key: `harmonic ${order}`,
+      text: `${ordinal(order)} ${atMost ? '≤ ' : ''}${formatNumber(unitDbc, 1)}`,
+      ...{ tone: 'patina' as const, isMarked: true },
+    }));
+  const others = analysis.others.slice(0, letteredProducts).map(({ name, kind, freqHz, meterDbc }) => ({
+    ...at(freqHz, meterDbc),
+    key: `other ${freqHz}`,
+    text: kind === 'unexplained' ? `${formatFrequency(freqHz)}?` : shorten(name),
+    ...{ tone: 'copper' as const, isMarked: true },
+  }));
+  return [...harmonics, ...others];
 }
 
-/** The limit over the span, by the power measured on this band; empty while that is not known. */
-function limitLine(
-  { band, understood }: StationSweep,
-  { sheet }: Station,
-  judgements: ReadonlyMap<number, PointJudgement>,
-): [number, number][] {
-  const power = sheet.points.find((point) => point.band === band && point.quantityKey === 'rf_power');
-  const powerW = power === undefined ? null : (judgements.get(power.id)?.value ?? null);
-  const txFreqHz = power?.freqHz ?? null;
-  if (powerW === null || txFreqHz === null) return [];
-  const [lowHz, highHz] = understood.spanHz;
+function shorten(name: string): string {
+  return name.length <= longestName ? name : `${name.slice(0, longestName - 1)}…`;
+}
+
+function pathOf(
+  points: readonly (readonly [number, number])[],
+  x: (freqHz: number) => number,
+  y: (db: number) => number,
+): string {
+  return points.map(([freqHz, db]) => `${round(x(freqHz))},${round(y(db))}`).join(' ');
+}
+
+/** The limit over the span; empty where the rule says none. */
+function limitLine(lowHz: number, highHz: number, limitAt: LimitAt): [number, number][] {
   const steps = 120;
   return Array.from({ length: steps + 1 }, (_, index) => lowHz + ((highHz - lowHz) * index) / steps).flatMap(
-    (productFreqHz): [number, number][] => {
-      const limit = limitDbc(sheet.ruleKey, { powerW, txFreqHz, productFreqHz });
-      return limit.ok ? [[productFreqHz, limit.limitDbc]] : [];
+    (freqHz): [number, number][] => {
+      const limit = limitAt(freqHz);
+      return limit === null ? [] : [[freqHz, limit]];
     },
   );
-}
-
-function limitAt(limits: [number, number][], freqHz: number): string {
-  const found = limits.find(([at]) => at >= freqHz);
-  return found === undefined ? '' : `${formatNumber(found[1], 1)} dBc`;
-}
-
-function nameOf(order: number): string {
-  return quantityOf(`harmonic_${order}`)?.label.split(' ')[0] ?? `${order}th`;
 }
 
 /** Some five round frequencies of a span. */

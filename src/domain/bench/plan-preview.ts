@@ -140,7 +140,7 @@ function faultOfExpression(
   const unknown = parsed.terms.find(({ symbol }) => !known.includes(symbol));
   if (unknown !== undefined) {
     fault(
-      `There is no ${unknown.symbol} in the plan; it has ${[...new Set(known)].join(', ') || 'no oscillator yet'}.`,
+      `There is no ${unknown.symbol} in the plan; it has ${[...new Set(known)].filter((each) => each !== '').join(', ') || 'no oscillator yet'}.`,
     );
   }
 }
