@@ -19,7 +19,7 @@ const tooClose: RunPlan = { fault: { kind: 'too_close', quantityKey: 'harmonic_2
 
 const lowPassTurns: Remedy = {
   cause: 'Low-pass coil has a wrong number of turns',
-  text: 'Low-pass coil turns: L302 had 13, rewound to 12.',
+  text: 'L302 had 13 turns, rewound to 12.',
   ...{ minutes: 35, stepAgain: 'Wind the toroids' },
 };
 const lowPassCapacitor: Remedy = {
