@@ -36,6 +36,8 @@ export const paths = {
   newModel: () => '/works/models/new',
   worksModel: (slug: string, query: { show?: string; letter?: string } = {}) =>
     withQuery(`/works/models/${segment(slug)}`, query),
+  quantities: () => '/works/quantities',
+  limitRules: () => '/works/limit-rules',
   testPlan: (slug: string, letter: string) =>
     `/works/models/${segment(slug)}/test-plans/${segment(letter.toLowerCase())}`,
   bomImport: (slug: string, fileId?: number) =>
@@ -101,6 +103,10 @@ export const paths = {
     boms: (slug: string) => `/api/models/${segment(slug)}/boms`,
     bomLine: (slug: string, letter: string, lineNo: number) =>
       `/api/models/${segment(slug)}/boms/${segment(letter)}/lines/${segment(lineNo)}`,
+    quantities: () => '/api/quantities',
+    quantityRetirement: (key: string) => `/api/quantities/${segment(key)}/retirement`,
+    limitRules: () => '/api/limit-rules',
+    limitRuleRetirement: (key: string) => `/api/limit-rules/${segment(key)}/retirement`,
     testPlans: (slug: string) => `/api/models/${segment(slug)}/test-plans`,
     testPlan: (slug: string, letter: string) => `/api/models/${segment(slug)}/test-plans/${segment(letter)}`,
     releases: (slug: string) => `/api/models/${segment(slug)}/releases`,

@@ -27,6 +27,8 @@ export const pageRules: Readonly<Record<string, Rule>> = {
   '/works/models': everyStaff,
   '/works/models/new': staff(),
   '/works/models/[slug]': everyStaff,
+  '/works/quantities': everyStaff,
+  '/works/limit-rules': everyStaff,
   '/works/models/[slug]/test-plans/[letter]': everyStaff,
   '/works/models/[slug]/bom-import': staff(),
   '/works/models/[slug]/frequency-plan': everyStaff,

@@ -28,6 +28,8 @@ export type SubjectType =
   | 'shipment'
   | 'instrument'
   | 'path'
+  | 'quantity_revision'
+  | 'limit_rule_revision'
   | 'path_part'
   | 'check_reference'
   | 'event';
