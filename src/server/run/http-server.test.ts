@@ -1,6 +1,6 @@
 import { request, type IncomingMessage, type RequestOptions, type ServerResponse } from 'node:http';
 import { mkdir, mkdtemp, rm, writeFile } from 'node:fs/promises';
-import type { AddressInfo } from 'node:net';
+import { connect, type AddressInfo } from 'node:net';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, beforeEach, expect, test } from 'vitest';
@@ -143,6 +143,48 @@ test('bodies need a stated length under the cap', async () => {
   expect(status).toBe(413);
   expect(seen).toHaveLength(0);
   expect((await ask('/', { method: 'POST', headers: { 'content-length': '1' } }, 'x')).status).toBe(200);
+});
+
+/** Sends a body of 50 MB as fast as it goes, and says what came back and how much of it the server took in. */
+async function upload(header: string): Promise<{ status: string; taken: number }> {
+  let taken = 0;
+  web.server.once('connection', (socket) => {
+    socket.once('close', () => (taken = socket.bytesRead));
+  });
+  const status = await new Promise<string>((resolve, reject) => {
+    const socket = connect(port, '127.0.0.1');
+    let answer = '';
+    let left = 50;
+    const piece = Buffer.alloc(1024 * 1024, '7030000,-20.5\n');
+    const send = (): void => {
+      while (left > 0 && !socket.destroyed) {
+        left -= 1;
+        const framed = /chunked/.test(header)
+          ? Buffer.concat([Buffer.from('100000\r\n'), piece, Buffer.from('\r\n')])
+          : piece;
+        if (!socket.write(framed)) return;
+      }
+    };
+    socket.setEncoding('latin1').on('data', (text: string) => {
+      answer += text;
+      if (answer.includes('\r\n\r\n')) resolve(answer.slice(0, answer.indexOf('\r\n')));
+    });
+    socket.on('drain', send).on('error', () => resolve(answer.split('\r\n')[0] ?? ''));
+    socket.on('close', () => reject(new Error('closed without an answer')));
+    socket.write(`POST /api/runs/1/sweeps HTTP/1.1\r\nHost: localhost:4321\r\n${header}\r\n\r\n`, send);
+  });
+  await expect.poll(() => taken).toBeGreaterThan(0);
+  return { status, taken };
+}
+
+test.each([
+  ['that states its length', `Content-Length: ${50 * 1024 * 1024}`, 'HTTP/1.1 413 Payload Too Large'],
+  ['that states none', 'Transfer-Encoding: chunked', 'HTTP/1.1 411 Length Required'],
+])('an upload of 50 MB %s is refused before it is read whole', async (_name, header, expected) => {
+  const { status, taken } = await upload(header);
+  expect(status).toBe(expected);
+  expect(taken).toBeLessThan(5 * 1024 * 1024);
+  expect(seen).toHaveLength(0);
 });
 
 test('what a caller claims about itself does not reach the application', async () => {
