@@ -222,6 +222,16 @@ describe('what does not fit', () => {
     expectInside(pdf);
   });
 
+  it('keeps five bands on one page also where each reading has its own uncertainty', async () => {
+    const points = buildBandPoints(bands.slice(0, 5)).map((point, at) => ({
+      ...point,
+      uncertainty: { value: 1, unit: 'dB', k: 2, low: 0, high: 1, text: `${(1 + at / 10).toFixed(1)} dB` },
+    }));
+    const pdf = await renderStatement({ points });
+    expect(textOf(pdf)).toContain('page 1 of 1');
+    expectInside(pdf);
+  });
+
   it.each([
     ['long without a blank', 'W'.repeat(300)],
     ['long in words', 'coupled output stage '.repeat(15).trim()],

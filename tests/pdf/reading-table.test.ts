@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { worstBars } from '~/server/pdf/limit-bar';
 import { readingTables, ruleSentences } from '~/server/pdf/reading-table';
+import { leastWidth } from '~/server/pdf/table';
 import { buildBandPoints, buildPoint } from './build-statement';
 
 const WIDTH = 514;
@@ -83,7 +84,34 @@ describe('tables of readings', () => {
       '2nd harmonic; 3rd harmonic: ITU-R SM.329 category A, guarded (w = U).',
     ]);
   });
+
+  it('say a rule once that asks for another number on each band', () => {
+    const rule = (dB: string) => ({
+      ...{ label: '2nd harmonic', decision: 'guarded' as const },
+      ruleText: `Rule (a): at least ${dB} dB below the fundamental`,
+    });
+    expect(ruleSentences([rule('50.0'), rule('9.6'), rule('50.0')].map((over) => buildPoint(over)))).toEqual([
+      '2nd harmonic: Rule (a): at least 9.6 to 50.0 dB below the fundamental, guarded (w = U).',
+    ]);
+  });
 });
+
+describe('where room is short', () => {
+  it('units move into the headings before a table is split', () => {
+    const narrow = leastWidth(onlyTable(WIDTH)) - 1;
+    const [table, ...others] = readingTables(buildBandPoints(), narrow);
+    expect(others).toEqual([]);
+    expect(table?.columns.map(({ heading }) => heading)).toContain('Power, W');
+    expect(table?.rows[0]?.cells).toContainEqual({ text: '3.12', under: [] });
+    expect(readingTables(buildBandPoints(), 300).length).toBeGreaterThan(1);
+  });
+});
+
+function onlyTable(width: number) {
+  const [table] = readingTables(buildBandPoints(), width);
+  if (table === undefined) throw new Error('There is no table.');
+  return table;
+}
 
 describe('limit bars', () => {
   it('show, for each band, the guarded reading nearest to its limit', () => {

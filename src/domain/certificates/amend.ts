@@ -97,7 +97,7 @@ export function amendStatement(
 
 /** What differs, a sentence each, the old words beside the new ones; a call sign is not named. */
 function changesBetween(before: CorrectableFacts, after: CorrectableFacts): string[] {
-  const words = (text: string) => (text === '' ? 'nothing' : `“${text}”`);
+  const words = (text: string) => (text === '' ? 'nothing' : `“${text.replace(/\.$/u, '')}”`);
   const facts = [
     ['Name of the works', before.works.name, after.works.name],
     ['Address of the works', before.works.addressLines.join(', '), after.works.addressLines.join(', ')],

@@ -30,8 +30,8 @@ const STRONG = style('strong', 9.6);
 const SMALL = style('text', 8.6, COLOURS.quiet);
 const SMALL_STRONG = style('strong', 8.6, COLOURS.quiet);
 const QR_SIDE = 64;
-/** The smallest still sets quiet text in more than 6.5 points. */
-const SCALES = [1, 0.93, 0.87, 0.81] as const;
+/** The smallest still sets quiet text in 6.5 points, and what stands under a value in 6. */
+const SCALES = [1, 0.93, 0.87, 0.81, 0.76] as const;
 
 /**
  * The certificate as a PDF file: one page of A4, more only where the readings need them. Pure of clock and chance: the

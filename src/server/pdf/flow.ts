@@ -6,6 +6,8 @@ const FOOT = 62;
 /** A sheet with the y down to which it is filled; content that does not fit goes on the next page. */
 export class Flow {
   readonly sheet: Sheet;
+  /** Rows stand closer where the page is set smaller, so that more of them go on it. */
+  readonly isDense: boolean;
   y: number;
   readonly #startPage: (flow: Flow) => void;
 
@@ -15,6 +17,7 @@ export class Flow {
    */
   constructor(scale: number, startPage: (flow: Flow) => void) {
     this.sheet = new Sheet(scale);
+    this.isDense = scale < 1;
     this.y = this.sheet.margin;
     this.#startPage = startPage;
   }

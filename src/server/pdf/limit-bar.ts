@@ -82,7 +82,7 @@ export function drawLimitBars(flow: Flow, bars: readonly Bar[]): void {
     const figures = wrapText(figuresOf(bar), FIGURES, FIGURES_WIDTH);
     const namesTall = names.length * lineHeight(NAME);
     const figuresTall = figures.length * lineHeight(FIGURES);
-    const height = Math.max(bars.length > 3 ? 17 : 22, namesTall + 4, figuresTall + 4);
+    const height = Math.max(flow.isDense || bars.length > 3 ? 17 : 22, namesTall + 4, figuresTall + 4);
     flow.need(height + 14);
     const middle = flow.y + height / 2;
     const draw = () => {

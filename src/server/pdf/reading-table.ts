@@ -56,7 +56,8 @@ function valueCell(point: StatedPoint | undefined, ownUncertainty: string, unit?
   return { text: withoutUnit(point.text, unit), under };
 }
 
-function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table {
+/** @param leastUnit letters of a unit that moves from the values into the heading: 3, or 1 where room is short */
+function bandTable(rows: readonly BandRow[], columns: readonly Column[], leastUnit = 3): Table {
   const points = columns.flatMap((column) => column.points.filter((point) => point !== undefined));
   const factors = points.flatMap((point) => (point.uncertainty ? [formatK(point.uncertainty.k)] : []));
   const commonK = factors.length > 0 && allSame(factors) ? factors[0] : undefined;
@@ -77,7 +78,10 @@ function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table 
     const limit = sharedLimit(column);
     const texts = column.points.flatMap((point) => (point ? [uncertaintyText(point, commonK)] : []));
     const shared = allSame(texts) ? (texts[0] ?? '') : undefined;
-    const unit = unitForHeading(column.points.flatMap((point) => (point ? [point.text] : [])));
+    const unit = unitForHeading(
+      column.points.flatMap((point) => (point ? [point.text] : [])),
+      leastUnit,
+    );
     table.columns.push({ heading: withUnit(column.heading, unit), align: 'end', prose: false });
     table.rows.forEach((row, at) => {
       const point = column.points[at];
@@ -92,7 +96,7 @@ function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table 
       const limits = column.points.flatMap((point) =>
         point && point.limitText !== '' ? [point.limitText] : [],
       );
-      const limitUnit = unitForHeading(limits);
+      const limitUnit = unitForHeading(limits, leastUnit);
       table.columns.push({ heading: withUnit('Allowed', limitUnit), align: 'end', prose: false });
       table.rows.forEach((row, at) => {
         const text = column.points[at]?.limitText ?? '';
@@ -116,9 +120,10 @@ function bandTable(rows: readonly BandRow[], columns: readonly Column[]): Table 
 }
 
 /** A long unit that a whole column shares stands in its heading, which leaves room for one more quantity. */
-function unitForHeading(texts: readonly string[]): string | undefined {
-  const units = texts.map((text) => /[\s\u00a0](\p{L}{3,})$/u.exec(text)?.[1]);
-  return units.length > 0 && allSame(units) ? units[0] : undefined;
+function unitForHeading(texts: readonly string[], leastLetters: number): string | undefined {
+  const units = texts.map((text) => /[\s\u00a0]([\p{L}Ω°%]+)$/u.exec(text)?.[1]);
+  const [unit] = units;
+  return unit !== undefined && allSame(units) && unit.length >= leastLetters ? unit : undefined;
 }
 
 function withUnit(heading: string, unit: string | undefined): string {
@@ -136,6 +141,11 @@ function sameLimits(a: Column, b: Column): boolean {
 
 /** Columns in as few tables as the width allows, each table with its own result. */
 function chunked(rows: readonly BandRow[], columns: readonly Column[], width: number): Table[] {
+  if (columns.length === 0) return [];
+  for (const leastUnit of [3, 1]) {
+    const whole = bandTable(rows, columns, leastUnit);
+    if (leastWidth(whole) <= width) return [whole];
+  }
   const tables: Table[] = [];
   let chunk: Column[] = [];
   for (const column of columns) {
@@ -200,14 +210,29 @@ export function readingTables(points: readonly StatedPoint[], width: number): Ta
   return single.length > 0 ? [...tables, singleTable(single)] : tables;
 }
 
+const NUMBER_OF_DB = /\d+(?:\.\d+)?(?= dB)/u;
+
+/** `at least 49.6 to 50.0 dB below …` for texts that differ in that number alone. */
+function rangeOf(texts: readonly string[]): string {
+  const numbers = texts.map((text) => NUMBER_OF_DB.exec(text)?.[0] ?? '');
+  const sorted = [...new Set(numbers)].sort((a, b) => Number(a) - Number(b));
+  const [first = ''] = texts;
+  return sorted.length < 2 ? first : first.replace(NUMBER_OF_DB, `${sorted[0]} to ${sorted.at(-1)}`);
+}
+
 /** Which limits hold and how they are decided, one sentence for each rule, so that no verdict stands without its rule. */
 export function ruleSentences(points: readonly StatedPoint[]): string[] {
-  const groups = new Map<string, Set<string>>();
+  const groups = new Map<string, { labels: Set<string>; texts: Set<string>; how: string }>();
   for (const point of points) {
     if (point.limitText === '') continue;
     const how = point.decision === 'guarded' ? 'guarded (w = U)' : 'as read (w = 0)';
-    const rule = `${point.ruleText}, ${how}`;
-    groups.set(rule, (groups.get(rule) ?? new Set()).add(point.label));
+    const key = `${point.ruleText.replace(NUMBER_OF_DB, '#')}, ${how}`;
+    const group = groups.get(key) ?? { labels: new Set(), texts: new Set(), how };
+    group.labels.add(point.label);
+    group.texts.add(point.ruleText);
+    groups.set(key, group);
   }
-  return [...groups].map(([rule, labels]) => `${[...labels].join('; ')}: ${rule}.`);
+  return [...groups.values()].map(
+    ({ labels, texts, how }) => `${[...labels].join('; ')}: ${rangeOf([...texts])}, ${how}.`,
+  );
 }

@@ -21,7 +21,7 @@ const VALUE = style('mono', 8.9);
 const PROSE = style('text', 9.6);
 const QUIET_VALUE = style('mono', 8.5, COLOURS.quiet);
 const QUIET_PROSE = style('text', 9, COLOURS.quiet);
-const UNDER = style('text', 7.6, COLOURS.quiet);
+const UNDER = style('text', 7.9, COLOURS.quiet);
 const VERDICT_SIZE = 9.6;
 
 function cellStyle(prose: boolean, quiet: boolean): Style {
@@ -150,7 +150,7 @@ export function drawTable(flow: Flow, table: Table): void {
       // What stands under a value is read after a blank, as the next line of a paragraph is.
       return { cell, lines: lines.map((line, at) => ({ ...line, isBroken: at < lines.length - 1 })) };
     });
-    const pad = row.quiet ? 7 : 11;
+    const pad = padOf(row, flow);
     return { cells, pad, height: Math.max(13, ...cells.map(({ lines }) => tall(lines))) + pad };
   });
 
@@ -177,6 +177,11 @@ export function drawTable(flow: Flow, table: Table): void {
       drawRule(flow, COLOURS.rule, 0.6);
     }
   });
+}
+
+function padOf({ quiet }: TableRow, { isDense }: Flow): number {
+  if (isDense) return quiet ? 5 : 6;
+  return quiet ? 7 : 11;
 }
 
 function drawRule({ sheet, y }: Flow, colour: Colour, lineWidth: number): void {
