@@ -1,4 +1,4 @@
-import { and, eq, isNull, ne, sql } from 'drizzle-orm';
+import { and, eq, isNotNull, isNull, ne, sql } from 'drizzle-orm';
 import { expect, test } from 'vitest';
 import { parseCode } from '../../../src/domain/certificates/code';
 import type { Db } from '../../../src/server/db/client';
@@ -18,6 +18,7 @@ import {
   outbox,
   payments,
   placeHolds,
+  reworks,
   signingKeys,
   storeEntries,
   suppliers,
@@ -170,6 +171,12 @@ async function expectSomethingToLookAt(db: Db): Promise<void> {
   expect.soft(await db.$count(lots, eq(lots.state, 'barred')), 'barred lots').toBe(1);
   expect.soft(await db.$count(holds, isNull(holds.endedAt)), 'holds').toBeGreaterThan(0);
   expect.soft(await db.$count(contacts, sql`char_length(${contacts.name}) > 120`), 'long names').toBe(1);
+  const found = await db
+    .select({ cause: reworks.foundCause })
+    .from(reworks)
+    .where(isNotNull(reworks.confirmedByRunId));
+  expect.soft(new Set(found.map(({ cause }) => cause)).size, 'causes found').toBeGreaterThanOrEqual(4);
+  expect.soft(found.length, 'remedies that held').toBeGreaterThanOrEqual(8);
   const packable = await db
     .select({ total: orders.totalMinor, paid: sql<number>`sum(${payments.amountMinor})`.mapWith(Number) })
     .from(orders)
