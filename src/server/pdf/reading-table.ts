@@ -89,8 +89,8 @@ function bandTable(rows: readonly BandRow[], columns: readonly Column[], leastUn
         valueCell(point, point && shared === undefined ? uncertaintyText(point, commonK) : '', unit),
       );
     });
-    mustBe.push(limit === undefined || limit === '' ? null : { text: limit });
-    spread.push(shared === undefined || shared === '' ? null : { text: shared });
+    mustBe.push(limit === undefined || limit === '' ? null : { text: withoutUnit(limit, unit) });
+    spread.push(shared === undefined || shared === '' ? null : { text: withoutUnit(shared, unit) });
     const next = columns[index + 1];
     if (limit === undefined && !(next && sameLimits(column, next))) {
       const limits = column.points.flatMap((point) =>
@@ -130,8 +130,11 @@ function withUnit(heading: string, unit: string | undefined): string {
   return unit === undefined ? heading : `${heading}, ${unit}`;
 }
 
+/** A value whose unit stands in the heading; one in another unit, such as an uncertainty in dB, keeps its own. */
 function withoutUnit(text: string, unit: string | undefined): string {
-  return unit === undefined ? text : text.slice(0, -unit.length).trimEnd();
+  const isSaid =
+    unit !== undefined && /[\s\u00a0]$/u.test(text.slice(0, -unit.length)) && text.endsWith(unit);
+  return isSaid ? text.slice(0, -unit.length).trimEnd() : text;
 }
 
 /** Whether two columns are held, band by band, to the same limits, so that one column of limits serves both. */
