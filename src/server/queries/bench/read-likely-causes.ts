@@ -31,7 +31,7 @@ export async function readLikelyCauses(reader: Reader, runId: number): Promise<L
 }
 
 /** The works' mended cases with a symptom of these quantities, the newest first; only those whose remedy held. */
-export async function readCauseHistory(reader: Reader, symptoms: readonly Symptom[]): Promise<MendedCase[]> {
+async function readCauseHistory(reader: Reader, symptoms: readonly Symptom[]): Promise<MendedCase[]> {
   const quantityKeys = [...new Set(symptoms.map(({ quantityKey }) => quantityKey))];
   if (quantityKeys.length === 0) return [];
   const rows = await reader
