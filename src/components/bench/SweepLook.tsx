@@ -72,7 +72,7 @@ export function SweepLook({ sweep, bands, equipment, limitAt, onCorrect, onAccep
         </>
       )}
       <p className="flex flex-wrap items-center gap-3">
-        {look !== null && (
+        {look !== null && look.refusal === null && (
           <Button
             kind="outlined"
             type="button"
@@ -108,7 +108,6 @@ function acceptText({ readings }: SweepLookAnswer): string {
 /** Why it cannot be accepted now. */
 function against(sweep: PendingSweep): string | undefined {
   if (isAcceptable(sweep) || sweep.isBusy) return undefined;
-  if (sweep.look?.refusal !== null) return 'The sentence above says why not.';
   const open = openQuestions(sweep);
   if (open.length > 0)
     return open.length === 1 ? 'One question is open.' : `${open.length} questions are open.`;

@@ -1,6 +1,7 @@
-import { useState } from 'react';
+import { useEffect, useRef, useState } from 'react';
 import type { RefObject } from 'react';
 import { Button } from '~/components/ui/Button';
+import { Notice } from '~/components/ui/Notice';
 import { formatFrequency } from '~/domain/bench/format';
 import type { PointJudgement } from '~/domain/bench/judge-point';
 import type { Station, StationSweep } from '~/schemas/bench-station';
@@ -69,6 +70,7 @@ export function SweepPanel(props: Props) {
           event.currentTarget.value = '';
         }}
       />
+      {shown === undefined && looks.said !== null && <Said text={looks.said} />}
       {pending.length > 1 && (
         <div className="mb-4 flex flex-wrap items-center gap-3">
           <Waiting pending={pending} shownId={shown?.id} onShow={looks.show} />
@@ -99,6 +101,19 @@ export function SweepPanel(props: Props) {
       )}
       {shown === undefined && kept !== undefined && <KeptSweep sweep={kept} {...{ station, judgements }} />}
     </section>
+  );
+}
+
+/** Says what was written down, and keeps the keyboard where the file was accepted. */
+function Said({ text }: { text: string }) {
+  const box = useRef<HTMLDivElement>(null);
+  useEffect(() => box.current?.focus(), [text]);
+  return (
+    <div ref={box} tabIndex={-1} className="mb-4">
+      <Notice tone="ok" title="Written down">
+        {text}
+      </Notice>
+    </div>
   );
 }
 

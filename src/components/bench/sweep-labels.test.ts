@@ -19,7 +19,7 @@ describe('labels of a plot', () => {
     for (const [index, one] of placed.entries()) {
       for (const other of placed.slice(index + 1)) {
         const apart =
-          Math.abs(one.top - other.top) >= 15 || Math.abs(one.left - other.left) >= one.text.length * 7.9;
+          Math.abs(one.top - other.top) >= 15 || Math.abs(one.left - other.left) >= one.text.length * 8.2;
         expect(apart).toBe(true);
       }
     }
@@ -27,7 +27,7 @@ describe('labels of a plot', () => {
 
   it('stay inside the frame at its right edge', () => {
     const [placed] = placeLabels([label('a', 695, 100)], frame);
-    expect((placed?.left ?? 0) + 9 * 7.9).toBeLessThanOrEqual(700);
+    expect((placed?.left ?? 0) + 9 * 8.2).toBeLessThanOrEqual(700);
   });
 
   it('are left out where there is no place at all', () => {

@@ -15,7 +15,7 @@ export interface PlacedLabel extends PlotLabel {
   top: number;
 }
 
-const letterWidth = 7.9;
+const letterWidth = 8.2;
 const lineHeight = 15;
 
 interface Frame {
@@ -26,11 +26,12 @@ interface Frame {
 }
 
 /**
- * Places labels so that none covers another, the first ones first: each stands above its point, moved to the left at the right edge and
+ * Places labels so that none covers another or the point of another, the first ones first: each stands above its point, moved to the left at the right edge and
  * upwards, then downwards, until it is free. One that finds no place is left out; the table has it.
  */
 export function placeLabels(labels: readonly PlotLabel[], frame: Frame): PlacedLabel[] {
   const placed: (PlacedLabel & { width: number })[] = [];
+  const dots = labels.filter(({ isMarked }) => isMarked);
   for (const label of labels) {
     const width = label.text.length * letterWidth;
     const left = Math.min(Math.max(frame.left, label.x + 5), frame.right - width);
@@ -48,6 +49,14 @@ export function placeLabels(labels: readonly PlotLabel[], frame: Frame): PlacedL
             left + width + 4 < other.left ||
             other.left + other.width + 4 < left ||
             Math.abs(other.top - y) >= lineHeight,
+        ) &&
+        dots.every(
+          (dot) =>
+            dot === label ||
+            dot.x < left - 4 ||
+            dot.x > left + width + 4 ||
+            dot.y < y - lineHeight ||
+            dot.y > y + 4,
         ),
     );
     if (top !== undefined) placed.push({ ...label, left, top, width });

@@ -1,4 +1,5 @@
 import { useRef, useState } from 'react';
+import { z } from 'zod';
 import { paths } from '~/lib/paths';
 import { sweepLookSchema } from '~/schemas/bench-sweeps';
 import type { SweepLookAnswer } from '~/schemas/bench-sweeps';
@@ -41,11 +42,15 @@ export interface SweepLooks {
   /** Changes what is said about a file; it is read again where that changes what it comes to. */
   correct: (id: number, fields: Partial<SweepFields>) => void;
   leave: (id: number) => void;
+  /** What was written down last; null while nothing was. */
+  said: string | null;
   accept: (sweeps: readonly PendingSweep[]) => Promise<void>;
 }
 
 /** What changes nothing of what was read, and so needs no other look. */
 const onlySaid: readonly (keyof SweepFields)[] = ['understood', 'attenuationHeld'];
+
+const takenSchema = z.object({ readings: z.number() });
 
 let lastId = 0;
 
@@ -86,6 +91,7 @@ export function isAcceptable(sweep: PendingSweep): boolean {
 export function useSweepLooks(runId: number, onAccepted: () => Promise<unknown>): SweepLooks {
   const [pending, setPending] = useState<PendingSweep[]>([]);
   const [shownId, setShownId] = useState<number | null>(null);
+  const [said, setSaid] = useState<string | null>(null);
   // The newest question about each file: an older one that is answered later no longer counts.
   const asked = useRef(new Map<number, string>());
 
@@ -112,6 +118,7 @@ export function useSweepLooks(runId: number, onAccepted: () => Promise<unknown>)
     pending,
     shown: pending.find(({ id }) => id === shownId) ?? pending[0],
     show: setShownId,
+    said,
     add: (files, { instrumentRevisionId, pathRevisionId }) => {
       const added = files.map((file): PendingSweep => {
         lastId += 1;
@@ -132,6 +139,7 @@ export function useSweepLooks(runId: number, onAccepted: () => Promise<unknown>)
         return { id: lastId, file, fields, look: null, error: null, isBusy: true };
       });
       setPending((all) => [...all, ...added]);
+      setSaid(null);
       setShownId(added[0]?.id ?? null);
       void (async () => {
         for (const each of added) await look(each);
@@ -147,16 +155,19 @@ export function useSweepLooks(runId: number, onAccepted: () => Promise<unknown>)
     },
     leave,
     accept: async (sweeps) => {
+      const taken: string[] = [];
       for (const sweep of sweeps) {
         change(sweep.id, { isBusy: true, error: null });
         try {
-          await send(paths.api.sweeps(runId), bodyOf(sweep), crypto.randomUUID());
+          const answer = await send(paths.api.sweeps(runId), bodyOf(sweep), crypto.randomUUID());
+          taken.push(`${sweep.file.name}: ${takenSchema.parse(answer).readings} readings.`);
           leave(sweep.id);
         } catch (error) {
           change(sweep.id, { isBusy: false, error: sentenceOf(error) });
         }
       }
       await onAccepted();
+      if (taken.length > 0) setSaid(taken.join(' '));
     },
   };
 }
