@@ -36,6 +36,7 @@ export const paths = {
   newModel: () => '/works/models/new',
   worksModel: (slug: string, query: { show?: string; letter?: string } = {}) =>
     withQuery(`/works/models/${segment(slug)}`, query),
+  history: (query: { file?: string; model?: string } = {}) => withQuery('/works/history', query),
   quantities: () => '/works/quantities',
   limitRules: () => '/works/limit-rules',
   testPlan: (slug: string, letter: string) =>
@@ -103,6 +104,8 @@ export const paths = {
     boms: (slug: string) => `/api/models/${segment(slug)}/boms`,
     bomLine: (slug: string, letter: string, lineNo: number) =>
       `/api/models/${segment(slug)}/boms/${segment(letter)}/lines/${segment(lineNo)}`,
+    history: () => '/api/history',
+    historyPastes: () => '/api/history-pastes',
     quantities: () => '/api/quantities',
     quantityRetirement: (key: string) => `/api/quantities/${segment(key)}/retirement`,
     limitRules: () => '/api/limit-rules',

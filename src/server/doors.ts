@@ -27,6 +27,7 @@ export const pageRules: Readonly<Record<string, Rule>> = {
   '/works/models': everyStaff,
   '/works/models/new': staff(),
   '/works/models/[slug]': everyStaff,
+  '/works/history': staff('tester'),
   '/works/quantities': everyStaff,
   '/works/limit-rules': everyStaff,
   '/works/models/[slug]/test-plans/[letter]': everyStaff,

@@ -229,6 +229,7 @@ async function addressesOf(db: Db, secret: string): Promise<Record<string, Recor
     '/works/models': { '': paths.worksModels() },
     '/works/models/new': { '': paths.newModel() },
     '/works/models/[slug]': { '': paths.worksModel(model.slug) },
+    '/works/history': { '': paths.history() },
     '/works/quantities': { '': paths.quantities() },
     '/works/limit-rules': { '': `${paths.limitRules()}?power=5&tx=7030&product=14060` },
     '/works/models/[slug]/test-plans/[letter]': { '': paths.testPlan(model.slug, 'A') },

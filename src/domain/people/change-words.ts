@@ -38,6 +38,8 @@ const words: Readonly<Record<string, string>> = {
   'bom.release': 'released a BOM',
   'build_sheet.release': 'released a build sheet',
   'frequency_plan.revise': 'revised the frequency plan',
+  'history.paste': 'sent in a table of old sheets',
+  'history.keep': 'kept old sheets as history',
   'quantity.add': 'added a quantity',
   'quantity.revise': 'revised a quantity',
   'quantity.retire': 'took a quantity out of use',

@@ -44,7 +44,8 @@ export function readBomTable(bytes: Uint8Array): ({ ok: true } & BomTable) | { o
   return { ok: true, encoding, separator, rows: cut.rows, notes: [], questions: [] };
 }
 
-function cutRows(
+/** Cuts text into rows of cells at a separator. */
+export function cutRows(
   text: string,
   separator: string,
 ): { ok: true; rows: TableRow[] } | { ok: false; reason: string } {
@@ -75,7 +76,7 @@ function cutRows(
 }
 
 /** The separator that stands in the first line and in most others, most often; quoted ones do not count. */
-function guessSeparator(text: string): string | null {
+export function guessSeparator(text: string): string | null {
   const lines = text
     .split(/\r\n|\r|\n/)
     .filter((line) => line.trim() !== '')
