@@ -106,6 +106,7 @@ describe('a loss table as typed or as CSV', () => {
   });
 });
 
+// Standing wave ratios below follow from RL = −20·lg ρ and ρ = (S − 1)/(S + 1), as tests/reference has them.
 const s2p = `! a 10 dB pad
 # MHz S DB R 50
 1   -30.0 10  -10.02 -1  -10.02 -1  -28.0 4 ! first

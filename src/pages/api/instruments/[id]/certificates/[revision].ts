@@ -14,6 +14,6 @@ export const GET = door({
     const fileId = await findCertificateFile(ctx.db, params.id, params.revision);
     if (fileId === null) throw new DomainError('not_found', 'This revision has no certificate as a file.');
     const { bytes, mediaType, name } = await readFile(ctx.db, fileId);
-    return { bytes, mediaType, fileName: name, inline: true };
+    return { bytes, mediaType, fileName: name };
   },
 });
