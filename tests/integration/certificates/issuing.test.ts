@@ -7,7 +7,7 @@ import { promisify } from 'node:util';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeEach, describe, expect, it } from 'vitest';
 import { makeCertificatePdf, stopCertificateThread } from '~/server/documents/certificate-pdf';
-import { certificates, outbox, signingKeys, testRuns } from '~/server/db/schema';
+import { certificates, outbox, runPoints, signingKeys, testRuns } from '~/server/db/schema';
 import { publicKeyPem } from '~/server/keys/ed25519';
 import { readSignedCertificate } from '~/server/queries/certificates/read-signed-certificate';
 import { verifyCertificate } from '~/server/queries/certificates/verify-certificate';
@@ -67,6 +67,39 @@ describe('issuing a certificate', () => {
     expect(second?.uncertainty?.text).toMatch(/^\d\.\d dB$/);
     expect(second?.upper).toBeLessThan(-40);
     expect(certificate?.statement.notAssessed).toContain('Not assessed to EN 301 783.');
+  });
+
+  it('says where it was tested, what was done otherwise than planned, and what was not read', async () => {
+    const runId = await openAndFill();
+    await database.db
+      .update(testRuns)
+      .set({ deviations: 'Keyed by hand: the keyer was not fitted yet.' })
+      .where(eq(testRuns.id, runId));
+    await closeRun({ runId }, bench.ctx);
+    const { code } = await issueCertificate({ runId }, bench.ctx);
+    const certificate = await readSignedCertificate(database.db, { code });
+    expect(certificate?.statement).toMatchObject({
+      place: 'at the works',
+      deviations: ['Keyed by hand: the keyer was not fitted yet.'],
+    });
+    expect(certificate?.statement.conformity.join(' ')).toContain(
+      'On 20 m the 2nd and 3rd harmonic are each',
+    );
+    expect(certificate?.statement.notAssessed).toContain('Harmonics above the 3rd were not assessed.');
+  });
+
+  it('refuses a run that would be judged otherwise now', async () => {
+    const runId = await openAndFill();
+    const [run] = await database.db.select().from(testRuns).where(eq(testRuns.id, runId));
+    await database.db.insert(runPoints).values({
+      ...{ testRunId: runId, testPointId: bench.pointId('rf_power'), verdict: 'pass', readingCount: 1 },
+      ...{ lowerLimit: 1.5, ruleText: 'As it was then' },
+    });
+    await database.db
+      .update(testRuns)
+      .set({ state: 'closed', result: 'passed', closedAt: run?.openedAt ?? new Date() })
+      .where(eq(testRuns.id, runId));
+    await expect(issueCertificate({ runId }, bench.ctx)).rejects.toThrow('judged otherwise now');
   });
 
   it.each([
