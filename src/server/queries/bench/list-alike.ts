@@ -32,14 +32,14 @@ export async function listAlike(reader: Reader, runId: number): Promise<AlikePoi
     .where(eq(testPoints.testPlanRevisionId, run.planId))
     .orderBy(asc(testPoints.position));
   const found = new Map(points.map((point) => [keyOf(point), [] as AlikePoint['values']]));
+  const keys = new Map(points.map((point) => [point.testPointId, keyOf(point)]));
   let before = Number.MAX_SAFE_INTEGER;
   for (let looked = 0; looked < mostRuns; looked += runsAtATime) {
-    const lacking = points.filter((point) => (found.get(keyOf(point))?.length ?? 0) < MOST_ALIKE);
-    if (lacking.length === 0) break;
+    if ([...found.values()].every((values) => values.length >= MOST_ALIKE)) break;
     const runs = await listClosedRuns(reader, run.modelId, { before, except: runId });
     const oldest = runs.at(-1);
     if (oldest === undefined) break;
-    for (const { key, value } of await listValues(reader, runs, lacking)) {
+    for (const { key, value } of await listValues(reader, runs, keys)) {
       const values = found.get(key);
       if (values !== undefined && values.length < MOST_ALIKE) values.push(value);
     }
@@ -76,39 +76,46 @@ async function listClosedRuns(
     .limit(runsAtATime);
 }
 
-async function listValues(
-  reader: Reader,
-  runs: readonly ClosedRun[],
-  lacking: readonly { quantityKey: string }[],
-) {
+/**
+ * What these runs kept. Not joined with the test points: MariaDB would begin there, and read every value that a point ever
+ * had.
+ *
+ * @param keys by test point id; those that are met first are added
+ */
+async function listValues(reader: Reader, runs: readonly ClosedRun[], keys: Map<number, string>) {
   const rows = await reader
     .select({
       runId: runPoints.testRunId,
-      quantityKey: testPoints.quantityKey,
-      band: testPoints.band,
+      testPointId: runPoints.testPointId,
       value: runPoints.value,
       verdict: runPoints.verdict,
     })
     .from(runPoints)
-    .innerJoin(testPoints, eq(testPoints.id, runPoints.testPointId))
     .where(
       and(
         inArray(
           runPoints.testRunId,
           runs.map(({ id }) => id),
         ),
-        inArray(testPoints.quantityKey, [...new Set(lacking.map(({ quantityKey }) => quantityKey))]),
         ne(runPoints.verdict, 'not_run'),
         isNotNull(runPoints.value),
       ),
     )
-    .orderBy(desc(runPoints.testRunId), asc(testPoints.position));
+    .orderBy(desc(runPoints.testRunId), asc(runPoints.testPointId));
+  const unknown = [...new Set(rows.map(({ testPointId }) => testPointId))].filter((id) => !keys.has(id));
+  if (unknown.length > 0) {
+    const points = await reader
+      .select({ id: testPoints.id, quantityKey: testPoints.quantityKey, band: testPoints.band })
+      .from(testPoints)
+      .where(inArray(testPoints.id, unknown));
+    for (const point of points) keys.set(point.id, keyOf(point));
+  }
   const runOf = new Map(runs.map((run) => [run.id, run]));
-  return rows.map(({ runId, value, verdict, ...point }) => {
+  return rows.map(({ runId, testPointId, value, verdict }) => {
     const run = runOf.get(runId);
     invariant(run !== undefined && value !== null, 'a value of one of the runs');
     const { serial, runNo, closedAt } = run;
-    return { key: keyOf(point), value: { value, verdict, serial, runNo, closedAt } };
+    return { key: keys.get(testPointId) ?? '', value: { value, verdict, serial, runNo, closedAt } };
   });
 }
 
