@@ -20,7 +20,11 @@ export function tagLines(
   const built = [
     unit.bomLetter === null ? null : `BOM ${unit.bomLetter}`,
     unit.firmwareVersion === null ? null : `firmware ${unit.firmwareVersion}`,
-    unit.batchNumber === null ? 'built ahead' : `batch ${unit.batchNumber}`,
+    unit.batchNumber !== null
+      ? `batch ${unit.batchNumber}`
+      : unit.bomLetter === null
+        ? 'entered at the bench'
+        : 'built ahead',
   ];
   const forWhom = [
     unit.orderNumber === null ? 'for no order yet' : `order ${unit.orderNumber}`,

@@ -2,8 +2,7 @@ import type { ComponentProps } from 'react';
 import type { TagStubs } from '~/components/ui/TagStubs';
 import { BAND_KEYS, bandLabel } from '~/domain/bench/bands';
 import { formatValue } from '~/domain/bench/format';
-import { quantityOf } from '~/domain/bench/quantities';
-import { stubsOf } from '~/domain/production/stages';
+import { buildStages, stubsOf } from '~/domain/production/stages';
 import type { WorkStage } from '~/domain/production/stages';
 import { formatDayOf } from '~/lib/dates';
 import type { UnitHistory } from '~/server/queries/production/get-unit-history';
@@ -29,11 +28,18 @@ export function unitStubs(history: UnitHistory, timeZone: string, next: Stubs[nu
     key: stage,
     label,
     state,
-    note: tornAt === null ? reason : `torn off ${formatDayOf(tornAt, timeZone)}`,
+    note:
+      tornAt !== null
+        ? `torn off ${formatDayOf(tornAt, timeZone)}`
+        : isBuilt(stage) && unit.buildSheetRevisionId === null
+          ? 'not in the books'
+          : reason,
     action: state === 'present' ? next : undefined,
     happenings: happened[stage].sort((a, b) => a.at.getTime() - b.at.getTime()),
   }));
 }
+
+const isBuilt = (stage: WorkStage): boolean => buildStages.some((each) => each === stage);
 
 function finishedAt(history: UnitHistory): Partial<Record<WorkStage, Date>> {
   const last = (stage: 'boards' | 'align') =>
@@ -136,13 +142,13 @@ function runHappenings({ runs }: UnitHistory, meta: Meta): Dated[] {
 }
 
 function failureText(point: UnitHistory['runs'][number]['failed'][number]): string {
-  const label = quantityOf(point.quantityKey)?.label ?? point.quantityKey;
+  const { quantity } = point;
   const key = BAND_KEYS.find((one) => one === point.band);
   const band = key === undefined ? '' : `${bandLabel(key)}, `;
-  const read = point.value === null ? 'not read' : formatValue(point.value, point.quantityKey);
+  const read = point.value === null ? 'not read' : formatValue(point.value, quantity);
   const limit = point.upper ?? point.lower;
-  const needs = limit === null ? '' : `, limit ${formatValue(limit, point.quantityKey)}`;
-  return `${band}${label.toLowerCase()} ${read}${needs}`;
+  const needs = limit === null ? '' : `, limit ${formatValue(limit, quantity)}`;
+  return `${band}${quantity.label.toLowerCase()} ${read}${needs}`;
 }
 
 function reworkHappenings({ reworks }: UnitHistory, meta: Meta): Dated[] {
@@ -153,10 +159,18 @@ function reworkHappenings({ reworks }: UnitHistory, meta: Meta): Dated[] {
       at,
       mark: 'too_close',
       title: done ? 'Rework' : 'In rework',
-      text: done ? (rework.remedy ?? rework.cause) : rework.cause,
+      text: done ? mendedText(rework) : (rework.foundCause ?? rework.cause),
       meta: meta(at, done ? rework.closedBy : rework.openedBy, rework.minutes),
     };
   });
+}
+
+/** `Low-pass coil turns: L302 rewound to 12. Run 2 showed that it held.` */
+function mendedText(rework: UnitHistory['reworks'][number]): string {
+  const { cause, foundCause, remedy, confirmedByRunNo } = rework;
+  const mended = [foundCause, remedy].filter((text) => text !== null).join(': ');
+  const held = confirmedByRunNo === null ? '' : ` Run ${confirmedByRunNo} showed that it held.`;
+  return `${(mended === '' ? cause : mended).replace(/\.$/, '')}.${held}`;
 }
 
 function certified({ certificates }: UnitHistory, meta: Meta): Dated[] {
