@@ -144,6 +144,7 @@ describe('a reference', () => {
     [{ tolerance: '0 dB' }, 'tolerance', /more than 0/],
     [{ instrumentId: '999' }, 'instrumentId', /in use/],
     [{ pathId: '999' }, 'pathId', /in use/],
+    [{ freqMHz: '500' }, 'pathId', /not at 500 MHz/],
     [{ quantityKey: 'current_key_down', nominal: '1 A', tolerance: '1 %' }, 'pathId', /does nothing/],
   ])('is refused beside its field: %j', async (change, field, sentence) => {
     const problem = await problemIn(await define(change));

@@ -1,10 +1,11 @@
 import { and, eq, isNull } from 'drizzle-orm';
 import { readStep } from '~/domain/bench/accuracy-text';
-import { mayBeChecked } from '~/domain/bench/daily-check';
+import { checkValue, mayBeChecked } from '~/domain/bench/daily-check';
 import { parseEntry } from '~/domain/bench/entry';
 import type { Quantity } from '~/domain/bench/quantities';
 import type { SpecHalfWidth } from '~/domain/bench/types';
 import type { NewCheckReference } from '~/schemas/bench-checks';
+import { pathSpecSchema } from '~/schemas/bench-specs';
 import { checkReferences, instrumentRevisions, pathRevisions } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
 import { listQuantities } from '~/server/queries/bench/list-quantities';
@@ -38,7 +39,7 @@ export async function defineCheckReference(
       .insert(checkReferences)
       .values({
         ...{ number, name, quantityKey, instrumentId, pathId, nominal },
-        freqHz: input.freqMHz === null ? null : input.freqMHz * 1e6,
+        freqHz: freqHzOf(input.freqMHz),
         tolerance: toleranceOf(input, quantity, nominal),
         createdAt: w.now,
       })
@@ -77,10 +78,18 @@ async function mustBeUsable(
     throw refuse(`A path does nothing to ${quantity.label.toLowerCase()}: choose none.`, 'pathId');
   }
   const [path] = await w.tx
-    .select({ id: pathRevisions.id })
+    .select({ spec: pathRevisions.spec })
     .from(pathRevisions)
     .where(and(eq(pathRevisions.pathId, pathId), isNull(pathRevisions.retiredAt)));
   if (path === undefined) throw refuse('Choose a path that is in use.', 'pathId');
+  const at = { quantity, freqHz: freqHzOf(freqMHz) };
+  const through = checkValue(at, 1, pathSpecSchema.parse(path.spec));
+  if (!through.ok) throw refuse(through.reason, 'pathId');
+}
+
+/** Whole Hz, as a decimal of MHz has no exact double. */
+function freqHzOf(freqMHz: number | null): number | null {
+  return freqMHz === null ? null : Math.round(freqMHz * 1e6);
 }
 
 function nominalOf(input: NewCheckReference, quantity: Quantity): number {
