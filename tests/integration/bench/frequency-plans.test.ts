@@ -93,7 +93,9 @@ describe('a frequency plan', () => {
   });
 
   test('is the owner’s to change', async () => {
-    const tester = await letIn(await seedPerson(database.db, { roles: ['tester'], email: 'tester@works.example' }));
+    const tester = await letIn(
+      await seedPerson(database.db, { roles: ['tester'], email: 'tester@works.example' }),
+    );
     const { response } = await callDoor(plansDoor, {
       ...sendJson(planToColumns(plan)),
       params: { slug: model.slug },
