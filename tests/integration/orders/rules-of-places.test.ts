@@ -1,4 +1,4 @@
-import { asc } from 'drizzle-orm';
+import { asc, sql } from 'drizzle-orm';
 import { beforeEach, describe, expect, it } from 'vitest';
 import { batches, checkouts, payments, providerEvents, unitAllocations, units } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
@@ -127,26 +127,39 @@ describe('rule 2: a paid line of quantity n has exactly n units', () => {
   it('leaves nothing behind when it fails half way', async () => {
     await seedBatch(database.db, model);
     const { orderId, checkoutId } = await placeOrder(buildOrder({ quantity: 2 }), buildContext(database.db));
-    // The second serial number is taken already, so the second unit cannot be made.
+    // The second unit cannot be made.
+    await database.db.execute(
+      sql.raw(
+        "create trigger units_cut_off before insert on units for each row if new.serial = 'H3-0002' then signal sqlstate '45000' set message_text = 'cut off'; end if",
+      ),
+    );
+    await expect(
+      deliver(byProvider(database.db), await buildPaid(database.db, checkoutId)),
+    ).rejects.toThrow();
+    expect(await database.db.select().from(units)).toHaveLength(0);
+    expect(await database.db.select().from(payments)).toHaveLength(0);
+    expect((await readOrder(database.db, orderId)).state).toBe('awaiting_payment');
+    await database.db.execute(sql.raw('drop trigger units_cut_off'));
+    await deliver(byProvider(database.db), await buildPaid(database.db, checkoutId));
+    expect(await database.db.select().from(units)).toHaveLength(2);
+  });
+
+  it('passes over a serial number that somebody typed at the bench', async () => {
+    await seedBatch(database.db, model);
+    const { checkoutId } = await placeOrder(buildOrder({ quantity: 2 }), buildContext(database.db));
     await database.db.insert(units).values({
       serial: 'H3-0002',
       modelId: model.modelId,
       options: [],
-      stage: 'kit',
+      stage: 'final_test',
       testPlanRevisionId: model.testPlanRevisionId,
       alignment: {},
       pageCode: 'X',
       createdAt: at,
     });
-    await expect(
-      deliver(byProvider(database.db), await buildPaid(database.db, checkoutId)),
-    ).rejects.toThrow();
-    expect(await database.db.select().from(units)).toHaveLength(1);
-    expect(await database.db.select().from(payments)).toHaveLength(0);
-    expect((await readOrder(database.db, orderId)).state).toBe('awaiting_payment');
-    await database.db.delete(units);
     await deliver(byProvider(database.db), await buildPaid(database.db, checkoutId));
-    expect(await database.db.select().from(units)).toHaveLength(2);
+    const serials = await database.db.select({ serial: units.serial }).from(units).orderBy(asc(units.serial));
+    expect(serials.map(({ serial }) => serial)).toEqual(['H3-0001', 'H3-0002', 'H3-0003']);
   });
 
   it('refuses to spawn a line’s units again', async () => {

@@ -2,6 +2,7 @@ import { randomBytes } from 'node:crypto';
 import { eq, sql } from 'drizzle-orm';
 import { CODE_RANDOM_BYTES, codeFromRandom } from '~/domain/certificates/code';
 import { formatSerial } from '~/lib/serials';
+import type { Tx } from '~/server/db/client';
 import { batches, models, orderLines, unitAllocations, units } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
 import type { Ctx } from '~/server/write';
@@ -40,7 +41,7 @@ export async function spawnUnits(
     const { batch, prefix } = found;
     const spawned: { id: number; serial: string }[] = [];
     for (let lineIndex = 1; lineIndex <= line.quantity; lineIndex += 1) {
-      const serial = formatSerial(prefix, await nextNumber(w.tx, `serial:${prefix}`));
+      const serial = await nextSerial(w.tx, prefix);
       const [{ insertId: id }] = await w.tx.insert(units).values({
         serial,
         modelId: batch.modelId,
@@ -74,4 +75,13 @@ export async function spawnUnits(
     });
     return { unitIds: spawned.map(({ id }) => id), serials: spawned.map(({ serial }) => serial) };
   });
+}
+
+/** The next of the model's series that nobody has typed for a unit at the bench. */
+async function nextSerial(tx: Tx, prefix: string): Promise<string> {
+  for (;;) {
+    const serial = formatSerial(prefix, await nextNumber(tx, `serial:${prefix}`));
+    const [taken] = await tx.select({ id: units.id }).from(units).where(eq(units.serial, serial));
+    if (taken === undefined) return serial;
+  }
 }
