@@ -10,12 +10,15 @@ const instrument: InstrumentSpec = {
   flatnessDb: null,
   vswr: 1.2,
   ownDistortionDbc: -70,
+  detector: null,
   calibration: null,
 };
 
 const path: PathSpec = {
+  direction: 'to_instrument',
   parts: [
     {
+      partNumber: null,
       name: 'Pad',
       loss: [
         [1e6, 20],
@@ -42,7 +45,18 @@ describe('stored specifications', () => {
     ['own distortion over the carrier', { ...instrument, ownDistortionDbc: 70 }],
     [
       'a day that is none',
-      { ...instrument, calibration: { expanded: 0.1, unit: 'dB', k: 2, dueOn: 'soon' } },
+      {
+        ...instrument,
+        calibration: {
+          expanded: 0.1,
+          unit: 'dB',
+          k: 2,
+          calibratedOn: null,
+          laboratory: null,
+          certificateNumber: null,
+          dueOn: 'soon',
+        },
+      },
     ],
     ['a grade that is none', { ...instrument, grade: 'good' }],
   ])('an instrument with %s is refused', (_, value) => {

@@ -1,17 +1,18 @@
 import { z } from 'zod';
 import { BAND_KEYS } from '~/domain/bench/bands';
-import { instrumentSpecSchema, pathSpecSchema } from './bench-specs';
+import { chosenRuleSchema, quantitySchema } from './bench-definitions';
+import { instrumentSpecSchema, outputStageSchema, pathSpecSchema } from './bench-specs';
+import { keptSweepSchema } from './bench-sweeps';
 
 const id = z.number().int();
 const band = z.enum(BAND_KEYS as [(typeof BAND_KEYS)[number], ...typeof BAND_KEYS]).nullable();
 const moment = z.union([z.date().transform((date) => date.toISOString()), z.string()]);
 const verdict = z.enum(['pass', 'too_close', 'fail', 'not_run']);
-const ruleKey = z.enum(['us_97_307', 'itu_category_a', 'at_afv_17', 'strictest']);
 
 const point = z.object({
   id,
   position: z.number().int(),
-  quantityKey: z.string(),
+  quantity: quantitySchema,
   band,
   freqHz: z.number().nullable(),
   lower: z.number().nullable(),
@@ -20,6 +21,8 @@ const point = z.object({
   decision: z.enum(['guarded', 'simple']),
   required: z.boolean(),
   condition: z.string().nullable(),
+  supplyV: z.number().nullable(),
+  method: z.string(),
 });
 
 const reading = z.object({
@@ -57,41 +60,10 @@ const keptPoint = z.object({
   n: z.number().int(),
   lower: z.number().nullable(),
   upper: z.number().nullable(),
-  ruleKey: ruleKey.nullable(),
+  ruleKey: z.string().nullable(),
   ruleText: z.string(),
   pConform: z.number().nullable(),
   concession: z.string().nullable(),
-});
-
-const product = z.object({
-  freqHz: z.number(),
-  levelDbm: z.number(),
-  meterDbc: z.number(),
-  unitDbc: z.number(),
-});
-
-/** What is kept of a sweep besides its file. */
-export const keptSweepSchema = z.object({
-  understood: z.object({
-    points: z.number().int(),
-    spanHz: z.tuple([z.number(), z.number()]),
-    rbwHz: z.number().nullable(),
-    detector: z.string().nullable(),
-    units: z.object({ freq: z.string(), level: z.string().nullable() }),
-    columns: z.array(z.string()),
-    separator: z.string(),
-    decimal: z.string(),
-    encoding: z.string(),
-  }),
-  notes: z.array(z.string()),
-  analysis: z.object({
-    fundamental: z.object({ freqHz: z.number(), levelDbm: z.number(), unitDbm: z.number() }),
-    harmonics: z.array(product.extend({ order: z.number().int(), atMost: z.boolean() })),
-    notCovered: z.array(z.object({ order: z.number().int(), reason: z.string() })),
-    noiseFloorDbm: z.number(),
-    others: z.array(product),
-  }),
-  trace: z.array(z.tuple([z.number(), z.number()])),
 });
 
 const sweep = keptSweepSchema.extend({ id, band: z.string(), fileName: z.string(), at: moment });
@@ -136,11 +108,14 @@ export const stationSchema = z.object({
   sheet: z.object({
     points: z.array(point),
     readings: z.array(reading),
-    ruleKey,
+    concessions: z.array(z.object({ testPointId: id, reason: z.string() })),
+    rule: chosenRuleSchema,
     context: z.object({
       destinationCountry: z.string().nullable(),
       region: z.union([z.literal(1), z.literal(2), z.literal(3)]).nullable(),
       supplyV: z.number().nullable(),
+      ambientC: z.number().nullable(),
+      outputStage: outputStageSchema.nullable(),
       testedOn: z.string(),
     }),
   }),

@@ -90,11 +90,8 @@ const revisionId = orNone(z.coerce.number().int().positive());
 const column = orNone(z.coerce.number().int().nonnegative());
 
 /** What a form leaves empty is not hinted at. */
-const choice = <T extends [string, ...string[]]>(...values: T) =>
-  z
-    .enum(['', ...values])
-    .transform((value) => (value === '' ? null : value))
-    .nullish();
+const choice = <T extends string>(...values: [T, ...T[]]) =>
+  z.union([z.literal('').transform(() => null), z.enum(values)]).nullish();
 
 const yes = z.union([
   z.boolean(),

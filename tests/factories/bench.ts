@@ -1,4 +1,4 @@
-import type { InstrumentSpec, PathSpec } from '~/domain/bench/types';
+import type { InstrumentCalibration, InstrumentSpec, PathSpec } from '~/domain/bench/types';
 import type { Db } from '~/server/db/client';
 import { models, testPlanRevisions, testPoints, units, works } from '~/server/db/schema';
 import { createInstrument } from '~/server/services/bench/create-instrument';
@@ -11,6 +11,20 @@ type NewPoint = Omit<typeof testPoints.$inferInsert, 'testPlanRevisionId' | 'pos
 /** A call on behalf of a person. */
 export function callAs(db: Db, userId: number, now = new Date('2027-03-09T13:00:00Z')): CallContext {
   return { db, actor: { kind: 'user', userId }, now };
+}
+
+/** A calibration to 0.2 dB that holds. */
+export function buildCalibration(change: Partial<InstrumentCalibration> = {}): InstrumentCalibration {
+  return {
+    expanded: 0.2,
+    unit: 'dB',
+    k: 2,
+    calibratedOn: '2026-12-31',
+    dueOn: '2027-12-31',
+    laboratory: null,
+    certificateNumber: null,
+    ...change,
+  };
 }
 
 /** A power meter, analyser and counter in one, good to half a dB. */
@@ -35,7 +49,8 @@ export function buildInstrumentSpec(change: Partial<InstrumentSpec> = {}): Instr
     flatnessDb: 0.4,
     vswr: 1.2,
     ownDistortionDbc: -80,
-    calibration: { expanded: 0.2, unit: 'dB', k: 2, dueOn: '2027-12-31' },
+    detector: null,
+    calibration: buildCalibration(),
     ...change,
   };
 }
@@ -43,8 +58,10 @@ export function buildInstrumentSpec(change: Partial<InstrumentSpec> = {}): Instr
 /** A 40 dB tap of a dummy load, from 1 to 300 MHz. */
 export function buildPathSpec(): PathSpec {
   return {
+    direction: 'to_instrument',
     parts: [
       {
+        partNumber: null,
         name: '50 Ω dummy load, 40 dB tap',
         loss: [
           [1e6, 40.2],

@@ -1,12 +1,20 @@
 import { describe, expect, it } from 'vitest';
 import { bandOf, bandOfEmission } from '~/domain/bench/bands';
-import { limitDbc, ruleForDestination } from '~/domain/bench/limit-rules';
-import type { LimitRuleKey } from '~/domain/bench/limit-rules';
+import { limitDbc, referenceBandwidthHz, ruleByKey, ruleForDestination } from '~/domain/bench/limit-rules';
+import type { ChosenRule } from '~/domain/bench/limit-rules';
 import { judge } from '~/domain/bench/decision';
 import type { BandKey, Region } from '~/domain/bench/types';
 
-function limit(rule: LimitRuleKey, powerW: number, txFreqHz: number, productFreqHz = 2 * txFreqHz) {
-  const result = limitDbc(rule, { powerW, txFreqHz, productFreqHz });
+const today = '2027-03-09';
+
+function chosen(key: string): ChosenRule {
+  const rule = key === 'strictest' ? ruleForDestination(null, today) : ruleByKey(key);
+  if (rule === null) throw new Error(`There is no rule ${key}.`);
+  return rule;
+}
+
+function limit(key: string, powerW: number, txFreqHz: number, productFreqHz = 2 * txFreqHz) {
+  const result = limitDbc(chosen(key), { powerW, txFreqHz, productFreqHz });
   if (!result.ok) throw new Error(result.reason);
   return result;
 }
@@ -51,6 +59,38 @@ describe('47 CFR 97.307(e): 30 to 225 MHz (text read; the piecewise form read in
 
   it('is −16.02 dBm at 5 W', () => {
     expect(limit('us_97_307', 5, 50.1e6).limitDbm).toBeCloseTo(-16.02, 2);
+  });
+});
+
+describe('47 CFR 97.307(d) for transmitters installed by 1 January 2003 (text read)', () => {
+  it.each([
+    [4.99, 30],
+    [5, 40],
+    [400, 40],
+    // 13 + 10·lg P binds above 500 W (read in quotation).
+    [1000, 43],
+  ])('%d W: %d dB', (powerW, db) => {
+    expect(-limit('us_97_307_before_2003', powerW, 7.03e6).limitDbc).toBeCloseTo(db, 1);
+  });
+
+  it('is for reference alone: no unit is judged by it', () => {
+    for (const country of ['US', 'DE', null]) {
+      const rules = ruleForDestination(country, today).rules.map(({ key }) => key);
+      expect(rules).not.toContain('us_97_307_before_2003');
+    }
+  });
+});
+
+describe('reference bandwidths of the Radio Regulations, Appendix 3 (from memory)', () => {
+  it.each([
+    [100e3, 1e3],
+    [150e3, 10e3],
+    [29.9e6, 10e3],
+    [30e6, 100e3],
+    [999e6, 100e3],
+    [1e9, 1e6],
+  ])('at %d Hz: %d Hz', (freqHz, bandwidthHz) => {
+    expect(referenceBandwidthHz(freqHz)).toBe(bandwidthHz);
   });
 });
 
@@ -140,8 +180,8 @@ describe('Austria, AFV § 17: by the frequency of the product (text read; f/35 i
   });
 
   it('says nothing without the frequency of the product or below 150 kHz', () => {
-    expect(limitDbc('at_afv_17', { powerW: 5, txFreqHz: 7e6, productFreqHz: null }).ok).toBe(false);
-    expect(limitDbc('at_afv_17', { powerW: 5, txFreqHz: 7e6, productFreqHz: 100e3 }).ok).toBe(false);
+    expect(limitDbc(chosen('at_afv_17'), { powerW: 5, txFreqHz: 7e6, productFreqHz: null }).ok).toBe(false);
+    expect(limitDbc(chosen('at_afv_17'), { powerW: 5, txFreqHz: 7e6, productFreqHz: 100e3 }).ok).toBe(false);
   });
 });
 
@@ -153,7 +193,7 @@ describe('rule by destination', () => {
     ['DE', 'itu_category_a'],
     [null, 'strictest'],
   ])('%s: %s', (country, rule) => {
-    expect(ruleForDestination(country)).toBe(rule);
+    expect(ruleForDestination(country, today).key).toBe(rule);
   });
 });
 

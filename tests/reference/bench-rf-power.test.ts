@@ -85,6 +85,7 @@ describe('diode detectors', () => {
 
 describe('attenuator chains (computed)', () => {
   const pad = (name: string, lossDb: number): PathPart => ({
+    partNumber: null,
     name,
     loss: [
       [1e6, lossDb],
@@ -98,8 +99,8 @@ describe('attenuator chains (computed)', () => {
   });
 
   it('37 dBm less 30 dB is 7 dBm; a meter at 7.00 behind 20.1 + 9.9 dB means 37.00 dBm', () => {
-    const one = pathLoss({ parts: [pad('a', 30)] }, 7e6);
-    const two = pathLoss({ parts: [pad('a', 20.1), pad('b', 9.9)] }, 7e6);
+    const one = pathLoss({ direction: 'to_instrument', parts: [pad('a', 30)] }, 7e6);
+    const two = pathLoss({ direction: 'to_instrument', parts: [pad('a', 20.1), pad('b', 9.9)] }, 7e6);
     expect(one).toEqual({ ok: true, lossDb: 30 });
     expect(two.ok && 7 + two.lossDb).toBeCloseTo(37, 9);
   });

@@ -14,6 +14,8 @@ interface Props {
 }
 
 const follows: Record<RunResult['result'], string> = {
+  passed_by_concession:
+    'The unit goes on to packing, and its certificate prints the concession with its reason.',
   passed: 'The unit goes on to packing, and its certificate can be issued.',
   undecided: 'The unit is not released. Read more often, measure better, or mend it, and open a new run.',
   failed: 'The unit goes into rework, with these points as its cause.',

@@ -3,7 +3,6 @@ import { Checkbox } from '~/components/ui/Checkbox';
 import { Select } from '~/components/ui/Select';
 import { formatAtMeter, formatNumber } from '~/domain/bench/format';
 import type { PointJudgement } from '~/domain/bench/judge-point';
-import { quantityOf } from '~/domain/bench/quantities';
 import type { StationReading } from '~/schemas/bench-station';
 import type { Equipment, Point } from './run-sheet';
 import type { Chosen } from './use-equipment';
@@ -27,12 +26,12 @@ const gradeWords = { accredited: 'accredited', checked: 'checked', unchecked: 'u
 /** What the reading in hand was read with, all readings of its point, and its uncertainty budget. */
 export function ReadingDetail(props: Props) {
   const { point, judgement, readings, equipment, chosen, editable, onChoose, onReadAgain, onVoid } = props;
-  const quantity = quantityOf(point.quantityKey);
+  const { quantity } = point;
   const counted = readings.filter(({ voided }) => !voided);
-  const isRatio = quantity?.unit === 'dBc';
+  const isRatio = quantity.unit === 'dBc';
   return (
     <section className="sheet grid gap-4" aria-label="How it is read">
-      {editable && quantity?.format !== 'yes_no' && (
+      {editable && quantity.format !== 'yes_no' && (
         <div className="grid gap-3">
           <Select
             name="instrument"
@@ -47,7 +46,7 @@ export function ReadingDetail(props: Props) {
               label: `${number} · ${name} · ${gradeWords[spec.grade]}`,
             }))}
           />
-          {quantity?.pathApplies === true && (
+          {quantity.path !== 'none' && (
             <Select
               name="path"
               label="Path"
@@ -77,14 +76,10 @@ export function ReadingDetail(props: Props) {
           {readings.map((reading) => (
             <li key={`${reading.readingNo} ${reading.id}`} className="flex flex-wrap items-center gap-x-3">
               <span className={`font-mono ${reading.voided ? 'line-through' : ''}`}>
-                {formatAtMeter(reading.value, reading.quantityKey)}
+                {formatAtMeter(reading.value, quantity)}
               </span>
               <span className="quiet">
-                {[
-                  reading.source === 'sweep' ? 'from a sweep' : `“${reading.enteredText}”`,
-                  reading.instrumentNumber,
-                  reading.pathNumber,
-                ]
+                {[sourceText(reading), reading.instrumentNumber, reading.pathNumber]
                   .filter((text) => text !== null)
                   .join(' · ')}
               </span>
@@ -108,6 +103,14 @@ export function ReadingDetail(props: Props) {
       {judgement.uComponents.length > 0 && <Budget judgement={judgement} />}
     </section>
   );
+}
+
+/** What was entered, and how it came here unless somebody typed it. */
+function sourceText({ source, enteredText }: StationReading): string {
+  if (source === 'sweep') return 'from a sweep';
+  const entered = `“${enteredText}”`;
+  if (source === 'wire') return `${entered}, from a script`;
+  return source === 'history' ? `${entered}, from an old sheet` : entered;
 }
 
 function Budget({ judgement }: { judgement: PointJudgement }) {

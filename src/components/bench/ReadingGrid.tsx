@@ -3,7 +3,6 @@ import type { KeyboardEvent } from 'react';
 import { VerdictMark } from '~/components/ui/VerdictMark';
 import { formatValue } from '~/domain/bench/format';
 import { pointLabel } from '~/domain/bench/judge-run';
-import { quantityOf } from '~/domain/bench/quantities';
 import { newestReading } from '~/domain/bench/run-entry';
 import type { Station } from '~/schemas/bench-station';
 import { emptyLimitOf, entryOrder, needOf, neighbour, notesOf, unitHint } from './run-sheet';
@@ -82,7 +81,7 @@ export function ReadingGrid({ grid, station, judged, cells, entries, order, edit
                   {point !== undefined && (
                     <Cell
                       {...{ point, station, judged, cells, entries, editable, onKeyDown }}
-                      label={row.isLabelled ? quantityOf(point.quantityKey)?.label : undefined}
+                      label={row.isLabelled ? point.quantity.label : undefined}
                       register={(input) => {
                         if (input === null) inputs.current.delete(point.id);
                         else inputs.current.set(point.id, input);
@@ -127,7 +126,7 @@ function Cell({ point, label, station, judged, cells, entries, editable, onKeyDo
   const newest = newestReading(station.sheet.readings, point.id);
   const value = judgement?.value ?? null;
   const atMost = judgement?.atMost === true ? '≤ ' : '';
-  const rest = value === null ? '' : `${atMost}${formatValue(value, point.quantityKey)}`;
+  const rest = value === null ? '' : `${atMost}${formatValue(value, point.quantity)}`;
   const editing = cells.draft ?? (newest === undefined ? '' : textOf(newest));
   const wrong = unread !== undefined || refused !== undefined;
   const noteId = `note-${point.id}`;
@@ -160,7 +159,7 @@ function Cell({ point, label, station, judged, cells, entries, editable, onKeyDo
           spellCheck={false}
           enterKeyHint="next"
           maxLength={60}
-          placeholder={unitHint(point.quantityKey)}
+          placeholder={unitHint(point.quantity)}
           value={isInHand && editable ? editing : (unread?.text ?? refused?.entry.text ?? rest)}
           onFocus={() => {
             cells.enter(point.id);

@@ -5,7 +5,6 @@ import { formatAtMeter, formatFrequency, formatNumber, formatValue } from '~/dom
 import type { PointJudgement } from '~/domain/bench/judge-point';
 import { pointLabel } from '~/domain/bench/judge-run';
 import { limitBar } from '~/domain/bench/limit-bar';
-import { quantityOf } from '~/domain/bench/quantities';
 import { needOf, splitValue, uncertaintyText } from './run-sheet';
 import type { Point } from './run-sheet';
 import type { Unread } from './use-cells';
@@ -23,12 +22,11 @@ const verdictWords = { pass: 'Pass', too_close: '', fail: 'Fail', not_run: '' } 
 
 /** The reading in hand, to be read from a metre away. */
 export function ReadingInHand({ point, judgement, unread, refused, onConfirm }: Props) {
-  const { quantityKey } = point;
-  const quantity = quantityOf(quantityKey);
+  const { quantity } = point;
   const { value } = judgement;
-  const split = value === null ? null : splitValue(value, quantityKey);
-  const bar = limitBar(judgement, quantity?.unit ?? '');
-  const uncertainty = uncertaintyText(judgement);
+  const split = value === null ? null : splitValue(value, quantity);
+  const bar = limitBar(judgement, quantity.unit);
+  const uncertainty = uncertaintyText(judgement, quantity);
   return (
     <section className="sheet bench-hand" aria-label="The reading in hand" aria-live="polite">
       <p className="quiet">
@@ -46,8 +44,8 @@ export function ReadingInHand({ point, judgement, unread, refused, onConfirm }: 
           <LimitBar
             bar={bar}
             verdict={judgement.verdict}
-            quantityKey={quantityKey}
-            label={`${value === null ? '' : formatValue(value, quantityKey)}, ${uncertainty}, ${needOf(point, judgement)}: ${judgement.marginText}`}
+            quantity={quantity}
+            label={`${value === null ? '' : formatValue(value, quantity)}, ${uncertainty}, ${needOf(point, judgement)}: ${judgement.marginText}`}
           />
         </div>
       )}
@@ -58,8 +56,8 @@ export function ReadingInHand({ point, judgement, unread, refused, onConfirm }: 
       {judgement.pConform !== null && judgement.verdict !== 'not_run' && (
         <p className="quiet">Probability of conformance {formatNumber(judgement.pConform * 100, 1)} %</p>
       )}
-      {judgement.atMeter !== null && quantity?.pathApplies === true && (
-        <p className="quiet">{formatAtMeter(judgement.atMeter, quantityKey)} at the meter</p>
+      {judgement.atMeter !== null && quantity.path !== 'none' && (
+        <p className="quiet">{formatAtMeter(judgement.atMeter, quantity)} at the meter</p>
       )}
       <p className="quiet">
         {judgement.ruleText ??

@@ -3,6 +3,7 @@ import { useEffect, useRef, useState } from 'react';
 import { Button } from '~/components/ui/Button';
 import { Notice } from '~/components/ui/Notice';
 import { pointLabel } from '~/domain/bench/judge-run';
+import { knownQuantity } from '~/domain/bench/quantities';
 import { paths } from '~/lib/paths';
 import { stationSchema } from '~/schemas/bench-station';
 import type { Station as StationData, StationReading } from '~/schemas/bench-station';
@@ -43,6 +44,9 @@ export function Station(props: Props) {
   );
 }
 
+const POWER = knownQuantity('rf_power');
+const HARMONIC = knownQuantity('harmonic_2');
+
 type Asking = { kind: 'keys' } | { kind: 'close' } | { kind: 'void'; reading: StationReading };
 
 function Bench({ station: first, equipment, personId, mayTest, formKey }: Props) {
@@ -74,7 +78,7 @@ function Bench({ station: first, equipment, personId, mayTest, formKey }: Props)
   const readings = cells.shown.sheet.readings.filter(({ testPointId }) => testPointId === point?.id);
   const newest = readings.findLast(({ voided, id }) => !voided && id > 0);
   const judgement = point === undefined ? undefined : judged.judgements.get(point.id);
-  const chosen = chosenFor(point?.quantityKey ?? 'rf_power');
+  const chosen = chosenFor(point?.quantity ?? POWER);
   const against = againstClosing(judged.result, coming.length, cells.unread.size);
 
   const leave = (): void => {
@@ -118,7 +122,7 @@ function Bench({ station: first, equipment, personId, mayTest, formKey }: Props)
               if (changed(texts, stored)) conditions.mutate(texts);
             }}
           />
-          <BeforeYouKey {...{ station, equipment }} pathRevisionId={chosenFor('rf_power').pathRevisionId} />
+          <BeforeYouKey {...{ station, equipment }} pathRevisionId={chosenFor(POWER).pathRevisionId} />
         </div>
         <div className="bench-main">
           <div className="mb-3 flex flex-wrap items-center justify-between gap-3">
@@ -182,10 +186,10 @@ function Bench({ station: first, equipment, personId, mayTest, formKey }: Props)
             </p>
           )}
           <SweepPanel
-            {...{ station, editable, fileInput }}
+            {...{ station, equipment, editable, fileInput }}
             judgements={judged.judgements}
             band={point?.band ?? null}
-            chosen={chosenFor('harmonic_2')}
+            chosen={chosenFor(HARMONIC)}
             onRead={refetch}
           />
         </div>
@@ -200,7 +204,7 @@ function Bench({ station: first, equipment, personId, mayTest, formKey }: Props)
             <div className="bench-detail grid gap-5">
               <ReadingDetail
                 {...{ point, judgement, readings, equipment, chosen, editable }}
-                onChoose={(next) => choose(point.quantityKey, next)}
+                onChoose={(next) => choose(point.quantity.key, next)}
                 onReadAgain={cells.readAgain}
                 onVoid={askVoid}
                 onHoldAttenuation={cells.holdAttenuation}

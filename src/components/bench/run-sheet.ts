@@ -1,10 +1,10 @@
 import { BAND_KEYS, bandLabel } from '~/domain/bench/bands';
 import { efficiency } from '~/domain/bench/derived';
-import { formatAtMeter, formatNumber, formatValue } from '~/domain/bench/format';
+import { formatAtMeter, formatNumber, formatUncertainty, formatValue } from '~/domain/bench/format';
 import type { PointJudgement } from '~/domain/bench/judge-point';
 import { judgeRun } from '~/domain/bench/judge-run';
 import { limitDbc } from '~/domain/bench/limit-rules';
-import { QUANTITIES, quantityOf } from '~/domain/bench/quantities';
+import { compareQuantities } from '~/domain/bench/quantities';
 import type { Quantity } from '~/domain/bench/quantities';
 import { newestReading, readCell } from '~/domain/bench/run-entry';
 import type { CellResult } from '~/domain/bench/run-entry';
@@ -58,19 +58,21 @@ export interface Grid {
 /** Bands down, quantities across, in the order of the plan; what has no band stands in rows beneath. */
 export function gridOf(points: readonly Point[]): Grid {
   const banded = points.filter(({ band }) => band !== null);
-  const columns = QUANTITIES.filter(({ key }) =>
-    (banded.length > 0 ? banded : points).some(({ quantityKey }) => quantityKey === key),
-  );
+  const columns = [
+    ...new Map(
+      (banded.length > 0 ? banded : points).map(({ quantity }) => [quantity.key, quantity]),
+    ).values(),
+  ].sort(compareQuantities);
   const bands = [...new Set(banded.flatMap(({ band }) => (band === null ? [] : [band])))];
   const rows = bands.flatMap((band) => {
     const own = banded.filter((point) => point.band === band);
     const depth = Math.max(
-      ...columns.map(({ key }) => own.filter(({ quantityKey }) => quantityKey === key).length),
+      ...columns.map(({ key }) => own.filter(({ quantity }) => quantity.key === key).length),
     );
     return Array.from({ length: depth }, (_, layer) => ({
       key: `${band} ${layer}`,
       label: bandLabel(band) + (layer === 0 ? '' : ` (${layer + 1})`),
-      cells: columns.map(({ key }) => own.filter(({ quantityKey }) => quantityKey === key)[layer]),
+      cells: columns.map(({ key }) => own.filter(({ quantity }) => quantity.key === key)[layer]),
       isLabelled: false,
     }));
   });
@@ -114,38 +116,46 @@ export function neighbour(
 }
 
 /** The unit that a column remembers: of its newest typed entry, else the quantity's own. */
-export function columnUnitOf(readings: readonly StationReading[], quantityKey: string): string | undefined {
+export function columnUnitOf(readings: readonly StationReading[], quantity: Quantity): string | undefined {
   const typed = readings
-    .filter((reading) => reading.quantityKey === quantityKey && reading.source === 'typed')
+    .filter((reading) => reading.quantityKey === quantity.key && reading.source === 'typed')
     .sort((a, b) => (a.at < b.at ? 1 : -1))[0];
-  return typed?.enteredUnit ?? quantityOf(quantityKey)?.defaultUnit ?? undefined;
+  return typed?.enteredUnit ?? quantity.defaultUnit ?? undefined;
 }
 
 /** What may be typed into a column, shown in its empty cells. */
-export function unitHint(quantityKey: string): string {
-  const quantity = quantityOf(quantityKey);
-  switch (quantity?.format) {
+export function unitHint(quantity: Quantity): string {
+  switch (quantity.format) {
     case 'power':
       return 'dBm or W';
     case 'ratio':
-      return quantityKey === 'spurious' ? 'dBc @ MHz' : 'dBc or dBm';
+      return quantity.key === 'spurious' ? 'dBc @ MHz' : 'dBc or dBm';
     case 'current':
       return 'mA or A';
     case 'frequency_error':
       return 'Hz';
     case 'yes_no':
       return 'yes or no';
-    case undefined:
-      return '';
+    case 'level':
+    case 'voltage':
+    case 'frequency':
+    case 'time':
+    case 'temperature':
+    case 'percent':
+    case 'number':
+      return quantity.entryUnits.join(' or ');
   }
 }
 
 /** Reads an entry as the server will. */
 export function readEntry(station: Station, equipment: Equipment, point: Point, entry: Entry): CellResult {
   const path = pathOf(station, equipment, entry.pathRevisionId);
+  const instrument = equipment.instruments.find(
+    ({ revisionId }) => revisionId === entry.instrumentRevisionId,
+  );
   return readCell(
     point,
-    { ...entry, path },
+    { ...entry, path, detector: instrument?.spec.detector ?? null },
     {
       readings: station.sheet.readings,
       ratedPowerW: station.unit.ratedPowerW,
@@ -173,7 +183,7 @@ export function withEntry(station: Station, equipment: Equipment, entry: Entry):
     id: corrected?.id ?? -point.id,
     testPointId: point.id,
     readingNo: corrected?.readingNo ?? nextNo(readings, point.id),
-    quantityKey: point.quantityKey,
+    quantityKey: point.quantity.key,
     band: point.band,
     freqHz: read.freqHz,
     enteredText: entry.text,
@@ -243,21 +253,20 @@ export function needOf(
   judgement: PointJudgement | undefined,
   emptyLimit: number | null = null,
 ): string {
-  const { quantityKey } = point;
+  const { quantity } = point;
   const lower = judgement?.lower ?? point.lower;
   const upper = judgement?.upper ?? emptyLimit ?? point.upper;
-  const quantity = quantityOf(quantityKey);
-  if (quantity?.format === 'yes_no') return 'need yes';
-  if (quantity?.format === 'ratio') {
+  if (quantity.format === 'yes_no') return 'need yes';
+  if (quantity.format === 'ratio') {
     return upper === null ? 'limit by the power' : `need ${formatNumber(upper, 1)}`;
   }
   if (lower !== null && upper !== null) {
     return lower === -upper
       ? `within ±${formatNumber(upper, 0)}`
-      : rangeText(bare(lower, quantityKey), bare(upper, quantityKey));
+      : rangeText(bare(lower, quantity), bare(upper, quantity));
   }
-  if (lower !== null) return `min ${bare(lower, quantityKey)}`;
-  return upper === null ? 'no limit' : `max ${bare(upper, quantityKey)}`;
+  if (lower !== null) return `min ${bare(lower, quantity)}`;
+  return upper === null ? 'no limit' : `max ${bare(upper, quantity)}`;
 }
 
 /** `4.00 to 5.50 W`: a unit that both have is said once. */
@@ -272,19 +281,19 @@ export function emptyLimitOf(
   { sheet }: Station,
   all: ReadonlyMap<number, PointJudgement>,
 ): number | null {
-  const order = quantityOf(point.quantityKey)?.order ?? null;
-  const power = sheet.points.find((each) => each.band === point.band && each.quantityKey === 'rf_power');
+  const { order } = point.quantity;
+  const power = sheet.points.find((each) => each.band === point.band && each.quantity.key === 'rf_power');
   const powerW = power === undefined ? null : (all.get(power.id)?.value ?? null);
   if (point.limitRule !== 'spurious' || order === null || powerW === null || point.freqHz === null)
     return null;
   const args = { powerW, txFreqHz: point.freqHz, productFreqHz: order * point.freqHz };
-  const limit = limitDbc(sheet.ruleKey, args);
+  const limit = limitDbc(sheet.rule, args);
   if (!limit.ok) return null;
   return point.upper === null ? limit.limitDbc : Math.min(point.upper, limit.limitDbc);
 }
 
-function bare(value: number, quantityKey: string): string {
-  return formatValue(value, quantityKey).replace('+', '');
+function bare(value: number, quantity: Quantity): string {
+  return formatValue(value, quantity).replace('+', '');
 }
 
 /** Beneath the need: the meter for powers, efficiency for currents, how many readings. */
@@ -296,10 +305,10 @@ export function notesOf(
 ): string[] {
   const notes: string[] = [];
   if (judgement === undefined || judgement.atMeter === null) return notes;
-  if (point.quantityKey === 'rf_power') {
-    notes.push(`${formatAtMeter(judgement.atMeter, point.quantityKey)} at meter`);
+  if (point.quantity.key === 'rf_power') {
+    notes.push(`${formatAtMeter(judgement.atMeter, point.quantity)} at meter`);
   }
-  if (point.quantityKey === 'current_key_down' && judgement.value !== null) {
+  if (point.quantity.key === 'current_key_down' && judgement.value !== null) {
     const share = efficiencyOf(point, judgement.value, station, all);
     if (share !== null) notes.push(`η ${formatNumber(share * 100, 1)} %`);
   }
@@ -313,7 +322,7 @@ function efficiencyOf(
   { sheet }: Station,
   all: ReadonlyMap<number, PointJudgement>,
 ): number | null {
-  const power = sheet.points.find((each) => each.band === point.band && each.quantityKey === 'rf_power');
+  const power = sheet.points.find((each) => each.band === point.band && each.quantity.key === 'rf_power');
   const powerW = power === undefined ? null : (all.get(power.id)?.value ?? null);
   const { supplyV } = sheet.context;
   if (powerW === null || supplyV === null || currentA <= 0) return null;
@@ -321,16 +330,15 @@ function efficiencyOf(
 }
 
 /** `±0.9 dB (k = 2)`; a power in dB, because its uncertainty is. */
-export function uncertaintyText({ U, k, uUnit }: PointJudgement): string {
+export function uncertaintyText({ U, k, uUnit }: PointJudgement, { format }: Quantity): string {
   if (U === null || uUnit === null) return '';
-  const size =
-    uUnit === 'dB' ? `${formatNumber(U, 1)} dB` : bare(U, uUnit === 'A' ? 'current_rest' : 'frequency_error');
+  const size = formatUncertainty(U, uUnit, format);
   return `±${size} (k = ${k === null ? '?' : formatNumber(k, k === 2 ? 0 : 2)})`;
 }
 
 /** A value with its unit apart, for the large figure. */
-export function splitValue(value: number, quantityKey: string): { figure: string; unit: string } {
-  const text = formatValue(value, quantityKey);
+export function splitValue(value: number, quantity: Quantity): { figure: string; unit: string } {
+  const text = formatValue(value, quantity);
   const at = text.lastIndexOf(' ');
   return at < 0 ? { figure: text, unit: '' } : { figure: text.slice(0, at), unit: text.slice(at + 1) };
 }

@@ -1,6 +1,6 @@
 import { useRef, useState } from 'react';
 import { newestReading } from '~/domain/bench/run-entry';
-import { quantityOf } from '~/domain/bench/quantities';
+import type { Quantity } from '~/domain/bench/quantities';
 import type { Station, StationReading } from '~/schemas/bench-station';
 import { columnUnitOf, readEntry, withEntry } from './run-sheet';
 import type { Entry, Equipment, Point } from './run-sheet';
@@ -21,7 +21,7 @@ interface Given {
   station: Station;
   equipment: Equipment;
   entries: Entries;
-  chosenFor: (quantityKey: string) => Chosen;
+  chosenFor: (quantity: Quantity) => Chosen;
   editable: boolean;
 }
 
@@ -46,9 +46,9 @@ export function useCells({ station, equipment, entries, chosenFor, editable }: G
   const entryOf = (point: Point, text: string, confirmed: boolean): Entry => ({
     testPointId: point.id,
     text: text.trim(),
-    columnUnit: columnUnitOf(readings, point.quantityKey),
+    columnUnit: columnUnitOf(readings, point.quantity),
     again,
-    ...chosenFor(point.quantityKey),
+    ...chosenFor(point.quantity),
     confirmed,
     attenuationHeld: newestReading(readings, point.id)?.attenuationHeld ?? false,
     version: versionOf(newestReading(readings, point.id)),
@@ -140,7 +140,7 @@ function versionOf(reading: StationReading | undefined): number {
 
 /** What was entered, with its unit, as it is edited; `51.1` in a dBc column needs no more. */
 export function textOf(reading: StationReading): string {
-  const { enteredText, enteredUnit, quantityKey } = reading;
-  if (/[a-zµ%@]/iu.test(enteredText) || quantityOf(quantityKey)?.format === 'yes_no') return enteredText;
+  const { enteredText, enteredUnit } = reading;
+  if (/[a-zµ%@]/iu.test(enteredText) || enteredUnit === 'yes/no' || enteredUnit === '1') return enteredText;
   return `${enteredText} ${enteredUnit}`;
 }

@@ -1,7 +1,7 @@
 import { useEffect, useState } from 'react';
 import { z } from 'zod';
 import { bestInstrument } from '~/domain/bench/best-instrument';
-import { quantityOf } from '~/domain/bench/quantities';
+import type { Quantity } from '~/domain/bench/quantities';
 import type { StationReading } from '~/schemas/bench-station';
 import type { Equipment } from './run-sheet';
 
@@ -29,7 +29,7 @@ export function useEquipment(
   equipment: Equipment,
   readings: readonly StationReading[],
   testedOn: string,
-): { chosenFor: (quantityKey: string) => Chosen; choose: (quantityKey: string, chosen: Chosen) => void } {
+): { chosenFor: (quantity: Quantity) => Chosen; choose: (quantityKey: string, chosen: Chosen) => void } {
   const [byQuantity, setByQuantity] = useState<Record<string, Chosen>>({});
   useEffect(() => setByQuantity(remembered()), []);
 
@@ -38,8 +38,8 @@ export function useEquipment(
       equipment.instruments.some((each) => each.revisionId === instrumentRevisionId)) &&
     (pathRevisionId === null || equipment.paths.some((each) => each.revisionId === pathRevisionId));
 
-  const chosenFor = (quantityKey: string): Chosen => {
-    const quantity = quantityOf(quantityKey);
+  const chosenFor = (quantity: Quantity): Chosen => {
+    const { key: quantityKey } = quantity;
     const kept = byQuantity[quantityKey];
     if (kept !== undefined && isInUse(kept)) return kept;
     const read = readings.findLast((reading) => reading.quantityKey === quantityKey);
@@ -47,8 +47,8 @@ export function useEquipment(
       return { instrumentRevisionId: read.instrumentRevisionId, pathRevisionId: read.pathRevisionId };
     }
     return {
-      instrumentRevisionId: bestInstrument(equipment.instruments, quantityKey, testedOn)?.revisionId ?? null,
-      pathRevisionId: quantity?.pathApplies === true ? (equipment.paths[0]?.revisionId ?? null) : null,
+      instrumentRevisionId: bestInstrument(equipment.instruments, quantity, testedOn)?.revisionId ?? null,
+      pathRevisionId: pathFor(equipment, quantity),
     };
   };
 
@@ -60,4 +60,11 @@ export function useEquipment(
       localStorage.setItem(storageName, JSON.stringify(next));
     },
   };
+}
+
+/** The first path that leads the right way for the quantity; none where a path does nothing to it. */
+function pathFor({ paths }: Equipment, { path }: Quantity): number | null {
+  if (path === 'none') return null;
+  const wanted = path === 'adds' ? 'to_instrument' : 'from_generator';
+  return paths.find(({ spec }) => spec.direction === wanted)?.revisionId ?? null;
 }

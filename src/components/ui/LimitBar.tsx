@@ -1,12 +1,13 @@
 import { formatValue } from '~/domain/bench/format';
 import type { BarZone, LimitBar as Bar } from '~/domain/bench/limit-bar';
+import type { Quantity } from '~/domain/bench/quantities';
 import type { Verdict } from '~/domain/bench/types';
 
 interface Props {
   bar: Bar;
   verdict: Verdict;
   /** Whose digits and unit the limits are lettered in. */
-  quantityKey: string;
+  quantity: Pick<Quantity, 'format' | 'unit'>;
   /** The same in words, for who does not see it: "−51.1 dBc, ±0.9 dB, limit −47.2 dBc: pass". */
   label: string;
   /** Without its lettering: a row among others. */
@@ -25,7 +26,7 @@ const DOTS = {
 } as const;
 
 /** A verdict as a picture: zones, limits, the reading and the whisker of its expanded uncertainty. */
-export function LimitBar({ bar, verdict, quantityKey, label, compact = false }: Props) {
+export function LimitBar({ bar, verdict, quantity, label, compact = false }: Props) {
   const top = compact ? 5 : 24;
   const height = compact ? 16 : 22;
   const middle = top + height / 2;
@@ -47,7 +48,7 @@ export function LimitBar({ bar, verdict, quantityKey, label, compact = false }: 
           className={FILLS[zone.kind]}
         />
       ))}
-      {letterLimits(bar, quantityKey).map((limit) => (
+      {letterLimits(bar, quantity).map((limit) => (
         <g key={limit.at}>
           <line
             x1={percent(limit.at)}
@@ -104,12 +105,12 @@ function percent(fraction: number): string {
 type Anchor = 'start' | 'middle' | 'end';
 
 /** Each limit with its words; two that stand close have theirs on their outer sides. */
-function letterLimits(bar: Bar, quantityKey: string): { at: number; text: string; anchor: Anchor }[] {
+function letterLimits(bar: Bar, quantity: Props['quantity']): { at: number; text: string; anchor: Anchor }[] {
   const [first, second] = bar.limits;
   const crowded = first !== undefined && second !== undefined && Math.abs(second.at - first.at) < 0.4;
   return bar.limits.map(({ at, value, side }) => {
     const word = bar.limits.length === 1 ? 'limit' : side === 'lower' ? 'least' : 'most';
-    const text = `${word} ${formatValue(value, quantityKey)}`;
+    const text = `${word} ${formatValue(value, quantity)}`;
     if (crowded) return { at, text, anchor: side === 'lower' ? 'end' : 'start' };
     return { at, text, anchor: at < 0.2 ? 'start' : at > 0.8 ? 'end' : 'middle' };
   });

@@ -1,5 +1,6 @@
 import { expect, it } from 'vitest';
 import { bestInstrument } from './best-instrument';
+import { knownQuantity } from './quantities';
 import type { InstrumentSpec } from './types';
 
 const today = '2027-03-09';
@@ -9,14 +10,22 @@ function instrument(name: string, changes: Partial<InstrumentSpec>): { name: str
     name,
     spec: {
       ...{ grade: 'accredited', checkedAgainst: null, quantities: {}, linearityDb: null, flatnessDb: null },
-      ...{ vswr: null, ownDistortionDbc: null, calibration: null },
+      ...{ vswr: null, ownDistortionDbc: null, detector: null, calibration: null },
       ...changes,
     },
   };
 }
 
 const power = { rf_power: { accuracy: [], resolution: null } };
-const due = (dueOn: string) => ({ expanded: 0.1, unit: 'dB' as const, k: 2, dueOn });
+const due = (dueOn: string) => ({
+  expanded: 0.1,
+  unit: 'dB' as const,
+  k: 2,
+  calibratedOn: null,
+  dueOn,
+  laboratory: null,
+  certificateNumber: null,
+});
 const pocket = instrument('pocket', { grade: 'unchecked', quantities: power });
 const overdue = instrument('overdue', { quantities: power, linearityDb: 1, calibration: due('2027-03-08') });
 const good = instrument('good', { quantities: power, linearityDb: 0.3, calibration: due(today) });
@@ -29,5 +38,5 @@ it.each([
   ['a ratio only with a stated linearity', [pocket, overdue], 'harmonic_2', 'overdue'],
   ['none where none reads it', [pocket, good], 'current_rest', undefined],
 ] as const)('takes %s', (_, instruments, quantityKey, name) => {
-  expect(bestInstrument(instruments, quantityKey, today)?.name).toBe(name);
+  expect(bestInstrument(instruments, knownQuantity(quantityKey), today)?.name).toBe(name);
 });

@@ -1,4 +1,4 @@
-import { quantityOf } from './quantities';
+import type { Quantity } from './quantities';
 import type { InstrumentSpec } from './types';
 
 const gradeRank = { accredited: 0, checked: 1, unchecked: 2 } as const;
@@ -13,12 +13,12 @@ const overdueRank = 3;
  */
 export function bestInstrument<T extends { spec: InstrumentSpec }>(
   instruments: readonly T[],
-  quantityKey: string,
+  quantity: Quantity,
   testedOn: string,
 ): T | undefined {
-  const isRatio = quantityOf(quantityKey)?.unit === 'dBc';
+  const isRatio = quantity.unit === 'dBc';
   const fits = instruments.filter(({ spec }) =>
-    isRatio ? spec.linearityDb !== null : spec.quantities[quantityKey] !== undefined,
+    isRatio ? spec.linearityDb !== null : spec.quantities[quantity.key] !== undefined,
   );
   const rankOf = ({ spec }: T): number =>
     gradeRank[spec.grade] +

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { buildBudget } from './budget';
+import { knownQuantity } from './quantities';
 import type { InstrumentSpec, PathSpec } from './types';
 
 const instrument: InstrumentSpec = {
@@ -15,12 +16,23 @@ const instrument: InstrumentSpec = {
   flatnessDb: 0.4,
   vswr: null,
   ownDistortionDbc: -70,
-  calibration: { expanded: 0.2, unit: 'dB', k: 2, dueOn: '2027-06-30' },
+  detector: null,
+  calibration: {
+    expanded: 0.2,
+    unit: 'dB',
+    k: 2,
+    calibratedOn: null,
+    laboratory: null,
+    certificateNumber: null,
+    dueOn: '2027-06-30',
+  },
 };
 
 const path: PathSpec = {
+  direction: 'to_instrument',
   parts: [
     {
+      partNumber: null,
       name: 'Tap',
       loss: [
         [1e6, 40],
@@ -37,7 +49,7 @@ const path: PathSpec = {
 
 function budget(over: Partial<Parameters<typeof buildBudget>[0]>) {
   return buildBudget({
-    quantityKey: 'harmonic_2',
+    quantity: knownQuantity('harmonic_2'),
     value: -60,
     freqHz: 7e6,
     productFreqHz: 14e6,
@@ -78,7 +90,7 @@ describe('a ratio', () => {
       [60e6, 41],
     ];
     const parts = path.parts.map((part) => ({ ...part, loss }));
-    expect(lineOf('Tap, loss difference', { path: { parts } })).toMatchObject({
+    expect(lineOf('Tap, loss difference', { path: { ...path, parts } })).toMatchObject({
       value: 0.2,
       divisor: 2,
       u: 0.1,
@@ -91,7 +103,7 @@ describe('a ratio', () => {
 });
 
 describe('a power', () => {
-  const power = { quantityKey: 'rf_power', value: 1, productFreqHz: null };
+  const power = { quantity: knownQuantity('rf_power'), value: 1, productFreqHz: null };
 
   it('takes percent and W as dB of the reading, and the calibration by its k', () => {
     expect(lineOf('Instrument specification', power)?.value).toBeCloseTo((10 / Math.LN10) * 0.05, 9);
@@ -101,7 +113,10 @@ describe('a power', () => {
   });
 
   it('has a mismatch at every joint whose two sides are known', () => {
-    const vswr = (value: number) => ({ parts: path.parts.map((part) => ({ ...part, vswr: value })) });
+    const vswr = (value: number) => ({
+      ...path,
+      parts: path.parts.map((part) => ({ ...part, vswr: value })),
+    });
     const over = { ...power, path: vswr(1.2), unitVswr: 1.5 };
     expect(lineOf('Mismatch, unit to Tap', over)?.value).toBeCloseTo(0.1594, 4);
     expect(lineOf('Mismatch, Tap to instrument', over)).toBeUndefined();

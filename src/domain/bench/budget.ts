@@ -1,6 +1,6 @@
 import { mismatchLimitsDb } from './mismatch';
 import { pathLoss } from './paths';
-import { quantityOf } from './quantities';
+import type { UncertaintyUnit } from './format';
 import type { Quantity } from './quantities';
 import type {
   InstrumentSpec,
@@ -18,13 +18,13 @@ const OWN_DISTORTION_CLEARANCE_DB = 6;
 
 /** A budget in `unit`, with its sum. */
 interface Budget extends Combined {
-  unit: 'dB' | 'A' | 'Hz';
+  unit: UncertaintyUnit;
   components: UncertaintyComponent[];
 }
 
 /** What a budget is built from. */
 interface BudgetInput {
-  quantityKey: string;
+  quantity: Quantity;
   /** At the meter, in the unit of the quantity. */
   value: number;
   /** Transmit frequency, Hz. */
@@ -51,19 +51,22 @@ function specOf(instrument: InstrumentSpec, quantity: Quantity): QuantitySpec | 
 /** A relative change in power as dB, at first order: 10/ln 10 dB each. */
 const DB_PER_NEPER = 10 / Math.LN10;
 
+const LEVEL_UNITS: ReadonlySet<Quantity['unit']> = new Set(['W', 'dBc', 'dBm', 'dB']);
+
 /**
  * A stated half-width in the unit of the budget; null where the unit does not fit the quantity.
  */
 function inBudgetUnit(spec: SpecHalfWidth, quantity: Quantity, input: BudgetInput): number | null {
   const { halfWidth, unit } = spec;
   const size = Math.abs(input.value);
-  if (unit === 'dB') return quantity.unit === 'W' || quantity.unit === 'dBc' ? halfWidth : null;
+  if (unit === 'dB') return LEVEL_UNITS.has(quantity.unit) ? halfWidth : null;
   if (quantity.unit === 'W') {
     if (unit === 'percent') return DB_PER_NEPER * (halfWidth / 100);
     if (unit === 'ppm') return DB_PER_NEPER * (halfWidth / 1e6);
     return unit === 'unit' && size > 0 ? DB_PER_NEPER * (halfWidth / size) : null;
   }
-  if (quantity.unit === 'dBc') return unit === 'unit' ? halfWidth : null;
+  // A share of a level in dB, or of an absolute temperature, is not what a data sheet means.
+  if (LEVEL_UNITS.has(quantity.unit) || quantity.unit === 'K') return unit === 'unit' ? halfWidth : null;
   if (quantity.unit === 'Hz') {
     if (unit === 'ppm') return input.freqHz === null ? null : (halfWidth / 1e6) * input.freqHz;
     return unit === 'Hz' || unit === 'unit' ? halfWidth : null;
@@ -133,7 +136,7 @@ function pathLineInRatio(part: PathPart, input: BudgetInput): UncertaintyCompone
   if (input.freqHz === null || input.productFreqHz === null) {
     return component(`${part.name}, frequency unknown`, part.uncertaintyDb, 'normal', { k: part.k });
   }
-  const alone = { parts: [part] };
+  const alone = { direction: 'to_instrument' as const, parts: [part] };
   const carrier = pathLoss(alone, input.freqHz);
   const product = pathLoss(alone, input.productFreqHz);
   if (carrier.ok && product.ok && carrier.lossDb === product.lossDb) return null;
@@ -207,7 +210,7 @@ function absoluteLines(quantity: Quantity, input: BudgetInput): LinesResult {
       reason: `The accuracy of the instrument for ${quantity.label.toLowerCase()} is not stated in a unit that fits.`,
     };
   }
-  if (quantity.pathApplies) {
+  if (quantity.path !== 'none') {
     for (const part of input.path?.parts ?? []) {
       lines.push(component(part.name, part.uncertaintyDb, 'normal', { k: part.k }));
     }
@@ -217,19 +220,37 @@ function absoluteLines(quantity: Quantity, input: BudgetInput): LinesResult {
   return { ok: true, lines };
 }
 
+/** Unit of the uncertainty of what is read: dB for levels; null for a yes or no. */
+function uncertaintyUnit({ unit }: Quantity): UncertaintyUnit | null {
+  switch (unit) {
+    case '':
+      return null;
+    case 'W':
+    case 'dBc':
+    case 'dBm':
+    case 'dB':
+      return 'dB';
+    case '1':
+    case 'A':
+    case 'V':
+    case 'Hz':
+    case 's':
+    case 'K':
+      return unit;
+  }
+}
+
 /**
  * Uncertainty budget of a reading: dB for powers and ratios, otherwise the SI unit. In a ratio the level
  * calibration and the flat loss of the path cancel; linearity, flatness, mismatch at both frequencies and the
  * analyser's own distortion stay. Refuses where a figure that it needs is not stated.
  */
 export function buildBudget(input: BudgetInput): ({ ok: true } & Budget) | { ok: false; reason: string } {
-  const quantity = quantityOf(input.quantityKey);
-  if (quantity === undefined || quantity.unit === '') {
-    return { ok: false, reason: 'This quantity has no uncertainty budget.' };
-  }
+  const { quantity } = input;
+  const unit = uncertaintyUnit(quantity);
+  if (unit === null) return { ok: false, reason: 'This quantity has no uncertainty budget.' };
   const built = quantity.unit === 'dBc' ? ratioLines(quantity, input) : absoluteLines(quantity, input);
   if (!built.ok) return built;
   const components = [...built.lines, ...input.extra];
-  const unit = quantity.unit === 'W' || quantity.unit === 'dBc' ? 'dB' : quantity.unit;
   return { ok: true, unit, components, ...combine(components) };
 }

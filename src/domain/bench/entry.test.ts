@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { parseEntry } from './entry';
+import { knownQuantity } from './quantities';
 import type { EntryOptions } from './entry';
 
 const taken: [string, string, EntryOptions, number, string][] = [
@@ -25,6 +26,11 @@ const taken: [string, string, EntryOptions, number, string][] = [
   ['+38', 'frequency_error', {}, 38, 'Hz'],
   ['−0.041 kHz', 'frequency_error', {}, -41, 'kHz'],
   ['5e-1 W', 'rf_power', {}, 0.5, 'W'],
+  ['13.8', 'supply_voltage', {}, 13.8, 'V'],
+  ['0.2 µVrms', 'sensitivity', {}, -120.9691, 'µVrms'],
+  ['-121', 'sensitivity', {}, -121, 'dBm'],
+  ['4 ms', 'keying_rise', {}, 0.004, 'ms'],
+  ['46,5', 'case_temperature', {}, 319.65, '°C'],
   ['Yes', 'check', {}, 1, 'yes/no'],
   ['no', 'check', {}, 0, 'yes/no'],
   ['3 kW', 'rf_power', { expectedMax: 5, confirmed: true }, 3000, 'kW'],
@@ -48,18 +54,21 @@ const refused: [string, string, EntryOptions, RegExp, boolean][] = [
   ['abc', 'rf_power', {}, /does not begin with a number/, false],
   ['', 'rf_power', {}, /empty/, false],
   ['perhaps', 'check', {}, /yes or no/, false],
-  ['1', 'no_such', {}, /not known/, false],
+  ['60', 'efficiency', {}, /computed from other readings/, false],
+  ['0.2 V', 'sensitivity', {}, /which volts/, false],
+  ['300 °C', 'case_temperature', {}, /Is it meant/, true],
+  ['-300 °C', 'case_temperature', { confirmed: true }, /colder/, false],
 ];
 
 describe('parseEntry', () => {
   it.each(taken)('takes %s as %s', (text, key, options, value, enteredUnit) => {
-    const result = parseEntry(text, key, options);
+    const result = parseEntry(text, knownQuantity(key), options);
     expect(result).toMatchObject({ ok: true, enteredUnit });
     if (result.ok) expect(result.value / (value || 1)).toBeCloseTo(value === 0 ? 0 : 1, 4);
   });
 
   it.each(refused)('does not swallow “%s” as %s', (text, key, options, reason, ask) => {
-    const result = parseEntry(text, key, options);
+    const result = parseEntry(text, knownQuantity(key), options);
     expect(result).toMatchObject({ ok: false, ask });
     if (!result.ok) expect(result.reason).toMatch(reason);
   });
@@ -69,7 +78,13 @@ describe('parseEntry, its laws', () => {
   const keys = fc.constantFrom('rf_power', 'harmonic_2', 'current_rest', 'frequency_error', 'check');
 
   it('never throws, whatever is typed', () => {
-    fc.assert(fc.property(fc.string(), keys, (text, key) => typeof parseEntry(text, key).ok === 'boolean'));
+    fc.assert(
+      fc.property(
+        fc.string(),
+        keys,
+        (text, key) => typeof parseEntry(text, knownQuantity(key)).ok === 'boolean',
+      ),
+    );
   });
 
   it('reads a comma as it reads a point', () => {
@@ -78,8 +93,8 @@ describe('parseEntry, its laws', () => {
         const text = (hundredths / 100).toFixed(2);
         const options = { columnUnit: 'mA' };
         return (
-          JSON.stringify(parseEntry(text, 'current_rest', options)) ===
-          JSON.stringify(parseEntry(text.replace('.', ','), 'current_rest', options))
+          JSON.stringify(parseEntry(text, knownQuantity('current_rest'), options)) ===
+          JSON.stringify(parseEntry(text.replace('.', ','), knownQuantity('current_rest'), options))
         );
       }),
     );

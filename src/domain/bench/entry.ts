@@ -1,23 +1,23 @@
 import { formatValue } from './format';
 import { parseDecimal } from './decimal';
-import { quantityOf } from './quantities';
 import type { EntryUnit, Quantity } from './quantities';
-import { dbmToW, diodeToW, vPkToW, vPpToW, vRmsToW } from './units';
+import type { PeakDetector } from './types';
+import { dbmToW, diodeToW, vPkToW, vPpToW, vRmsToW, wToDbm } from './units';
 
 /** What is known at the cell. */
 export interface EntryOptions {
   /** Unit the column remembers, as typed last time. */
-  columnUnit?: string;
+  columnUnit?: string | undefined;
   /** Level of the carrier at the meter, dBm; needed for a product typed in dBm. */
-  refPowerDbm?: number;
+  refPowerDbm?: number | undefined;
   /** Load that voltages stand across, Ω; default 50. */
-  loadOhm?: number;
-  /** Peak detector: forward drop of its diode (V), and line voltage over tap voltage (1 across the whole load). */
-  detector?: { dropV: number; tapRatio: number };
+  loadOhm?: number | undefined;
+  /** What Vdc stands for, where the instrument is a diode detector. */
+  detector?: PeakDetector | undefined;
   /** Largest value that this rig is meant to reach, in the SI unit; ten times as much is asked about. */
-  expectedMax?: number;
+  expectedMax?: number | undefined;
   /** True when the person has said that an entry that was asked about is meant. */
-  confirmed?: boolean;
+  confirmed?: boolean | undefined;
 }
 
 /** A read entry in the SI unit of the quantity (dBc for ratios), at the meter; or why not. */
@@ -43,22 +43,40 @@ const PREFIXES: Record<string, number> = { '': 1, n: 1e-9, µ: 1e-6, u: 1e-6, m:
 const SPELLINGS: Record<EntryUnit, readonly string[]> = {
   dBm: ['dbm'],
   dBc: ['dbc', 'db'],
+  dB: ['db'],
   W: ['w', 'watt', 'watts'],
   Vrms: ['vrms', 'veff'],
   Vpk: ['vpk', 'vp', 'vpeak'],
   Vpp: ['vpp', 'vpkpk', 'vptp'],
   Vdc: ['vdc', 'vdiode'],
   A: ['a', 'amp', 'amps'],
+  V: ['v', 'volt', 'volts'],
   Hz: ['hz'],
+  s: ['s', 'sec'],
+  '°C': ['°c', 'degc', 'c'],
+  K: ['k', 'kelvin'],
+  '%': ['%', 'percent'],
+  '1': ['1', ''],
   'yes/no': ['yes/no'],
 };
 
 const YES = new Set(['y', 'yes', 'ok', 'pass', 'true', '1', '✓', '✔', '☑']);
 const NO = new Set(['n', 'no', 'fail', 'false', '0', '✗', '✘', '☐']);
 
-/** Above these an entry is asked about where the rig's own figure is not known: W, A, Hz. */
-const PLAUSIBLE: Record<string, number> = { W: 200, A: 30, Hz: 100e3 };
+/** Above these an entry is asked about where the rig's own figure is not known, in the units inside. */
+const PLAUSIBLE: Partial<Record<Quantity['format'], number>> = {
+  power: 200,
+  current: 30,
+  voltage: 100,
+  frequency_error: 100e3,
+  time: 10,
+  temperature: 473.15,
+  percent: 1,
+};
 const WELL_OVER = 10;
+const ZERO_CELSIUS_K = 273.15;
+
+const UNPREFIXED: ReadonlySet<EntryUnit> = new Set(['dBm', 'dBc', 'dB', '°C', 'K', '%', '1']);
 
 interface ParsedUnit {
   base: EntryUnit;
@@ -76,14 +94,16 @@ function refuse(reason: string, ask = false): { ok: false; reason: string; ask: 
 function examples(quantity: Quantity): string {
   if (quantity.unit === 'W') return 'dBm, W, mW, Vrms, Vpk, Vpp or Vdc of a detector';
   if (quantity.unit === 'A') return 'mA or A';
-  if (quantity.unit === 'Hz') return 'Hz or kHz';
+  if (quantity.unit === 'V') return 'mV or V';
+  if (quantity.unit === 's') return 'µs, ms or s';
+  if (quantity.unit === 'Hz') return quantity.format === 'frequency' ? 'Hz, kHz or MHz' : 'Hz or kHz';
   return quantity.entryUnits.join(' or ');
 }
 
 function parseUnit(text: string, quantity: Quantity): UnitResult {
   const plain = text.replace(/[\s._-]/g, '').replace('\u03bc', 'µ');
   const lower = plain.toLowerCase();
-  if (lower === 'v' || lower === 'mv') {
+  if ((lower === 'v' || lower === 'mv') && !quantity.entryUnits.includes('V')) {
     return { ok: false, reason: 'Say which volts: Vrms, Vpk, Vpp, or Vdc of a diode detector.' };
   }
   for (const base of quantity.entryUnits) {
@@ -92,10 +112,10 @@ function parseUnit(text: string, quantity: Quantity): UnitResult {
       const prefix = plain.slice(0, plain.length - spelling.length);
       const factor = PREFIXES[prefix] ?? PREFIXES[prefix === 'K' ? 'k' : '?'];
       if (factor === undefined) continue;
-      if (prefix === 'M') {
+      if (prefix === 'M' && quantity.format !== 'frequency') {
         return { ok: false, reason: `M${base} means millions of ${base}; write m${base} for thousandths.` };
       }
-      if (base.startsWith('dB') && prefix !== '') continue;
+      if (UNPREFIXED.has(base) && prefix !== '') continue;
       const shown = prefix === 'u' ? 'µ' : prefix === 'K' ? 'k' : prefix;
       return { ok: true, unit: { base, factor, name: `${shown}${base}` } };
     }
@@ -121,25 +141,23 @@ function toPower(number: number, unit: ParsedUnit, options: EntryOptions): Value
     return refuse(`A power or voltage is not below zero; is ${unit.name} the right unit, or dBm meant?`);
   const size = number * unit.factor;
   const loadOhm = options.loadOhm ?? 50;
-  switch (unit.base) {
-    case 'Vrms':
-      return { ok: true, value: vRmsToW(size, loadOhm) };
-    case 'Vpk':
-      return { ok: true, value: vPkToW(size, loadOhm) };
-    case 'Vpp':
-      return { ok: true, value: vPpToW(size, loadOhm) };
-    case 'Vdc':
-      if (options.detector === undefined) {
-        return refuse('State the drop of the detector’s diode and where it taps the load first.');
-      }
-      return { ok: true, value: diodeToW(size, options.detector.dropV, options.detector.tapRatio, loadOhm) };
-    case 'W':
-    case 'A':
-    case 'Hz':
-    case 'dBc':
-    case 'yes/no':
-      return { ok: true, value: size };
+  if (unit.base === 'Vrms') return { ok: true, value: vRmsToW(size, loadOhm) };
+  if (unit.base === 'Vpk') return { ok: true, value: vPkToW(size, loadOhm) };
+  if (unit.base === 'Vpp') return { ok: true, value: vPpToW(size, loadOhm) };
+  if (unit.base !== 'Vdc') return { ok: true, value: size };
+  if (options.detector === undefined) {
+    return refuse('State the drop of the detector’s diode and where it taps the load first.');
   }
+  return { ok: true, value: diodeToW(size, options.detector.dropV, options.detector.tapRatio, loadOhm) };
+}
+
+/** A level in dBm or dB, a temperature, a share, or a plain size. */
+function toOther(number: number, unit: ParsedUnit, options: EntryOptions): ValueResult {
+  if (unit.base === '°C') return { ok: true, value: number + ZERO_CELSIUS_K };
+  if (unit.base === '%') return { ok: true, value: number / 100 };
+  if (unit.base !== 'Vrms') return { ok: true, value: number * unit.factor };
+  if (number <= 0) return refuse('A generator’s level in volts is above zero.');
+  return { ok: true, value: wToDbm(vRmsToW(number * unit.factor, options.loadOhm ?? 50)) };
 }
 
 function toRatio(number: number, signed: boolean, unit: ParsedUnit, options: EntryOptions): ValueResult {
@@ -159,12 +177,14 @@ function implausible(value: number, quantity: Quantity, options: EntryOptions): 
     return value < -150 ? 'That is below what any analyser sees. Is it meant?' : null;
   }
   const bound =
-    options.expectedMax === undefined ? PLAUSIBLE[quantity.unit] : Math.abs(options.expectedMax) * WELL_OVER;
+    options.expectedMax === undefined
+      ? PLAUSIBLE[quantity.format]
+      : Math.abs(options.expectedMax) * WELL_OVER;
   if (bound === undefined || Math.abs(value) <= bound) return null;
-  const shown = formatValue(value, quantity.key);
+  const shown = formatValue(value, quantity);
   return options.expectedMax === undefined
     ? `${shown} is more than this bench expects. Is it meant?`
-    : `${shown} is far above the ${formatValue(options.expectedMax, quantity.key)} of this rig. Is it meant?`;
+    : `${shown} is far above the ${formatValue(options.expectedMax, quantity)} of this rig. Is it meant?`;
 }
 
 /**
@@ -172,9 +192,9 @@ function implausible(value: number, quantity: Quantity, options: EntryOptions): 
  * and the unit of the entry or else of the column. What makes no sense is asked about (`ask: true`, taken with
  * `confirmed`) or refused with a sentence.
  */
-export function parseEntry(text: string, quantityKey: string, options: EntryOptions = {}): EntryResult {
-  const quantity = quantityOf(quantityKey);
-  if (quantity === undefined) return refuse(`The quantity ${quantityKey} is not known here.`);
+export function parseEntry(text: string, quantity: Quantity, options: EntryOptions = {}): EntryResult {
+  if (quantity.formula !== null)
+    return refuse(`${quantity.label} is computed from other readings and not typed.`);
   const clean = text
     .normalize('NFC')
     .replace(/[\u2212\u2012-\u2014\ufe63\uff0d]/g, '-')
@@ -199,13 +219,15 @@ export function parseEntry(text: string, quantityKey: string, options: EntryOpti
   let result: ValueResult;
   if (quantity.unit === 'W') result = toPower(number.value, unit, options);
   else if (quantity.unit === 'dBc') result = toRatio(number.value, number.signed, unit, options);
-  else result = { ok: true, value: number.value * unit.factor };
+  else result = toOther(number.value, unit, options);
   if (!result.ok) return result;
 
   const { value } = result;
   if (!Number.isFinite(value)) return refuse('The number is too large.');
   if (quantity.unit === 'A' && value < 0)
     return refuse('A current is not below zero: are the leads swapped?');
+  if (quantity.unit === 's' && value < 0) return refuse('A time is not below zero.');
+  if (quantity.unit === 'K' && value < 0) return refuse('Nothing is colder than −273.15 °C.');
   if (quantity.unit === 'W' && value === 0)
     return refuse('No power at all: is the unit keyed and the lead on?');
   const question = options.confirmed === true ? null : implausible(value, quantity, options);

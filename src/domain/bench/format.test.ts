@@ -7,6 +7,7 @@ import {
   formatValue,
   formatWithU,
 } from './format';
+import { knownQuantity } from './quantities';
 
 describe('formatValue', () => {
   it.each([
@@ -25,15 +26,21 @@ describe('formatValue', () => {
     [38.2, 'frequency_error', '+38 Hz'],
     [-41, 'frequency_error', '\u221241 Hz'],
     [0.2, 'frequency_error', '0 Hz'],
+    [13.8, 'supply_voltage', '13.80 V'],
+    [-121.04, 'sensitivity', '\u2212121.0 dBm'],
+    [0.004, 'keying_rise', '4.00 ms'],
+    [319.65, 'case_temperature', '46.5 °C'],
+    [0.5952, 'efficiency', '59.5 %'],
+    [0.31, 'power_drop', '0.3 dB'],
     [1, 'check', 'yes'],
     [0, 'check', 'no'],
   ])('%d of %s is %s', (value, key, text) => {
-    expect(formatValue(value, key)).toBe(text);
+    expect(formatValue(value, knownQuantity(key))).toBe(text);
   });
 
   it('shows a power at the meter in dBm', () => {
-    expect(formatAtMeter(2.97852e-4, 'rf_power')).toBe('\u22125.26 dBm');
-    expect(formatAtMeter(-51.04, 'harmonic_2')).toBe('\u221251.0 dBc');
+    expect(formatAtMeter(2.97852e-4, knownQuantity('rf_power'))).toBe('\u22125.26 dBm');
+    expect(formatAtMeter(-51.04, knownQuantity('harmonic_2'))).toBe('\u221251.0 dBc');
   });
 });
 
@@ -65,7 +72,16 @@ describe('formatUncertainty', () => {
     [1.25, 'A', '1.3 A'],
     [2.04, 'Hz', '2.0 Hz'],
     [12.4, 'Hz', '12 Hz'],
+    [0.0123, 'V', '12 mV'],
+    [0.00021, 's', '0.21 ms'],
+    [1.7, 'K', '1.7 K'],
+    [0.42, 'W', '420 mW'],
+    [0.25, '1', '0.25'],
   ] as const)('%d %s is %s', (uncertainty, unit, text) => {
-    expect(formatUncertainty(uncertainty, unit)).toBe(text);
+    expect(formatUncertainty(uncertainty, unit, 'number')).toBe(text);
   });
+});
+
+it('states the uncertainty of a share in %', () => {
+  expect(formatUncertainty(0.0123, '1', 'percent')).toBe('1.2 %');
 });

@@ -1,4 +1,4 @@
-import { quantityOf } from './quantities';
+import type { Quantity } from './quantities';
 import { wToDbm } from './units';
 
 /** A number with fixed decimals, the typographic minus (U+2212) and no negative zero. */
@@ -45,6 +45,20 @@ export function formatDbm(dbm: number): string {
   return `${formatNumber(dbm, 2)} dBm`;
 }
 
+/** A voltage with four significant figures, in mV under 1 V. */
+function formatVoltage(volts: number): string {
+  return Math.abs(volts) < 0.99995 ? `${significant(volts * 1e3, 4)} mV` : `${significant(volts, 4)} V`;
+}
+
+/** A time with three significant figures in s, ms or µs. */
+function formatTime(seconds: number): string {
+  const size = Math.abs(seconds);
+  if (size >= 0.9995) return `${significant(seconds, 3)} s`;
+  return size >= 0.9995e-3 ? `${significant(seconds * 1e3, 3)} ms` : `${significant(seconds * 1e6, 3)} µs`;
+}
+
+const ZERO_CELSIUS_K = 273.15;
+
 /** A frequency error in whole Hz with its sign. */
 function formatFrequencyError(errorHz: number): string {
   const text = formatNumber(errorHz, 0);
@@ -53,31 +67,40 @@ function formatFrequencyError(errorHz: number): string {
 
 /**
  * A value with its unit, in the digits of its quantity. The value is never used to decide once it has been
- * through here. An unknown quantity is shown with three significant figures.
+ * through here.
+ * @param value in the unit of the quantity inside
  */
-export function formatValue(value: number, quantityKey: string): string {
-  const quantity = quantityOf(quantityKey);
-  switch (quantity?.format) {
+export function formatValue(value: number, { format, unit }: Pick<Quantity, 'format' | 'unit'>): string {
+  switch (format) {
     case 'power':
       return formatPower(value);
     case 'ratio':
-      return `${formatNumber(value, 1)} dBc`;
+    case 'level':
+      return `${formatNumber(value, 1)} ${unit}`;
     case 'current':
       return formatCurrent(value);
+    case 'voltage':
+      return formatVoltage(value);
+    case 'frequency':
+      return formatFrequency(value);
     case 'frequency_error':
       return formatFrequencyError(value);
+    case 'time':
+      return formatTime(value);
+    case 'temperature':
+      return `${formatNumber(value - ZERO_CELSIUS_K, 1)} °C`;
+    case 'percent':
+      return `${formatNumber(value * 100, 1)} %`;
     case 'yes_no':
       return value === 1 ? 'yes' : 'no';
-    case undefined:
+    case 'number':
       return significant(value, 3);
   }
 }
 
 /** What the instrument showed: dBm for powers, otherwise as {@link formatValue}. */
-export function formatAtMeter(value: number, quantityKey: string): string {
-  return quantityOf(quantityKey)?.format === 'power'
-    ? formatDbm(wToDbm(value))
-    : formatValue(value, quantityKey);
+export function formatAtMeter(value: number, quantity: Pick<Quantity, 'format' | 'unit'>): string {
+  return quantity.format === 'power' && value > 0 ? formatDbm(wToDbm(value)) : formatValue(value, quantity);
 }
 
 /** Decimals that leave an uncertainty two significant figures (JCGM 100, 7.2.6). */
@@ -93,9 +116,31 @@ export function formatWithU(value: number, uncertainty: number): string {
   return `${formatNumber(value, decimals)} ± ${formatNumber(uncertainty, decimals)}`;
 }
 
+/** Unit in which the uncertainty of a quantity is stated: levels and powers in dB, the rest in their own. */
+export type UncertaintyUnit = 'dB' | 'W' | 'A' | 'V' | 'Hz' | 's' | 'K' | '1';
+
+/** How large it has to be to be written in the unit itself, and what is written below. */
+const SMALL: Partial<Record<UncertaintyUnit, readonly [factor: number, name: string]>> = {
+  W: [1e3, 'mW'],
+  A: [1e3, 'mA'],
+  V: [1e3, 'mV'],
+  s: [1e3, 'ms'],
+};
+
 /** An expanded uncertainty with its unit: dB with one decimal, the rest with two figures (JCGM 100, 7.2.6). */
-export function formatUncertainty(uncertainty: number, unit: 'dB' | 'A' | 'Hz'): string {
+export function formatUncertainty(
+  uncertainty: number,
+  unit: UncertaintyUnit,
+  format: Quantity['format'],
+): string {
   if (unit === 'dB') return `${formatNumber(uncertainty, 1)} dB`;
-  const [size, name] = unit === 'A' && uncertainty < 0.9995 ? [uncertainty * 1e3, 'mA'] : [uncertainty, unit];
+  if (unit === '1') {
+    const size = format === 'percent' ? uncertainty * 100 : uncertainty;
+    return `${formatNumber(size, decimalsForU(size))}${format === 'percent' ? ' %' : ''}`;
+  }
+  const [factor, name] = SMALL[unit] ?? [1, unit];
+  if (uncertainty >= 0.9995 || factor === 1)
+    return `${formatNumber(uncertainty, decimalsForU(uncertainty))} ${unit}`;
+  const size = uncertainty * factor;
   return `${formatNumber(size, decimalsForU(size))} ${name}`;
 }

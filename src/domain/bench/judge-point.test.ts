@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { carrierOf, judgePoint } from './judge-point';
 import type { JudgeContext } from './judge-point';
+import { ruleForDestination } from './limit-rules';
+import { knownQuantity } from './quantities';
 import type { InstrumentSpec, PathPart, PathSpec, Reading, TestPoint } from './types';
 import { dbmToW } from './units';
 
@@ -26,10 +28,20 @@ const instrument: InstrumentSpec = {
   flatnessDb: 0.4,
   vswr: 1.2,
   ownDistortionDbc: -75,
-  calibration: { expanded: 0.2, unit: 'dB', k: 2, dueOn: '2027-06-30' },
+  detector: null,
+  calibration: {
+    expanded: 0.2,
+    unit: 'dB',
+    k: 2,
+    calibratedOn: null,
+    laboratory: null,
+    certificateNumber: null,
+    dueOn: '2027-06-30',
+  },
 };
 
 const tap: PathPart = {
+  partNumber: null,
   name: 'Dummy load tap',
   loss: [
     [1e6, 40],
@@ -41,8 +53,9 @@ const tap: PathPart = {
   ratingW: 25,
   vswr: 1.1,
 };
-const path: PathSpec = { parts: [tap] };
+const path: PathSpec = { direction: 'to_instrument', parts: [tap] };
 const shortPath: PathSpec = {
+  direction: 'to_instrument',
   parts: [
     {
       ...tap,
@@ -58,17 +71,19 @@ const context: JudgeContext = {
   destinationCountry: 'DE',
   region: 1,
   supplyV: 13.8,
+  ambientC: null,
+  outputStage: null,
   testedOn: '2027-03-09',
   instrument,
   path,
   carrier: { powerW: 3, uDb: 0.2 },
-  ruleKey: 'itu_category_a',
+  rule: ruleForDestination('DE', '2027-03-09'),
 };
 
 const point = (over: Partial<TestPoint>): TestPoint => ({
   id: 1,
   position: 1,
-  quantityKey: 'rf_power',
+  quantity: knownQuantity('rf_power'),
   band: '40m',
   freqHz: 7.03e6,
   lower: 2.5,
@@ -77,6 +92,8 @@ const point = (over: Partial<TestPoint>): TestPoint => ({
   decision: 'guarded',
   required: true,
   condition: null,
+  supplyV: null,
+  method: '',
   ...over,
 });
 
@@ -91,7 +108,12 @@ const reading = (quantityKey: string, value: number, over: Partial<Reading> = {}
   ...over,
 });
 
-const harmonic = point({ quantityKey: 'harmonic_2', lower: null, limitRule: 'spurious', decision: 'simple' });
+const harmonic = point({
+  quantity: knownQuantity('harmonic_2'),
+  lower: null,
+  limitRule: 'spurious',
+  decision: 'simple',
+});
 
 describe('judgePoint, power', () => {
   it('corrects by the path, decides in dB, and gives the interval in W as it is', () => {
@@ -175,7 +197,10 @@ describe('judgePoint, ratio under an emission rule', () => {
   });
 
   it('does not move the limit by the power where the attenuation is fixed', () => {
-    const us = judgePoint(harmonic, [reading('harmonic_2', -54.7)], { ...context, ruleKey: 'us_97_307' });
+    const us = judgePoint(harmonic, [reading('harmonic_2', -54.7)], {
+      ...context,
+      rule: ruleForDestination('US', '2027-03-09'),
+    });
     expect(us.upper).toBe(-43);
     expect(us.uComponents.map((line) => line.name)).not.toContain('Limit, by the measured power');
   });
@@ -188,7 +213,7 @@ describe('judgePoint, ratio under an emission rule', () => {
 
   it.each<[string, Partial<JudgeContext>, RegExp]>([
     ['without the power of the band', { carrier: null }, /measure the power first/],
-    ['without a rule', { ruleKey: null }, /No emission rule/],
+    ['without a rule', { rule: null }, /No emission rule/],
     ['without an instrument', { instrument: null }, /Choose the instrument/],
     ['with the calibration overdue', { testedOn: '2027-07-01' }, /was due on 2027-06-30/],
     [
@@ -238,7 +263,7 @@ describe('judgePoint, ratio under an emission rule', () => {
   });
 
   it('judges each spurious product and lets the worst decide', () => {
-    const spurious = { ...harmonic, quantityKey: 'spurious' };
+    const spurious = { ...harmonic, quantity: knownQuantity('spurious') };
     const judged = judgePoint(
       spurious,
       [
@@ -254,7 +279,7 @@ describe('judgePoint, ratio under an emission rule', () => {
 
 describe('judgePoint, other quantities', () => {
   it('judges a current by percent and digits', () => {
-    const current = point({ quantityKey: 'current_key_down', lower: null, upper: 0.65 });
+    const current = point({ quantity: knownQuantity('current_key_down'), lower: null, upper: 0.65 });
     const judged = judgePoint(current, [reading('current_key_down', 0.612)], context);
     expect(judged).toMatchObject({ verdict: 'pass', uUnit: 'A', value: 0.612 });
     const expected = Math.hypot(0.00612 / Math.sqrt(3), 0.002 / Math.sqrt(3), 0.0005 / Math.sqrt(3));
@@ -263,7 +288,7 @@ describe('judgePoint, other quantities', () => {
   });
 
   it('judges a frequency error within both limits, ppm of the test frequency', () => {
-    const error = point({ quantityKey: 'frequency_error', lower: -100, upper: 100 });
+    const error = point({ quantity: knownQuantity('frequency_error'), lower: -100, upper: 100 });
     const judged = judgePoint(error, [reading('frequency_error', 38)], context);
     expect(judged).toMatchObject({ verdict: 'pass', uUnit: 'Hz' });
     expect(judged.U).toBeCloseTo(2 * Math.hypot(3.515 / Math.sqrt(3), 0.5 / Math.sqrt(3)), 9);
@@ -272,7 +297,7 @@ describe('judgePoint, other quantities', () => {
   });
 
   it('answers a check by yes and no, without an instrument', () => {
-    const check = point({ quantityKey: 'check', lower: null });
+    const check = point({ quantity: knownQuantity('check'), lower: null });
     const of = (value: number) =>
       judgePoint(check, [reading('check', value)], { ...context, instrument: null });
     expect(of(1)).toMatchObject({ verdict: 'pass', marginText: 'yes' });
@@ -280,7 +305,7 @@ describe('judgePoint, other quantities', () => {
   });
 
   it('refuses an instrument without a specification for the quantity', () => {
-    const rest = point({ quantityKey: 'current_rest', lower: null, upper: 0.1 });
+    const rest = point({ quantity: knownQuantity('current_rest'), lower: null, upper: 0.1 });
     expect(judgePoint(rest, [reading('current_rest', 0.05)], context)).toMatchObject({
       verdict: 'not_run',
       stopped: 'The instrument has no specification for current, at rest.',

@@ -2,10 +2,10 @@ import { bandLabel, bandOf } from './bands';
 import { buildBudget } from './budget';
 import { guardBand, judge, marginOf, probabilityOfConformance } from './decision';
 import { formatNumber, formatValue } from './format';
+import type { UncertaintyUnit } from './format';
 import { limitDbc, limitSlope } from './limit-rules';
-import type { LimitRuleKey } from './limit-rules';
+import type { ChosenRule } from './limit-rules';
 import { pathLoss } from './paths';
-import { quantityOf } from './quantities';
 import type { Quantity } from './quantities';
 import type {
   InstrumentSpec,
@@ -31,7 +31,7 @@ export interface JudgeContext extends RunContext {
   path: PathSpec | null;
   /** See {@link carrierOf}; null where the power of the band has not been measured. */
   carrier: CarrierPower | null;
-  ruleKey: LimitRuleKey | null;
+  rule: ChosenRule | null;
 }
 
 /** A point with what was found, ready to be stored, printed and drawn. */
@@ -43,8 +43,10 @@ export interface PointJudgement {
   atMeter: number | null;
   /** Expanded uncertainty in `uUnit`; null where there is none to state. */
   U: number | null;
-  uUnit: 'dB' | 'A' | 'Hz' | null;
+  uUnit: UncertaintyUnit | null;
   k: number | null;
+  /** Effective degrees of freedom; null is infinitely many. */
+  nuEff: number | null;
   uComponents: UncertaintyComponent[];
   /** value − U and value + U in the unit of the value; not symmetric for a power. */
   low: number | null;
@@ -54,7 +56,7 @@ export interface PointJudgement {
   upper: number | null;
   /** Guard band w in `uUnit`; 0 for a simple decision. */
   guard: number;
-  ruleKey: LimitRuleKey | null;
+  ruleKey: string | null;
   ruleText: string | null;
   n: number;
   /** True where the product was hidden in the noise. */
@@ -73,6 +75,7 @@ export const NOTHING_READ: PointJudgement = {
   U: null,
   uUnit: null,
   k: null,
+  nuEff: null,
   uComponents: [],
   low: null,
   high: null,
@@ -103,13 +106,25 @@ function atUnit(
   path: PathSpec | null,
 ): AtUnit {
   const values = readings.map((reading) => reading.value);
-  if (!quantity.pathApplies || path === null || path.parts.length === 0) return { ok: true, values };
+  if (quantity.path === 'none' || path === null || path.parts.length === 0) return { ok: true, values };
+  const wanted = quantity.path === 'adds' ? 'to_instrument' : 'from_generator';
+  if (path.direction !== wanted) {
+    const reason =
+      wanted === 'to_instrument'
+        ? 'This path leads from a generator to the unit: choose one that leads to the instrument.'
+        : 'This path leads to an instrument: choose one that leads from the generator to the unit.';
+    return { ok: false, reason };
+  }
   if (txFreqHz === null)
     return { ok: false, reason: 'State the test frequency: the path loses more at some than at others.' };
   const carrier = pathLoss(path, txFreqHz);
   if (!carrier.ok) return carrier;
   if (quantity.unit === 'W') {
     return { ok: true, values: values.map((value) => value * 10 ** (carrier.lossDb / 10)) };
+  }
+  if (quantity.unit !== 'dBc') {
+    const sign = quantity.path === 'adds' ? 1 : -1;
+    return { ok: true, values: values.map((value) => value + sign * carrier.lossDb) };
   }
   if (productFreqHz === null)
     return { ok: false, reason: "State the product's frequency: the path is corrected there." };
@@ -127,7 +142,7 @@ function frequencyProblem(point: TestPoint, context: RunContext): string | null 
 interface Limits {
   lower: number | null;
   upper: number | null;
-  ruleKey: LimitRuleKey | null;
+  ruleKey: string | null;
   ruleText: string | null;
   /** The limit's own uncertainty where it moves with the measured power. */
   extra: UncertaintyComponent[];
@@ -141,18 +156,18 @@ function limitsOf(
   if (point.limitRule === 'fixed') {
     return { ok: true, lower: point.lower, upper: point.upper, ruleKey: null, ruleText: null, extra: [] };
   }
-  if (context.ruleKey === null) return { ok: false, reason: 'No emission rule is chosen for this run.' };
+  if (context.rule === null) return { ok: false, reason: 'No emission rule is chosen for this run.' };
   if (context.carrier === null) {
     return { ok: false, reason: 'The limit depends on the power of this band: measure the power first.' };
   }
   if (point.freqHz === null)
     return { ok: false, reason: 'The limit depends on the transmit frequency: state it.' };
   const args = { powerW: context.carrier.powerW, txFreqHz: point.freqHz, productFreqHz };
-  const limit = limitDbc(context.ruleKey, args);
+  const limit = limitDbc(context.rule, args);
   if (!limit.ok) return limit;
   // Where the limit is an absolute level, an error of the power is an error of the margin. It is taken as
   // independent of the ratio's errors, which is the safe side.
-  const slope = limitSlope(context.ruleKey, args);
+  const slope = limitSlope(context.rule, args);
   const extra =
     slope > 1e-6 && context.carrier.uDb > 0
       ? [component('Limit, by the measured power', slope * context.carrier.uDb, 'normal', { k: 1 })]
@@ -162,16 +177,24 @@ function limitsOf(
   return { ok: true, lower: point.lower, upper, ruleKey: limit.ruleKey, ruleText: limit.ruleText, extra };
 }
 
-function marginText(verdict: Verdict, margin: number | null, isUnder: boolean, quantity: Quantity): string {
+/** How far a value is from its limit, in words. */
+export function marginText(
+  verdict: Verdict,
+  margin: number | null,
+  isUnder: boolean,
+  quantity: Quantity,
+): string {
   if (verdict === 'not_run') return 'no verdict';
   if (quantity.format === 'yes_no') return verdict === 'pass' ? 'yes' : 'no';
   if (margin === null) return 'no limit';
   const size = Math.abs(margin);
   const side = isUnder ? 'under' : 'over';
   const amount =
-    quantity.unit === 'dBc'
+    quantity.format === 'ratio' || quantity.format === 'level'
       ? `${formatNumber(size, 1)} dB`
-      : formatValue(size, quantity.key).replace('+', '');
+      : quantity.format === 'temperature'
+        ? `${formatNumber(size, 1)} K`
+        : formatValue(size, quantity).replace('+', '');
   if (verdict === 'too_close') {
     return `too close to call: ${amount} ${margin >= 0 ? 'in hand' : side}, within the uncertainty`;
   }
@@ -193,16 +216,9 @@ function judgeCheck(readings: readonly Reading[]): PointJudgement {
 
 /** Judges readings that are all of one product (or of no product at all). */
 function judgeOne(point: TestPoint, readings: readonly Reading[], context: JudgeContext): PointJudgement {
-  const quantity = quantityOf(point.quantityKey);
+  const { quantity } = point;
   const first = readings[0];
   if (first === undefined) return NOTHING_READ;
-  if (quantity === undefined) {
-    return {
-      ...NOTHING_READ,
-      n: readings.length,
-      stopped: `The quantity ${point.quantityKey} is not known here.`,
-    };
-  }
   if (quantity.format === 'yes_no') return judgeCheck(readings);
 
   const isRatio = quantity.unit === 'dBc';
@@ -241,7 +257,7 @@ function judgeOne(point: TestPoint, readings: readonly Reading[], context: Judge
   const scaled = corrected.values.map((each) => (isPower ? wToDbm(each) : each));
   const typeA = repeatability(scaled);
   const budget = buildBudget({
-    quantityKey: quantity.key,
+    quantity,
     value: mean(readings.map((reading) => reading.value)),
     freqHz: point.freqHz,
     productFreqHz,
@@ -253,7 +269,7 @@ function judgeOne(point: TestPoint, readings: readonly Reading[], context: Judge
   });
   if (!budget.ok) return stop(budget.reason, known);
 
-  const { U, k, uc } = budget;
+  const { U, k, uc, nuEff } = budget;
   const interval = isPower ? dbIntervalToW(value, U) : { lowW: value - U, highW: value + U };
   const legal = point.limitRule === 'spurious';
   const decision = legal ? 'guarded' : point.decision;
@@ -262,6 +278,7 @@ function judgeOne(point: TestPoint, readings: readonly Reading[], context: Judge
     U,
     uUnit: budget.unit,
     k,
+    nuEff,
     uComponents: budget.components,
     low: interval.lowW,
     high: interval.highW,
@@ -307,8 +324,8 @@ export function judgePoint(
   readings: readonly Reading[],
   context: JudgeContext,
 ): PointJudgement {
-  const counted = readings.filter((reading) => !reading.voided && reading.quantityKey === point.quantityKey);
-  if (point.quantityKey !== 'spurious') return judgeOne(point, counted, context);
+  const counted = readings.filter((reading) => !reading.voided && reading.quantityKey === point.quantity.key);
+  if (point.quantity.key !== 'spurious') return judgeOne(point, counted, context);
   const products = new Map<number | null, Reading[]>();
   for (const reading of counted) {
     products.set(reading.freqHz, [...(products.get(reading.freqHz) ?? []), reading]);

@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { judgeRun, pointLabel } from './judge-run';
 import type { RunReading, RunSheet } from './judge-run';
+import { ruleForDestination } from './limit-rules';
+import { knownQuantity } from './quantities';
 import { resolvePoints } from './resolve-points';
 import type { InstrumentSpec, TestPoint } from './types';
 
@@ -15,13 +17,14 @@ const instrument: InstrumentSpec = {
   flatnessDb: 0.2,
   vswr: null,
   ownDistortionDbc: -90,
+  detector: null,
   calibration: null,
 };
 
 const point = (id: number, quantityKey: string, change: Partial<TestPoint> = {}): TestPoint => ({
   id,
   position: id,
-  quantityKey,
+  quantity: knownQuantity(quantityKey),
   band: '20m',
   freqHz: 14_060_000,
   lower: null,
@@ -30,6 +33,8 @@ const point = (id: number, quantityKey: string, change: Partial<TestPoint> = {})
   decision: 'guarded',
   required: true,
   condition: null,
+  supplyV: null,
+  method: '',
   ...change,
 });
 
@@ -51,8 +56,16 @@ const points = [point(1, 'harmonic_2'), point(2, 'rf_power', { lower: 0.1, limit
 const sheet = (readings: RunReading[], change: Partial<RunSheet> = {}): RunSheet => ({
   points,
   readings,
-  ruleKey: 'itu_category_a',
-  context: { destinationCountry: 'DE', region: 1, supplyV: 13.8, testedOn: '2027-03-09' },
+  concessions: [],
+  rule: ruleForDestination('DE', '2027-03-09'),
+  context: {
+    destinationCountry: 'DE',
+    region: 1,
+    supplyV: 13.8,
+    ambientC: null,
+    outputStage: null,
+    testedOn: '2027-03-09',
+  },
   ...change,
 });
 
@@ -99,7 +112,7 @@ describe('judging a run', () => {
 
   it('names a point as a person does', () => {
     expect(pointLabel(point(1, 'harmonic_2'))).toBe('20 m, 2nd harmonic');
-    expect(pointLabel({ band: null, quantityKey: 'current_rest' })).toBe('Current, at rest');
+    expect(pointLabel({ band: null, quantity: knownQuantity('current_rest') })).toBe('Current, at rest');
   });
 });
 

@@ -1,31 +1,66 @@
+import { evaluateFormula, parseFormula } from '~/domain/formula/formula';
+import type { Formula } from '~/domain/formula/formula';
 import { formatNumber } from './format';
+import { SHIPPED_RULES } from './shipped-rules';
 import { dbmToW, wToDbm } from './units';
 
-/** Keys of the emission rules that ship. */
-export type LimitRuleKey = 'us_97_307' | 'itu_category_a' | 'at_afv_17' | 'strictest';
+/** How sure we are of a rule's text; `entered` is by a works that names itself as the source. */
+export type TextCertainty = 'read' | 'read in quotation' | 'from memory' | 'entered';
 
-/** How sure we are of a rule's text. */
-type TextCertainty = 'read' | 'read in quotation' | 'from memory';
+/** One row of a rule: where it applies, and how far below the fundamental a product has to be there. */
+export interface LimitClause {
+  name: string;
+  certainty: TextCertainty;
+  /** Which frequency decides whether the row applies. */
+  by: 'transmit' | 'product';
+  /** Inclusive, Hz; null is open. */
+  fromHz: number | null;
+  /** Exclusive, Hz; null is open. */
+  toHz: number | null;
+  /** True where `toHz` itself still belongs to the row. */
+  toInclusive?: boolean | undefined;
+  /** Exclusive, W: the row is for less mean power only. */
+  underW?: number | null | undefined;
+  /** Attenuation asked for, dB: a formula of `P` (mean power, W), `ftx` and `fp` (Hz), see {@link LIMIT_NAMES}. */
+  requiredDb: string;
+}
 
-/** A rule as data; `clauses` are tried in order and the first that covers the frequencies applies. */
-interface LimitRule {
-  key: LimitRuleKey;
+/** An emission rule as data; `clauses` are tried in order and the first that covers the frequencies applies. */
+export interface LimitRule {
+  key: string;
   title: string;
   source: string;
   edition: string;
+  /** ISO days between which the rule is in force; null is open. */
+  validFrom: string | null;
+  validTo: string | null;
   certainty: TextCertainty;
   /** What a reader must know about the text or its use. */
   note: string;
-  clauses: readonly Clause[];
+  /** ISO 3166-1 alpha-2 codes of where it applies. */
+  destinations: readonly string[];
+  /** Applies wherever no other rule does. */
+  isElsewhere: boolean;
+  /** Used for units by itself; false for one that is listed for reference. */
+  isAutomatic: boolean;
+  clauses: readonly LimitClause[];
 }
 
-interface Clause {
-  name: string;
+/** What a clause's formula may name. */
+export const LIMIT_NAMES = ['P', 'ftx', 'fp'] as const;
+
+/** The rule that a run is judged by: one, or the strictest of several. */
+export interface ChosenRule {
+  key: string;
+  title: string;
+  source: string;
+  note: string;
   certainty: TextCertainty;
-  covers: (args: LimitArgs) => boolean;
-  /** Attenuation below the fundamental that is asked for, dB. */
-  requiredDb: (args: LimitArgs) => number;
+  rules: readonly LimitRule[];
 }
+
+/** Key of the choice of the strictest of all rules, for a unit without a buyer. */
+export const STRICTEST = 'strictest';
 
 /** Measured mean power of the fundamental (W), the transmit and the product's frequency (Hz). */
 interface LimitArgs {
@@ -41,156 +76,102 @@ type LimitResult =
       ok: true;
       limitDbc: number;
       limitDbm: number;
-      /** The rule that binds; for `strictest` one of the others. */
-      ruleKey: LimitRuleKey;
+      /** The rule that binds. */
+      ruleKey: string;
       ruleText: string;
       certainty: TextCertainty;
     }
   | { ok: false; reason: string };
 
-/** Attenuation that brings the product down to an absolute level. */
-function downTo(levelDbm: number, powerW: number): number {
-  return wToDbm(powerW) - levelDbm;
+function isInForce({ validFrom, validTo }: LimitRule, day: string): boolean {
+  return (validFrom === null || validFrom <= day) && (validTo === null || day <= validTo);
 }
 
-const productHz = (args: LimitArgs): number => args.productFreqHz ?? NaN;
+const LEAST_SURE: readonly TextCertainty[] = ['from memory', 'entered', 'read in quotation', 'read'];
 
-const US: LimitRule = {
-  key: 'us_97_307',
-  title: '47 CFR 97.307(d), (e)',
-  source: '47 CFR 97.307',
-  edition: 'as amended for transmitters installed after 1 January 2003',
-  certainty: 'read',
-  note: 'The transmit frequency decides between (d) and (e), not that of the product. No reference bandwidth is given.',
-  clauses: [
-    {
-      name: '47 CFR 97.307(d)',
-      certainty: 'read',
-      covers: ({ txFreqHz }) => txFreqHz < 30e6,
-      requiredDb: () => 43,
-    },
-    {
-      name: '47 CFR 97.307(e)',
-      certainty: 'read',
-      covers: ({ txFreqHz }) => txFreqHz >= 30e6 && txFreqHz <= 225e6,
-      requiredDb: ({ powerW }) => {
-        if (powerW > 25) return 60;
-        // At most 25 µW and 40 dB down, but nothing need go below 10 µW.
-        const limitW = Math.max(10e-6, Math.min(25e-6, powerW * 1e-4));
-        return 10 * Math.log10(powerW / limitW);
-      },
-    },
-  ],
-};
+function asChosen(rule: LimitRule): ChosenRule {
+  const { key, title, source, note, certainty } = rule;
+  return { key, title, source, note, certainty, rules: [rule] };
+}
 
-const ITU: LimitRule = {
-  key: 'itu_category_a',
-  title: 'ITU-R SM.329 category A',
-  source: 'ITU Radio Regulations, Appendix 3; ITU-R SM.329',
-  edition: 'category A',
-  certainty: 'read in quotation',
-  note:
-    'The numbers were read in quotations, the wording of the tables is from memory. The power is the peak envelope power; ' +
-    'a steady carrier has the same mean power.',
-  clauses: [
-    {
-      name: 'ITU-R SM.329 category A, amateur below 30 MHz',
-      certainty: 'read in quotation',
-      covers: ({ txFreqHz }) => txFreqHz < 30e6,
-      requiredDb: ({ powerW }) => Math.min(43 + 10 * Math.log10(powerW), 50),
-    },
-    {
-      name: 'ITU-R SM.329 category A, general above 30 MHz',
-      certainty: 'read in quotation',
-      covers: ({ txFreqHz }) => txFreqHz >= 30e6,
-      requiredDb: ({ powerW }) => Math.min(43 + 10 * Math.log10(powerW), 70),
-    },
-  ],
-};
-
-const AUSTRIA: LimitRule = {
-  key: 'at_afv_17',
-  title: 'AFV § 17 (Austria)',
-  source: 'Amateurfunkverordnung (Austria), § 17',
-  edition: 'as read',
-  certainty: 'read',
-  note:
-    'Goes by the frequency of the product. The argument f/35 between 35 and 50 MHz was an image and is inferred from the ' +
-    'continuity from 40 to 60 dB. A frequency on the border of two rows takes the stricter one.',
-  clauses: [
-    {
-      name: 'AFV § 17, 0.15 to 1.7 MHz',
-      certainty: 'read',
-      covers: (args) => productHz(args) >= 150e3 && productHz(args) <= 1.7e6,
-      requiredDb: ({ powerW }) => Math.min(60, downTo(-36, powerW)),
-    },
-    {
-      name: 'AFV § 17, 1.7 to 35 MHz',
-      certainty: 'read',
-      covers: (args) => productHz(args) > 1.7e6 && productHz(args) < 35e6,
-      requiredDb: () => 40,
-    },
-    {
-      name: 'AFV § 17, 35 to 50 MHz',
-      certainty: 'read',
-      covers: (args) => productHz(args) >= 35e6 && productHz(args) < 50e6,
-      requiredDb: (args) => 40 + 129.1 * Math.log10(productHz(args) / 35e6),
-    },
-    {
-      name: 'AFV § 17, 50 MHz to 1 GHz',
-      certainty: 'read',
-      covers: (args) => productHz(args) >= 50e6 && productHz(args) <= 1e9,
-      requiredDb: () => 60,
-    },
-    {
-      name: 'AFV § 17, above 1 GHz',
-      certainty: 'read',
-      covers: (args) => productHz(args) > 1e9,
-      requiredDb: ({ powerW }) => downTo(-30, powerW),
-    },
-  ],
-};
-
-const STRICTEST: LimitRule = {
-  key: 'strictest',
-  title: 'The strictest of all rules here',
-  source: [US, ITU, AUSTRIA].map((rule) => rule.source).join('; '),
-  edition: 'each as stated',
-  certainty: 'read in quotation',
-  note: 'For a unit without a buyer. A rule that says nothing for the product is left out.',
-  clauses: [],
-};
-
-/** The rules that ship. Limits of ETSI EN 301 783 were not read and are not among them. */
-export const LIMIT_RULES: Record<LimitRuleKey, LimitRule> = {
-  us_97_307: US,
-  itu_category_a: ITU,
-  at_afv_17: AUSTRIA,
-  strictest: STRICTEST,
-};
-
-const UNITED_STATES = new Set(['US', 'PR', 'VI', 'GU', 'AS', 'MP', 'UM']);
+function strictestOf(rules: readonly LimitRule[]): ChosenRule {
+  return {
+    key: STRICTEST,
+    title: 'The strictest of all rules here',
+    source: rules.map(({ source }) => source).join('; '),
+    note: 'For a unit without a buyer. A rule that says nothing for the product is left out.',
+    certainty: LEAST_SURE.find((each) => rules.some(({ certainty }) => certainty === each)) ?? 'from memory',
+    rules,
+  };
+}
 
 /**
- * Rule by where the unit goes: the United States and its territories, Austria, ITU category A elsewhere, the
- * strictest of all without a destination. @param countryCode ISO 3166-1 alpha-2 or null
+ * Rule by where the unit goes: the one that names the destination, else the one for elsewhere; the strictest of
+ * all where there is no destination, or where no rule is for elsewhere. A works' own comes before one that ships.
+ *
+ * @param countryCode ISO 3166-1 alpha-2 or null
+ * @param rules those of the works, own ones first
+ * @param day of the test, ISO day: a rule counts while it is in force
  */
-export function ruleForDestination(countryCode: string | null): LimitRuleKey {
-  if (countryCode === null) return 'strictest';
+export function ruleForDestination(
+  countryCode: string | null,
+  day: string,
+  rules: readonly LimitRule[] = SHIPPED_RULES,
+): ChosenRule {
+  const usable = rules.filter((rule) => rule.isAutomatic && isInForce(rule, day));
+  if (countryCode === null) return strictestOf(usable);
   const code = countryCode.toUpperCase();
-  if (UNITED_STATES.has(code)) return 'us_97_307';
-  return code === 'AT' ? 'at_afv_17' : 'itu_category_a';
+  const found =
+    usable.find(({ destinations }) => destinations.includes(code)) ??
+    usable.find(({ isElsewhere }) => isElsewhere);
+  return found === undefined ? strictestOf(usable) : asChosen(found);
+}
+
+/** The choice of one rule by itself, for its page and for checks against its source; null where there is none. */
+export function ruleByKey(key: string, rules: readonly LimitRule[] = SHIPPED_RULES): ChosenRule | null {
+  const rule = rules.find((each) => each.key === key);
+  return rule === undefined ? null : asChosen(rule);
+}
+
+function covers(clause: LimitClause, args: LimitArgs): boolean {
+  const freqHz = clause.by === 'transmit' ? args.txFreqHz : args.productFreqHz;
+  if (freqHz === null || !Number.isFinite(freqHz)) return false;
+  if (clause.fromHz !== null && freqHz < clause.fromHz) return false;
+  if (clause.toHz !== null && (clause.toInclusive === true ? freqHz > clause.toHz : freqHz >= clause.toHz))
+    return false;
+  return clause.underW === undefined || clause.underW === null || args.powerW < clause.underW;
+}
+
+// A formula's text says all there is about it, so one that was read once need not be read again.
+const read = new Map<string, Formula | null>();
+
+function formulaOf(text: string): Formula | null {
+  const known = read.get(text);
+  if (known !== undefined) return known;
+  const parsed = parseFormula(text, LIMIT_NAMES);
+  const formula = parsed.ok ? parsed.formula : null;
+  read.set(text, formula);
+  return formula;
 }
 
 function limitOf(rule: LimitRule, args: LimitArgs): LimitResult {
-  const clause = rule.clauses.find((each) => each.covers(args));
+  const clause = rule.clauses.find((each) => covers(each, args));
   if (clause === undefined) {
-    return {
-      ok: false,
-      reason: `${rule.title} says nothing for this frequency; state the product's frequency.`,
-    };
+    const reason = `${rule.title} says nothing for this frequency; state the product's frequency.`;
+    return { ok: false, reason };
   }
-  const requiredDb = clause.requiredDb(args);
+  const formula = formulaOf(clause.requiredDb);
+  const requiredDb =
+    formula === null
+      ? NaN
+      : evaluateFormula(formula, {
+          P: args.powerW,
+          ftx: args.txFreqHz,
+          ...(args.productFreqHz === null ? {} : { fp: args.productFreqHz }),
+        });
+  if (!Number.isFinite(requiredDb)) {
+    return { ok: false, reason: `${clause.name} gives no limit here: its formula has no value.` };
+  }
   return {
     ok: true,
     limitDbc: -requiredDb,
@@ -202,17 +183,17 @@ function limitOf(rule: LimitRule, args: LimitArgs): LimitResult {
 }
 
 /** Limit of a spurious product under a rule. Refuses without a measured power or where the rule is silent. */
-export function limitDbc(ruleKey: LimitRuleKey, args: LimitArgs): LimitResult {
+export function limitDbc(chosen: ChosenRule, args: LimitArgs): LimitResult {
   if (!(args.powerW > 0) || !Number.isFinite(args.powerW)) {
     return {
       ok: false,
       reason: 'The limit depends on the measured power of the fundamental: measure that first.',
     };
   }
-  if (ruleKey !== 'strictest') return limitOf(LIMIT_RULES[ruleKey], args);
   let strictest: LimitResult = { ok: false, reason: 'No rule here covers this frequency.' };
-  for (const rule of [US, ITU, AUSTRIA]) {
+  for (const rule of chosen.rules) {
     const limit = limitOf(rule, args);
+    if (chosen.rules.length === 1) return limit;
     if (limit.ok && (!strictest.ok || limit.limitDbc < strictest.limitDbc)) strictest = limit;
   }
   return strictest;
@@ -222,10 +203,10 @@ export function limitDbc(ruleKey: LimitRuleKey, args: LimitArgs): LimitResult {
  * How far the limit in dBc moves with the power: dB per dB, the larger of the slopes to either side. 0 for a
  * fixed attenuation, up to 1 where the limit is an absolute level.
  */
-export function limitSlope(ruleKey: LimitRuleKey, args: LimitArgs): number {
+export function limitSlope(chosen: ChosenRule, args: LimitArgs): number {
   const stepDb = 0.01;
   const at = (shiftDb: number): number | null => {
-    const limit = limitDbc(ruleKey, { ...args, powerW: dbmToW(wToDbm(args.powerW) + shiftDb) });
+    const limit = limitDbc(chosen, { ...args, powerW: dbmToW(wToDbm(args.powerW) + shiftDb) });
     return limit.ok ? limit.limitDbc : null;
   };
   const here = at(0);
@@ -233,4 +214,14 @@ export function limitSlope(ruleKey: LimitRuleKey, args: LimitArgs): number {
   const above = at(stepDb);
   if (here === null || below === null || above === null) return 0;
   return Math.max(Math.abs(here - below), Math.abs(above - here)) / stepDb;
+}
+
+/**
+ * Reference bandwidth in which a spurious product is stated, Hz, by its frequency: 1 kHz to 150 kHz, 10 kHz to 30 MHz,
+ * 100 kHz to 1 GHz, 1 MHz above (ITU Radio Regulations, Appendix 3, from memory).
+ */
+export function referenceBandwidthHz(productFreqHz: number): number {
+  if (productFreqHz < 150e3) return 1e3;
+  if (productFreqHz < 30e6) return 10e3;
+  return productFreqHz < 1e9 ? 100e3 : 1e6;
 }

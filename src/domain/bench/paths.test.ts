@@ -4,6 +4,7 @@ import { checkPathPower, partLoss, pathLoss } from './paths';
 import type { PathPart } from './types';
 
 const part = (over: Partial<PathPart> = {}): PathPart => ({
+  partNumber: null,
   name: 'Tap',
   loss: [
     [1e6, 40],
@@ -50,19 +51,23 @@ describe('partLoss', () => {
 
 describe('pathLoss', () => {
   it('adds its parts and loses nothing without any', () => {
-    expect(pathLoss({ parts: [part(), part()] }, 10e6)).toEqual({ ok: true, lossDb: 80.8 });
+    expect(pathLoss({ direction: 'to_instrument', parts: [part(), part()] }, 10e6)).toEqual({
+      ok: true,
+      lossDb: 80.8,
+    });
     expect(pathLoss(null, 10e6)).toEqual({ ok: true, lossDb: 0 });
   });
 
   it('refuses where one part does', () => {
     const short = part({
+      partNumber: null,
       name: 'Pad',
       loss: [
         [1e6, 10],
         [5e6, 10],
       ],
     });
-    expect(reasonOf(pathLoss({ parts: [part(), short] }, 10e6))).toMatch('Pad');
+    expect(reasonOf(pathLoss({ direction: 'to_instrument', parts: [part(), short] }, 10e6))).toMatch('Pad');
   });
 });
 
@@ -78,22 +83,25 @@ describe('checkPathPower', () => {
   });
 
   it('passes a path that stands the power', () => {
-    expect(checkPathPower({ parts: [load, pad] }, 5, 7e6)).toEqual({ ok: true });
+    expect(checkPathPower({ direction: 'to_instrument', parts: [load, pad] }, 5, 7e6)).toEqual({ ok: true });
   });
 
   it('names the part that would burn', () => {
-    const result = checkPathPower({ parts: [pad, load] }, 5, 7e6);
+    const result = checkPathPower({ direction: 'to_instrument', parts: [pad, load] }, 5, 7e6);
     expect(reasonOf(result)).toMatch(/Pad is rated for 0\.500 W and would get 5\.00 W/);
   });
 
   it('looks behind a part that loses little', () => {
     const cable = part({
+      partNumber: null,
       name: 'Cable',
       loss: [
         [1e6, 0.1],
         [60e6, 0.3],
       ],
     });
-    expect(checkPathPower({ parts: [cable, pad] }, 5, 7e6)).toMatchObject({ ok: false });
+    expect(checkPathPower({ direction: 'to_instrument', parts: [cable, pad] }, 5, 7e6)).toMatchObject({
+      ok: false,
+    });
   });
 });

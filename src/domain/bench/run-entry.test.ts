@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { knownQuantity } from './quantities';
 import { newestReading, readCell } from './run-entry';
 import type { EquippedReading } from './run-entry';
 import type { TestPoint } from './types';
@@ -6,7 +7,7 @@ import type { TestPoint } from './types';
 const point: TestPoint = {
   id: 1,
   position: 1,
-  quantityKey: 'spurious',
+  quantity: knownQuantity('spurious'),
   band: '20m',
   freqHz: 14_060_000,
   lower: null,
@@ -15,9 +16,11 @@ const point: TestPoint = {
   decision: 'guarded',
   required: true,
   condition: null,
+  supplyV: null,
+  method: '',
 };
 const facts = { readings: [], ratedPowerW: 5, loadOhm: 50 };
-const entry = { instrumentRevisionId: 1, pathRevisionId: 2, path: null };
+const entry = { instrumentRevisionId: 1, pathRevisionId: 2, path: null, detector: null };
 
 describe('a product that is no harmonic', () => {
   it.each([
@@ -42,7 +45,7 @@ describe('a product in dBm', () => {
     ...{ enteredText: '0', enteredUnit: 'dBm', value: 1e-3, instrument: null, path: null },
     ...{ instrumentRevisionId: 1, pathRevisionId: 2 },
   };
-  const harmonic = { ...point, quantityKey: 'harmonic_2' };
+  const harmonic = { ...point, quantity: knownQuantity('harmonic_2') };
   const read = (reading: EquippedReading) =>
     readCell(harmonic, { ...entry, text: '-50 dBm' }, { ...facts, readings: [reading] });
 

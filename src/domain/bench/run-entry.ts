@@ -1,9 +1,9 @@
 import { parseDecimal } from './decimal';
 import { parseEntry } from './entry';
-import { formatValue } from './format';
+import { formatPower } from './format';
 import type { RunReading } from './judge-run';
 import { pathLoss } from './paths';
-import type { PathSpec, TestPoint } from './types';
+import type { PathSpec, PeakDetector, TestPoint } from './types';
 import { wToDbm } from './units';
 
 /** A reading with the revisions it was read with. */
@@ -20,6 +20,8 @@ export interface CellEntry {
   instrumentRevisionId: number | null;
   pathRevisionId: number | null;
   path: PathSpec | null;
+  /** Of the chosen instrument, where it is a diode detector. */
+  detector: PeakDetector | null;
 }
 
 /** What a run says about entries besides its readings. */
@@ -91,7 +93,7 @@ function powerQuestion(
   const loss = point.freqHz === null ? null : pathLoss(entry.path, point.freqHz);
   const atUnitW = valueW * 10 ** ((loss?.ok === true ? loss.lossDb : 0) / 10);
   if (atUnitW <= WELL_OVER * ratedPowerW) return null;
-  const [found, rated] = [formatValue(atUnitW, 'rf_power'), formatValue(ratedPowerW, 'rf_power')];
+  const [found, rated] = [formatPower(atUnitW), formatPower(ratedPowerW)];
   return `That is ${found} at the unit, far above the ${rated} of this rig. Is it meant?`;
 }
 
@@ -100,18 +102,19 @@ function powerQuestion(
  * taken once the person confirms it.
  */
 export function readCell(point: TestPoint, entry: CellEntry, facts: CellFacts): CellResult {
-  const product = point.quantityKey === 'spurious' ? splitProduct(entry.text) : null;
+  const product = point.quantity.key === 'spurious' ? splitProduct(entry.text) : null;
   if (product?.ok === false) return refuse(product.reason);
   const refPowerDbm = carrierDbm(point, entry, facts.readings);
   const text = product?.text ?? entry.text;
-  const parsed = parseEntry(text, point.quantityKey, {
+  const parsed = parseEntry(text, point.quantity, {
     columnUnit: entry.columnUnit,
     refPowerDbm,
     loadOhm: facts.loadOhm,
+    detector: entry.detector ?? undefined,
     confirmed: entry.confirmed,
   });
   if (!parsed.ok) return parsed;
-  if (point.quantityKey === 'rf_power' && entry.confirmed !== true) {
+  if (point.quantity.key === 'rf_power' && entry.confirmed !== true) {
     const question = powerQuestion(parsed.value, point, entry, facts.ratedPowerW);
     if (question !== null) return refuse(question, true);
   }

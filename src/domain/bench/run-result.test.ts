@@ -8,6 +8,7 @@ const point = (verdict: Verdict, over: Partial<RunPoint> = {}): RunPoint => ({
   required: true,
   verdict,
   stopped: null,
+  isConceded: false,
   ...over,
 });
 
@@ -21,6 +22,26 @@ describe('runResult', () => {
     ['one failed and the rest not run', [point('fail'), point('not_run')], 'failed', true],
     ['an optional one failed', [point('pass'), point('fail', { required: false })], 'failed', true],
     ['too close beside not run', [point('too_close'), point('not_run')], 'incomplete', false],
+    [
+      'a failed one that is conceded',
+      [point('pass'), point('fail', { isConceded: true })],
+      'passed_by_concession',
+      true,
+    ],
+    [
+      'one that is too close and conceded',
+      [point('too_close', { isConceded: true })],
+      'passed_by_concession',
+      true,
+    ],
+    ['a concession that was not needed', [point('pass', { isConceded: true })], 'passed', true],
+    ['one conceded and another failed', [point('fail'), point('fail', { isConceded: true })], 'failed', true],
+    [
+      'one conceded and another not run',
+      [point('fail', { isConceded: true }), point('not_run')],
+      'incomplete',
+      false,
+    ],
     ['no point at all', [], 'incomplete', false],
   ])('%s', (_, points, result, canClose) => {
     expect(runResult(points)).toMatchObject({ result, canClose });

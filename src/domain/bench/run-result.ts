@@ -8,11 +8,13 @@ export interface RunPoint {
   verdict: Verdict;
   /** Why there is a reading but no verdict. */
   stopped: string | null;
+  /** The owner lets it go with a reason: a works' own limit that it does not meet, or not surely. */
+  isConceded: boolean;
 }
 
 /** The computed result; a person does not choose it. */
 export interface RunResult {
-  result: 'passed' | 'undecided' | 'failed' | 'incomplete';
+  result: 'passed' | 'passed_by_concession' | 'undecided' | 'failed' | 'incomplete';
   canClose: boolean;
   /** Sentences for the person: what failed, what is too close, what is missing. */
   why: string[];
@@ -21,10 +23,10 @@ export interface RunResult {
 /**
  * Result of a run. Any point that was measured and failed fails the run, required or not, and lets it close
  * at once (*failed, stopped here*). Without a failure every required point needs a verdict; one that is too
- * close to call leaves the run undecided.
+ * close to call leaves the run undecided. A conceded point counts as met, and makes it *passed by concession*.
  */
 export function runResult(points: readonly RunPoint[]): RunResult {
-  const failed = points.filter((point) => point.verdict === 'fail');
+  const failed = points.filter((point) => point.verdict === 'fail' && !point.isConceded);
   if (failed.length > 0) {
     return { result: 'failed', canClose: true, why: failed.map((point) => `${point.label} failed.`) };
   }
@@ -43,12 +45,22 @@ export function runResult(points: readonly RunPoint[]): RunResult {
     );
     return { result: 'incomplete', canClose: false, why };
   }
-  const close = required.filter((point) => point.verdict === 'too_close');
+  const close = required.filter((point) => point.verdict === 'too_close' && !point.isConceded);
   if (close.length > 0) {
     return {
       result: 'undecided',
       canClose: true,
       why: close.map((point) => `${point.label} is too close to call.`),
+    };
+  }
+  const conceded = points.filter(
+    ({ verdict, isConceded }) => isConceded && (verdict === 'fail' || verdict === 'too_close'),
+  );
+  if (conceded.length > 0) {
+    return {
+      result: 'passed_by_concession',
+      canClose: true,
+      why: conceded.map((point) => `${point.label} is let go by concession.`),
     };
   }
   return { result: 'passed', canClose: true, why: [] };

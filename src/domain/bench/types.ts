@@ -1,3 +1,5 @@
+import type { Quantity } from './quantities';
+
 /** What a test point came to. `not_run` also covers a reading on which no verdict can rest. */
 export type Verdict = 'pass' | 'too_close' | 'fail' | 'not_run';
 
@@ -11,14 +13,14 @@ export type Region = 1 | 2 | 3;
 export type Decision = 'guarded' | 'simple';
 
 /**
- * One line of a test plan. Limits are in the SI unit of the quantity (W, A, Hz) or in dBc.
+ * One line of a test plan, with the definition of its quantity. Limits are in the unit of the quantity inside.
  * `limitRule: 'spurious'` takes its limit from the emission rule of the destination instead of `lower`/`upper`.
  * `condition` is an expression over options; it is resolved before a point reaches this code.
  */
 export interface TestPoint {
   id: number;
   position: number;
-  quantityKey: string;
+  quantity: Quantity;
   band: BandKey | null;
   /** Transmit frequency of the test, Hz. */
   freqHz: number | null;
@@ -28,6 +30,21 @@ export interface TestPoint {
   decision: Decision;
   required: boolean;
   condition: string | null;
+  /** Supply of this point where it is not that of the run, V. */
+  supplyV: number | null;
+  /** How it is read, where the quantity leaves that open: criterion and bandwidth of a sensitivity. */
+  method: string;
+}
+
+/** Facts of a model's output stage that formulas need. */
+export interface OutputStage {
+  /** Output transistors that share the heat. */
+  devices: number;
+  /** Thermal resistance of each from junction to ambient, K/W; null where it is not stated. */
+  thetaKPerW: number | null;
+  /** Share of the time with the key down, 0 to 1; 1 for key-down modes. */
+  duty: number;
+  hasSink: boolean;
 }
 
 /** Unit of a half-width in an instrument's specification; `unit` is the SI unit of the quantity itself. */
@@ -47,12 +64,23 @@ export interface QuantitySpec {
   resolution: SpecHalfWidth | null;
 }
 
-/** A calibration: expanded uncertainty with its coverage factor, and the day until which it holds (ISO date). */
+/** A calibration: expanded uncertainty with its coverage factor, and the day until which it holds (ISO dates). */
 export interface InstrumentCalibration {
   expanded: number;
   unit: AccuracyUnit;
   k: number;
+  calibratedOn: string | null;
   dueOn: string;
+  laboratory: string | null;
+  certificateNumber: string | null;
+}
+
+/** A diode peak detector: V of line = tapRatio · (V shown + dropV). */
+export interface PeakDetector {
+  /** Forward drop of the diode at that current, V. */
+  dropV: number;
+  /** Line voltage over the voltage at the tap: 1 across the whole load, 2 at half of it. */
+  tapRatio: number;
 }
 
 /**
@@ -73,11 +101,15 @@ export interface InstrumentSpec {
   vswr: number | null;
   /** Its own distortion products below the carrier, dBc (negative). */
   ownDistortionDbc: number | null;
+  /** Where it is a diode detector: what Vdc stands for. */
+  detector: PeakDetector | null;
   calibration: InstrumentCalibration | null;
 }
 
 /** One part between the unit and the instrument. */
 export interface PathPart {
+  /** Of the part in the works' list; null where it is not from there. */
+  partNumber: string | null;
   name: string;
   /** Rows of [freqHz, lossDb], rising in frequency; loss is positive. */
   loss: [number, number][];
@@ -91,8 +123,9 @@ export interface PathPart {
   vswr: number | null;
 }
 
-/** The ordered parts from the unit to the instrument. */
+/** The ordered parts from the unit to the instrument, or from a generator to the unit. */
 export interface PathSpec {
+  direction: 'to_instrument' | 'from_generator';
   parts: PathPart[];
 }
 
@@ -120,6 +153,10 @@ export interface RunContext {
   region: Region | null;
   /** Supply voltage at the unit, V. */
   supplyV: number | null;
+  /** Ambient temperature, °C. */
+  ambientC: number | null;
+  /** Null where the test plan does not state it. */
+  outputStage: OutputStage | null;
   /** Day of the test, ISO date, in the zone of the works. */
   testedOn: string;
   /** Output standing wave ratio of the unit, where stated. */

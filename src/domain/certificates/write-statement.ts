@@ -1,24 +1,26 @@
 import { bandLabel } from '~/domain/bench/bands';
 import { formatAtMeter, formatUncertainty, formatValue } from '~/domain/bench/format';
 import type { PointJudgement } from '~/domain/bench/judge-point';
-import { LIMIT_RULES } from '~/domain/bench/limit-rules';
-import type { LimitRuleKey } from '~/domain/bench/limit-rules';
-import { quantityOf } from '~/domain/bench/quantities';
+import { isLegal } from '~/domain/bench/judge-run';
+import type { Quantity } from '~/domain/bench/quantities';
 import type { InstrumentSpec, PathSpec, TestPoint } from '~/domain/bench/types';
 import type { CertificateStatement, StatedInstrument, StatedPoint, StatedUncertainty } from './statement';
-import { listed } from '~/lib/listed';
+import { formatDay } from '~/lib/dates';
+import { writeConformity, writeNotAssessed } from './write-conformity';
+import type { ConformityFacts } from './write-conformity';
 
 /** A judged test point of a closed run. */
 export interface JudgedPoint {
   point: TestPoint;
   judgement: PointJudgement;
+  /** The owner's reason for letting it go; null where none was needed. */
+  concession: string | null;
 }
 
 /** Everything that the readings part of a certificate is written from. */
-export interface RunFacts {
-  points: readonly JudgedPoint[];
-  ruleKey: LimitRuleKey;
-  destinationCountry: string | null;
+export interface RunFacts extends ConformityFacts {
+  /** Of the points, those whose readings were taken over from an old test sheet. */
+  historyPointIds: ReadonlySet<number>;
   instruments: readonly { number: string; name: string; spec: InstrumentSpec }[];
   paths: readonly { number: string; name: string; spec: PathSpec }[];
 }
@@ -30,7 +32,8 @@ type WrittenParts = Pick<
 
 const DECISION_RULE =
   'A legal limit is decided with a guard band as wide as the expanded uncertainty (w = U, ILAC-G8:09/2019, 4.2.3); ' +
-  'a limit of the works’ own as the test plan says, guarded or simple (w = 0). Too close to call is no pass.';
+  'a limit of the works’ own as the test plan says, guarded or simple (w = 0). Too close to call is no pass. ' +
+  'The risk that a pass is wrong is under 2.5 % with the guard band, and up to 50 % at the limit itself without one.';
 
 const CAUTIONS = [
   'The results are of this unit alone, as it was tested. This is not a type approval.',
@@ -41,7 +44,7 @@ const CAUTIONS = [
 /** Writes what a closed run says, in words and figures; the figures that were judged stand beside the rounded ones. */
 export function writeRunParts(facts: RunFacts): WrittenParts {
   return {
-    points: facts.points.map((judged) => writePoint(judged)),
+    points: facts.points.map((judged) => writePoint(judged, facts.historyPointIds)),
     instruments: facts.instruments.map(writeInstrument),
     path: facts.paths
       .map(({ number, name, spec }) => `${number} ${name}: ${spec.parts.map((part) => part.name).join(', ')}`)
@@ -53,112 +56,92 @@ export function writeRunParts(facts: RunFacts): WrittenParts {
   };
 }
 
-function writePoint({ point, judgement }: JudgedPoint): StatedPoint {
-  const quantity = quantityOf(point.quantityKey);
+function writePoint(
+  { point, judgement, concession }: JudgedPoint,
+  historyPointIds: ReadonlySet<number>,
+): StatedPoint {
+  const { quantity } = point;
   const { value, atMeter, lower, upper, ruleText, verdict, n, atMost } = judgement;
-  if (value === null || atMeter === null) throw new Error('A certificate states only what was read.');
+  if (value === null) throw new Error('A certificate states only what was read.');
   const least = atMost ? '≤ ' : '';
   return {
-    label: quantity?.label ?? point.quantityKey,
-    quantityKey: point.quantityKey,
+    label: quantity.label,
+    quantityKey: quantity.key,
     band: point.band === null ? null : bandLabel(point.band),
     freqHz: point.freqHz,
     value,
-    unit: quantity?.unit ?? '',
-    text: least + formatValue(value, point.quantityKey),
-    atMeterText: least + formatAtMeter(atMeter, point.quantityKey),
-    uncertainty: writeUncertainty(judgement),
+    unit: quantity.unit,
+    text: least + formatValue(value, quantity),
+    // What is computed from other readings stood on no meter.
+    atMeterText: atMeter === null ? '' : least + formatAtMeter(atMeter, quantity),
+    uncertainty: writeUncertainty(judgement, quantity),
     n,
     lower,
     upper,
-    limitText: writeLimit(point.quantityKey, lower, upper),
+    limitText: statedLimit(quantity, lower, upper),
     ruleText: ruleText ?? 'works’ own',
-    decision: point.limitRule === 'spurious' ? 'guarded' : point.decision,
+    decision: isLegal(point) ? 'guarded' : point.decision,
     verdict,
-    concession: null,
+    concession: verdict === 'pass' ? null : concession,
+    ...(quantity.formula === null ? {} : { origin: 'computed' as const }),
+    ...(historyPointIds.has(point.id) ? { origin: 'history' as const } : {}),
+    ...writeCondition(point),
   };
 }
 
-function writeUncertainty(judgement: PointJudgement): StatedUncertainty | null {
+/** How it was read where the plan says so: criterion and bandwidth of a sensitivity, a supply of its own. */
+function writeCondition({ method, supplyV }: TestPoint): { condition?: string } {
+  const words = [method, supplyV === null ? '' : `supply ${supplyV.toFixed(2)} V`];
+  const condition = words.filter((text) => text !== '').join(', ');
+  return condition === '' ? {} : { condition };
+}
+
+function writeUncertainty(judgement: PointJudgement, { format }: Quantity): StatedUncertainty | null {
   const { U, uUnit, k, low, high } = judgement;
   if (U === null || uUnit === null || k === null || low === null || high === null) return null;
-  const text = formatUncertainty(U, uUnit);
+  const text = formatUncertainty(U, uUnit, format);
   return { value: U, unit: uUnit, k, low, high, text };
 }
 
-function writeLimit(quantityKey: string, lower: number | null, upper: number | null): string {
+/** A limit with its unit: `≥ 2.00 W`, `55.0 mA to 65.0 mA`; empty where there is none. */
+export function writeLimit(quantity: Quantity, lower: number | null, upper: number | null): string {
   if (lower !== null && upper !== null) {
-    return `${formatValue(lower, quantityKey)} to ${formatValue(upper, quantityKey)}`;
+    return `${formatValue(lower, quantity)} to ${formatValue(upper, quantity)}`;
   }
-  if (lower !== null) return `≥ ${formatValue(lower, quantityKey)}`;
-  return upper === null ? '' : `≤ ${formatValue(upper, quantityKey)}`;
+  if (lower !== null) return `≥ ${formatValue(lower, quantity)}`;
+  return upper === null ? '' : `≤ ${formatValue(upper, quantity)}`;
+}
+
+/** As {@link writeLimit}, with a unit that both limits share said once: `2.40 to 3.60 W`, `±100 Hz`. */
+function statedLimit(quantity: Quantity, lower: number | null, upper: number | null): string {
+  const text = writeLimit(quantity, lower, upper);
+  if (lower === null || upper === null) return text;
+  const high = formatValue(upper, quantity);
+  if (lower === -upper && upper > 0) return `±${high.replace(/^\+/u, '')}`;
+  const unit = /[\s\u00a0]\S+$/u.exec(high)?.[0];
+  const low = formatValue(lower, quantity);
+  return unit !== undefined && low.endsWith(unit) ? `${low.slice(0, -unit.length)} to ${high}` : text;
 }
 
 function writeInstrument({ number, name, spec }: RunFacts['instruments'][number]): StatedInstrument {
   return {
     name: `${number} ${name}`,
     grade: spec.grade,
-    gradeNote: spec.checkedAgainst ?? '',
+    gradeNote: gradeNoteOf(spec),
     calibrationDueOn: spec.calibration?.dueOn ?? null,
   };
 }
 
-/** Which harmonics, which bands and which rule the statement covers. */
-function writeConformity({ points, ruleKey, destinationCountry }: RunFacts): string[] {
-  const orders = [...new Set(points.flatMap(({ point }) => quantityOf(point.quantityKey)?.order ?? []))].sort(
-    (a, b) => a - b,
-  );
-  const bands = [
-    ...new Set(points.flatMap(({ point }) => (point.band === null ? [] : [bandLabel(point.band)]))),
-  ];
-  const rule = LIMIT_RULES[ruleKey];
-  const where =
-    destinationCountry === null ? 'for a unit without a buyer' : `for the destination ${destinationCountry}`;
-  const sentences: string[] = [];
-  if (orders.length > 0) {
-    sentences.push(
-      `On ${listed(bands)} the ${listed(orders.map(ordinal))} harmonic of the carrier ${orders.length === 1 ? 'is' : 'are each'} ` +
-        `inside ${rule.title} (${rule.source}) at the measured power by more than its expanded uncertainty, ${where}.`,
-    );
-  }
-  const own = [
-    ...new Set(
-      points.flatMap(({ point }) =>
-        point.limitRule === 'fixed'
-          ? [inText(quantityOf(point.quantityKey)?.label ?? point.quantityKey)]
-          : [],
-      ),
-    ),
-  ];
-  if (own.length > 0)
-    sentences.push(`The ${listed(own)} ${own.length === 1 ? 'is' : 'are'} inside the works’ own limits.`);
-  return sentences;
-}
-
-function writeNotAssessed({ points, ruleKey }: RunFacts): string[] {
-  const orders = points.flatMap(({ point }) => quantityOf(point.quantityKey)?.order ?? []);
-  const highest = Math.max(0, ...orders);
-  const rule = LIMIT_RULES[ruleKey];
+/** Against what it was checked, or who calibrated it, when and under which number. */
+function gradeNoteOf({ grade, checkedAgainst, calibration }: InstrumentSpec): string {
+  if (grade === 'checked') return checkedAgainst === null ? '' : `against ${checkedAgainst}`;
+  if (grade === 'unchecked' || calibration === null) return '';
+  const { laboratory, certificateNumber, calibratedOn } = calibration;
   return [
-    ...(highest > 0 ? [`Harmonics above the ${ordinal(highest)} were not assessed.`] : []),
-    ...(points.some(({ point }) => point.quantityKey === 'spurious')
-      ? []
-      : ['Products other than the harmonics named were not assessed.']),
-    'Not assessed to EN 301 783.',
-    ...(rule.certainty === 'read'
-      ? []
-      : [`The text of ${rule.title} was taken ${certaintyWords[rule.certainty]}.`]),
-  ];
-}
-
-const certaintyWords = { 'read in quotation': 'from quotation', 'from memory': 'from memory' } as const;
-
-function ordinal(order: number): string {
-  if (order === 2) return '2nd';
-  return order === 3 ? '3rd' : `${order}th`;
-}
-
-/** `Current, key down` within a sentence: `current key down`. */
-function inText(label: string): string {
-  return label.replace(',', '').toLowerCase();
+    laboratory === null ? '' : `by ${laboratory}`,
+    calibratedOn === null ? '' : `on ${formatDay(calibratedOn)}`,
+    certificateNumber === null ? '' : `certificate ${certificateNumber}`,
+  ]
+    .filter((text) => text !== '')
+    .join(', ');
 }

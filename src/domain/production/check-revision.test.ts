@@ -1,3 +1,4 @@
+import { quantityBook } from '~/domain/bench/quantities';
 import { describe, expect, it } from 'vitest';
 import { checkBuildSheet, checkTestPlan } from './check-revision';
 
@@ -43,7 +44,7 @@ describe('checkBuildSheet', () => {
 describe('checkTestPlan', () => {
   it('passes a fixed limit, and a legal one without any of its own', () => {
     const legal = { ...point, quantityKey: 'spurious', lower: null, limitRule: 'spurious' as const };
-    expect(checkTestPlan([point, legal], groups)).toEqual({ ok: true });
+    expect(checkTestPlan([point, legal], groups, quantityBook())).toEqual({ ok: true });
   });
   it.each([
     { points: [], reasons: ['The test plan has no point.'] },
@@ -51,6 +52,6 @@ describe('checkTestPlan', () => {
     { points: [{ ...point, upper: 4 }], reasons: ['Point 1: the lower limit is above the upper one.'] },
     { points: [{ ...point, quantityKey: 'taste' }], reasons: ['Point 1: there is no quantity “taste”.'] },
   ])('$reasons', ({ points, reasons }) => {
-    expect(checkTestPlan(points, groups)).toEqual({ ok: false, reasons });
+    expect(checkTestPlan(points, groups, quantityBook())).toEqual({ ok: false, reasons });
   });
 });

@@ -1,4 +1,4 @@
-import { quantityOf } from '~/domain/bench/quantities';
+import type { QuantityBook } from '~/domain/bench/quantities';
 import { keysOf, parseCondition } from '~/domain/planning/condition';
 import type { OptionGroup } from '~/domain/planning/configuration';
 
@@ -28,6 +28,7 @@ export function checkTestPlan(
     condition: string | null;
   }[],
   groups: readonly OptionGroup[],
+  quantities: QuantityBook,
 ): Answer {
   if (points.length === 0) return { ok: false, reasons: ['The test plan has no point.'] };
   return answer(
@@ -35,7 +36,9 @@ export function checkTestPlan(
       const where = `Point ${point.position}`;
       const { lower, upper } = point;
       return [
-        ...(quantityOf(point.quantityKey) ? [] : [`${where}: there is no quantity “${point.quantityKey}”.`]),
+        ...(quantities.has(point.quantityKey)
+          ? []
+          : [`${where}: there is no quantity “${point.quantityKey}”.`]),
         ...(point.limitRule === 'fixed' && lower === null && upper === null
           ? [`${where} has no limit.`]
           : []),

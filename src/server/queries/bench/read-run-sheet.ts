@@ -1,12 +1,13 @@
-import { asc, eq, inArray } from 'drizzle-orm';
+import { and, asc, eq, inArray, isNull } from 'drizzle-orm';
 import { BAND_KEYS, regionOf } from '~/domain/bench/bands';
-import type { RunReading, RunSheet } from '~/domain/bench/judge-run';
+import type { Concession, RunReading, RunSheet } from '~/domain/bench/judge-run';
 import { ruleForDestination } from '~/domain/bench/limit-rules';
 import { resolvePoints } from '~/domain/bench/resolve-points';
+import { unknownQuantity } from '~/domain/bench/quantities';
 import type { BandKey, TestPoint } from '~/domain/bench/types';
 import { invariant } from '~/lib/invariant';
 import { dayOf } from '~/lib/dates';
-import { instrumentSpecSchema, pathSpecSchema } from '~/schemas/bench-specs';
+import { instrumentSpecSchema, outputStageSchema, pathSpecSchema } from '~/schemas/bench-specs';
 import type { Reader } from '~/server/db/client';
 import {
   instrumentRevisions,
@@ -14,10 +15,14 @@ import {
   pathRevisions,
   paths,
   readings,
+  runConcessions,
+  testPlanRevisions,
   testPoints,
   testRuns,
   units,
 } from '~/server/db/schema';
+import { listLimitRules } from './list-limit-rules';
+import { listQuantities } from './list-quantities';
 import { getWorks } from '~/server/queries/office/get-works';
 
 /** A reading as it stands in the database, beside what the computation needs of it. */
@@ -49,13 +54,17 @@ export function asBand(text: string | null): BandKey | null {
 
 /** The points of a test plan revision as the bench computes with them. */
 export async function listTestPoints(reader: Reader, testPlanRevisionId: number): Promise<TestPoint[]> {
-  const rows = await reader
-    .select()
-    .from(testPoints)
-    .where(eq(testPoints.testPlanRevisionId, testPlanRevisionId))
-    .orderBy(asc(testPoints.position));
-  return rows.map(({ lowerLimit: lower, upperLimit: upper, band, ...row }) => ({
+  const [quantities, rows] = await Promise.all([
+    listQuantities(reader),
+    reader
+      .select()
+      .from(testPoints)
+      .where(eq(testPoints.testPlanRevisionId, testPlanRevisionId))
+      .orderBy(asc(testPoints.position)),
+  ]);
+  return rows.map(({ lowerLimit: lower, upperLimit: upper, band, quantityKey, ...row }) => ({
     ...row,
+    quantity: quantities.get(quantityKey) ?? unknownQuantity(quantityKey),
     band: asBand(band),
     lower,
     upper,
@@ -69,32 +78,50 @@ export async function readRunSheet(reader: Reader, runId: number): Promise<Store
       testPlanRevisionId: testRuns.testPlanRevisionId,
       destinationCountry: testRuns.destinationCountry,
       supplyV: testRuns.supplyV,
+      ambientC: testRuns.ambientC,
+      outputStage: testPlanRevisions.outputStage,
       openedAt: testRuns.openedAt,
       options: units.options,
     })
     .from(testRuns)
     .innerJoin(units, eq(units.id, testRuns.unitId))
+    .innerJoin(testPlanRevisions, eq(testPlanRevisions.id, testRuns.testPlanRevisionId))
     .where(eq(testRuns.id, runId));
   invariant(run !== undefined, 'the run is there');
-  const [points, stored, { timeZone }] = await Promise.all([
+  const [points, stored, concessions, rules, { timeZone }] = await Promise.all([
     listTestPoints(reader, run.testPlanRevisionId),
     listReadings(reader, runId),
+    listConcessions(reader, runId),
+    listLimitRules(reader),
     getWorks(reader),
   ]);
   const resolved = resolvePoints(points, new Set(run.options));
   invariant(resolved.ok, 'a released test plan resolves');
   const { destinationCountry } = run;
+  const testedOn = dayOf(run.openedAt, timeZone);
   return {
     points: resolved.points,
     readings: stored,
-    ruleKey: ruleForDestination(destinationCountry),
+    concessions,
+    rule: ruleForDestination(destinationCountry, testedOn, rules),
     context: {
       destinationCountry,
       region: destinationCountry === null ? null : regionOf(destinationCountry),
       supplyV: run.supplyV,
-      testedOn: dayOf(run.openedAt, timeZone),
+      ambientC: run.ambientC,
+      outputStage: run.outputStage === null ? null : outputStageSchema.parse(run.outputStage),
+      testedOn,
     },
   };
+}
+
+/** What the owner lets go of an open run, and has not withdrawn. */
+async function listConcessions(reader: Reader, runId: number): Promise<Concession[]> {
+  return reader
+    .select({ testPointId: runConcessions.testPointId, reason: runConcessions.reason })
+    .from(runConcessions)
+    .where(and(eq(runConcessions.testRunId, runId), isNull(runConcessions.withdrawnAt)))
+    .orderBy(asc(runConcessions.id));
 }
 
 async function listReadings(reader: Reader, runId: number): Promise<StoredReading[]> {

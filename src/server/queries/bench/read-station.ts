@@ -1,11 +1,13 @@
 import { and, asc, desc, eq, inArray, lt } from 'drizzle-orm';
+import { destinationNote } from '~/domain/bench/bands';
 import { formatValue } from '~/domain/bench/format';
 import { pointLabel } from '~/domain/bench/judge-run';
-import { LIMIT_RULES } from '~/domain/bench/limit-rules';
+import { unknownQuantity } from '~/domain/bench/quantities';
 import { countryName } from '~/lib/countries';
 import { formatTimeOf } from '~/lib/dates';
 import { normaliseScan } from '~/lib/serials';
-import { keptSweepSchema, stationSchema } from '~/schemas/bench-station';
+import { stationSchema } from '~/schemas/bench-station';
+import { keptSweepSchema } from '~/schemas/bench-sweeps';
 import type { Station } from '~/schemas/bench-station';
 import type { Reader } from '~/server/db/client';
 import {
@@ -24,6 +26,7 @@ import {
 import { getWorks } from '~/server/queries/office/get-works';
 import { findUnit } from '~/server/queries/production/find-unit';
 import type { FoundUnit } from '~/server/queries/production/find-unit';
+import { listQuantities } from './list-quantities';
 import { asBand, readRunSheet } from './read-run-sheet';
 
 /** A run's id by its unit's serial number as scanned or typed; null where there is none. */
@@ -68,7 +71,7 @@ export async function readStation(reader: Reader, runId: number): Promise<Statio
     reader.select({ runNo: testRuns.runNo }).from(testRuns).where(eq(testRuns.unitId, run.unitId)),
     findCertificate(reader, runId),
   ]);
-  const rule = LIMIT_RULES[sheet.ruleKey];
+  const { rule } = sheet;
   const { destinationCountry: country } = run;
   return stationSchema.parse({
     run: {
@@ -84,7 +87,7 @@ export async function readStation(reader: Reader, runId: number): Promise<Statio
       title: rule.title,
       source: rule.source,
       note: rule.note,
-      destination: country === null ? 'no buyer yet' : countryName(country),
+      destination: country === null ? 'no buyer yet' : destinationOf(country),
     },
     earlier,
     certificateNumber: certificate,
@@ -92,6 +95,11 @@ export async function readStation(reader: Reader, runId: number): Promise<Statio
     kept,
     sweeps: loaded,
   });
+}
+
+function destinationOf(country: string): string {
+  const note = destinationNote(country);
+  return note === null ? countryName(country) : `${countryName(country)}. ${note}`;
 }
 
 /** What the tag says beneath the serial number; the buyer by call sign only. */
@@ -121,7 +129,8 @@ async function listEarlier(reader: Reader, unitId: number, before: number, timeZ
     .orderBy(desc(testRuns.runNo));
   if (runs.length === 0) return [];
   const ids = runs.map(({ id }) => id);
-  const [failed, mended] = await Promise.all([
+  const [quantities, failed, mended] = await Promise.all([
+    listQuantities(reader),
     reader
       .select({
         runId: runPoints.testRunId,
@@ -144,11 +153,11 @@ async function listEarlier(reader: Reader, unitId: number, before: number, timeZ
       text: tester === null ? closed : `${closed} by ${tester}`,
       failed: failed
         .filter(({ runId }) => runId === id)
-        .map(
-          ({ quantityKey, band, value }) =>
-            pointLabel({ quantityKey, band: asBand(band) }) +
-            (value === null ? '' : ` ${formatValue(value, quantityKey)}`),
-        ),
+        .map(({ quantityKey, band, value }) => {
+          const quantity = quantities.get(quantityKey) ?? unknownQuantity(quantityKey);
+          const read = value === null ? '' : ` ${formatValue(value, quantity)}`;
+          return pointLabel({ quantity, band: asBand(band) }) + read;
+        }),
       rework: rework === undefined ? null : (rework.remedy ?? 'in rework'),
     };
   });

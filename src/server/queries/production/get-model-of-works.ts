@@ -1,6 +1,7 @@
 import { asc, eq } from 'drizzle-orm';
 import type { RevisionKind } from '~/schemas/production-models';
 import { compareLetters } from '~/lib/revision-letters';
+import type { TestPoint } from '~/domain/bench/types';
 import type { Reader } from '~/server/db/client';
 import {
   bomRevisions,
@@ -8,9 +9,9 @@ import {
   buildSteps,
   models,
   testPlanRevisions,
-  testPoints,
   userProfiles,
 } from '~/server/db/schema';
+import { listTestPoints } from '~/server/queries/bench/read-run-sheet';
 import { readBomLines } from './read-bom';
 
 export interface RevisionRow {
@@ -68,7 +69,7 @@ async function listRevisions(
 export type RevisionContent =
   | { kind: 'bom'; lines: Awaited<ReturnType<typeof readBomLines>> }
   | { kind: 'build_sheet'; steps: (typeof buildSteps.$inferSelect)[] }
-  | { kind: 'test_plan'; points: (typeof testPoints.$inferSelect)[] };
+  | { kind: 'test_plan'; points: TestPoint[] };
 
 /** What stands in a revision. */
 export async function readRevision(
@@ -85,9 +86,7 @@ export async function readRevision(
       return { kind, steps: await steps.orderBy(asc(position)) };
     }
     case 'test_plan': {
-      const { testPlanRevisionId, position } = testPoints;
-      const points = reader.select().from(testPoints).where(eq(testPlanRevisionId, revisionId));
-      return { kind, points: await points.orderBy(asc(position)) };
+      return { kind, points: await listTestPoints(reader, revisionId) };
     }
   }
 }

@@ -1,5 +1,6 @@
 import { and, asc, desc, eq, isNull } from 'drizzle-orm';
 import { alias } from 'drizzle-orm/mysql-core';
+import { unknownQuantity } from '~/domain/bench/quantities';
 import type { Reader } from '~/server/db/client';
 import {
   certificates,
@@ -16,6 +17,7 @@ import {
   testRuns,
   userProfiles,
 } from '~/server/db/schema';
+import { listQuantities } from '~/server/queries/bench/list-quantities';
 import { findUnit } from './find-unit';
 import { readKit } from './read-kit';
 import { readSteps } from './read-steps';
@@ -85,6 +87,7 @@ async function readRuns(reader: Reader, unitId: number) {
     .leftJoin(userProfiles, eq(userProfiles.userId, testRuns.testerUserId))
     .where(eq(testRuns.unitId, unitId))
     .orderBy(asc(testRuns.runNo));
+  const quantities = await listQuantities(reader);
   const failed = await reader
     .select({
       runId: runPoints.testRunId,
@@ -100,7 +103,11 @@ async function readRuns(reader: Reader, unitId: number) {
     .innerJoin(testPoints, eq(testPoints.id, runPoints.testPointId))
     .where(and(eq(testRuns.unitId, unitId), eq(runPoints.verdict, 'fail')))
     .orderBy(asc(testPoints.position));
-  return runs.map((run) => ({ ...run, failed: failed.filter(({ runId }) => runId === run.id) }));
+  const named = failed.map(({ quantityKey, ...point }) => ({
+    ...point,
+    quantity: quantities.get(quantityKey) ?? unknownQuantity(quantityKey),
+  }));
+  return runs.map((run) => ({ ...run, failed: named.filter(({ runId }) => runId === run.id) }));
 }
 
 async function readReworks(reader: Reader, unitId: number) {
@@ -110,14 +117,17 @@ async function readReworks(reader: Reader, unitId: number) {
     .select({
       id: reworks.id,
       cause: reworks.cause,
+      foundCause: reworks.foundCause,
       remedy: reworks.remedy,
       minutes: reworks.minutes,
       openedAt: reworks.openedAt,
       openedBy: opener.name,
       closedAt: reworks.closedAt,
       closedBy: closer.name,
+      confirmedByRunNo: testRuns.runNo,
     })
     .from(reworks)
+    .leftJoin(testRuns, eq(testRuns.id, reworks.confirmedByRunId))
     .leftJoin(opener, eq(opener.userId, reworks.openedBy))
     .leftJoin(closer, eq(closer.userId, reworks.closedBy))
     .where(eq(reworks.unitId, unitId))

@@ -57,7 +57,7 @@ export function runScene(
         },
         w,
       );
-      const { points, ruleKey } = await readRunSheet(w.tx, runId);
+      const { points, rule } = await readRunSheet(w.tx, runId);
       const equipmentOf = await readEquipment(w);
       const isStopped = (index: number) => plan.stopAfter !== undefined && index >= plan.stopAfter;
       const failsAt = points.findIndex((point) => isFaulty(point, plan.fault));
@@ -79,7 +79,7 @@ export function runScene(
           play: async (inner) => {
             if (withVoid) await readWrongly(inner, runId, point, equipment);
             for (let time = 0; time < times; time += 1) {
-              const text = textOf(point, traits, { fault, ruleKey, time }, random);
+              const text = textOf(point, traits, { fault, rule, time }, random);
               await enter(inner, runId, point, text, equipment, withVoid || time > 0);
             }
           },
@@ -95,7 +95,7 @@ export function runScene(
 }
 
 function isFaulty(point: TestPoint, fault: Fault | null): boolean {
-  return fault !== null && point.quantityKey === fault.quantityKey && point.band === fault.band;
+  return fault !== null && point.quantity.key === fault.quantityKey && point.band === fault.band;
 }
 
 async function enter(
@@ -143,7 +143,7 @@ async function readEquipment(w: WriteContext): Promise<(point: TestPoint) => Equ
     pathRevisionId: tap?.id ?? null,
   });
   const alone = (number: string): Equipment => ({ ...withPath(number), pathRevisionId: null });
-  return ({ quantityKey }) => {
+  return ({ quantity: { key: quantityKey } }) => {
     if (quantityKey === 'rf_power') return withPath('PM-2');
     if (quantityKey.startsWith('harmonic')) return withPath('SA-1');
     if (quantityKey.startsWith('current')) return alone('MM-4');

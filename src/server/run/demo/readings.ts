@@ -1,4 +1,4 @@
-import type { LimitRuleKey } from '~/domain/bench/limit-rules';
+import type { ChosenRule } from '~/domain/bench/limit-rules';
 import { limitDbc } from '~/domain/bench/limit-rules';
 import type { BandKey, TestPoint } from '~/domain/bench/types';
 import { wToDbm } from '~/domain/bench/units';
@@ -88,11 +88,11 @@ export function drawTraits(slug: string, batchShift: number, firmware: string, r
 export function textOf(
   point: TestPoint,
   traits: RigTraits,
-  run: { fault: Fault | null; ruleKey: LimitRuleKey; time: number },
+  run: { fault: Fault | null; rule: ChosenRule; time: number },
   random: Random,
 ): string {
   const powerW = point.band === null ? 0 : (traits.powerW[point.band] ?? 0);
-  switch (point.quantityKey) {
+  switch (point.quantity.key) {
     case 'rf_power': {
       const isWeak = run.fault !== null;
       const dbm = wToDbm(isWeak ? (point.lower ?? powerW) * 0.72 : powerW) - tapDb + 0.02 * random.normal();
@@ -100,7 +100,7 @@ export function textOf(
     }
     case 'harmonic_2':
     case 'harmonic_3': {
-      const order = point.quantityKey === 'harmonic_2' ? 0 : 1;
+      const order = point.quantity.key === 'harmonic_2' ? 0 : 1;
       const clean = point.band === null ? cleanDbc : (traits.harmonics[point.band]?.[order] ?? cleanDbc);
       const level =
         run.fault === null ? clean + 0.15 * random.normal() : faultyDbc(point, powerW, order + 2, run);
@@ -124,10 +124,10 @@ function faultyDbc(
   point: TestPoint,
   powerW: number,
   order: number,
-  run: { fault: Fault | null; ruleKey: LimitRuleKey; time: number },
+  run: { fault: Fault | null; rule: ChosenRule; time: number },
 ): number {
   const txFreqHz = point.freqHz ?? 0;
-  const limit = limitDbc(run.ruleKey, { powerW, txFreqHz, productFreqHz: order * txFreqHz });
+  const limit = limitDbc(run.rule, { powerW, txFreqHz, productFreqHz: order * txFreqHz });
   const at = limit.ok ? limit.limitDbc : -43;
   return run.fault?.kind === 'too_close' ? at - 0.3 + 0.1 * run.time : at + 4.7;
 }

@@ -1,6 +1,7 @@
 import { eq, sql } from 'drizzle-orm';
 import type { PointJudgement } from '~/domain/bench/judge-point';
 import { COMPUTATION_VERSION, judgeRun, pointLabel } from '~/domain/bench/judge-run';
+import type { RunResult } from '~/domain/bench/run-result';
 import type { TestPoint } from '~/domain/bench/types';
 import { nextStage } from '~/domain/production/stages';
 import { invariant } from '~/lib/invariant';
@@ -8,11 +9,15 @@ import { runPoints, testPlanRevisions, testRuns, units } from '~/server/db/schem
 import { DomainError } from '~/server/errors';
 import { readRunSheet } from '~/server/queries/bench/read-run-sheet';
 import { advanceUnit } from '~/server/services/production/advance-unit';
+import { confirmRemedies } from '~/server/services/production/confirm-remedies';
 import { lockUnit } from '~/server/services/production/lock-unit';
 import { openRework } from '~/server/services/production/open-rework';
 import { write } from '~/server/write';
 import type { Ctx, WriteContext } from '~/server/write';
 import { lockOwnRun } from './lock-run';
+import { mustHaveGoodChecks } from './must-have-good-checks';
+
+type ClosedResult = Exclude<RunResult['result'], 'incomplete'>;
 
 /**
  * Closes a run with the result that the program computes from its readings, and keeps each point's verdict
@@ -25,18 +30,20 @@ import { lockOwnRun } from './lock-run';
 export async function closeRun(
   input: { runId: number },
   ctx: Ctx,
-): Promise<{ runId: number; runNo: number; serial: string; result: 'passed' | 'undecided' | 'failed' }> {
+): Promise<{ runId: number; runNo: number; serial: string; result: ClosedResult }> {
   return write(ctx, async (w) => {
     // The unit is locked first, as opening a run does, so that the two cannot wait for each other.
     const unit = await lockUnit(w.tx, await serialOf(w, input.runId));
     const { row: run } = await lockOwnRun(w, input.runId);
+    await mustHaveGoodChecks(w);
     const sheet = await readRunSheet(w.tx, run.id);
     const { judgements, result: computed } = judgeRun(sheet);
     const { result } = computed;
+    const isReleased = result === 'passed' || result === 'passed_by_concession';
     if (!computed.canClose || result === 'incomplete') {
       throw new DomainError('conflict', `The run cannot close yet. ${computed.why.join(' ')}`);
     }
-    if (result === 'passed' && unit.openReworkId !== null) {
+    if (isReleased && unit.openReworkId !== null) {
       throw new DomainError(
         'conflict',
         `${unit.row.serial} went into rework during this run: it cannot pass.`,
@@ -45,7 +52,8 @@ export async function closeRun(
     const judged = sheet.points.map((point) => {
       const judgement = judgements.get(point.id);
       invariant(judgement !== undefined, 'every point is judged');
-      return { point, judgement };
+      const conceded = sheet.concessions.find(({ testPointId }) => testPointId === point.id);
+      return { point, judgement, concession: conceded?.reason ?? null };
     });
     const plan = await planName(w, run.testPlanRevisionId);
     await w.tx.insert(runPoints).values(judged.map((each) => keptPoint(run.id, plan, each)));
@@ -71,9 +79,10 @@ export async function closeRun(
         version: sql`${units.version} + 1`,
       })
       .where(eq(units.id, unit.row.id));
-    if (result === 'passed' && unit.row.stage === 'final_test') {
+    if (isReleased && unit.row.stage === 'final_test') {
       await advanceUnit(w, unit.row, nextStage('final_test'));
     }
+    if (isReleased) await confirmRemedies(w, { runId: run.id, unitId: unit.row.id });
     // One that had passed before is no longer released by its newest run.
     if (result === 'undecided') await advanceUnit(w, unit.row, 'final_test');
     if (result === 'failed' && unit.openReworkId === null) {
@@ -112,9 +121,11 @@ async function planName(w: WriteContext, revisionId: number): Promise<string> {
 interface Judged {
   point: TestPoint;
   judgement: PointJudgement;
+  concession: string | null;
 }
 
-function keptPoint(runId: number, plan: string, { point, judgement }: Judged) {
+function keptPoint(runId: number, plan: string, { point, judgement, concession }: Judged) {
+  const isMissed = judgement.verdict === 'fail' || judgement.verdict === 'too_close';
   return {
     testRunId: runId,
     testPointId: point.id,
@@ -128,6 +139,7 @@ function keptPoint(runId: number, plan: string, { point, judgement }: Judged) {
     ruleKey: judgement.ruleKey,
     ruleText: judgement.ruleText ?? `Fixed by the ${plan}`,
     probabilityOfConformance: judgement.pConform,
+    concession: isMissed ? concession : null,
   };
 }
 
@@ -136,7 +148,7 @@ const causeLength = 300;
 /** `Run 1: 20 m, 2nd harmonic, 5.9 dB over the limit`, as a rework's cause. */
 function causeOf(runNo: number, judged: readonly Judged[]): string {
   const failed = judged
-    .filter(({ judgement }) => judgement.verdict === 'fail')
+    .filter(({ judgement, concession }) => judgement.verdict === 'fail' && concession === null)
     .map(({ point, judgement }) => `${pointLabel(point)}, ${judgement.marginText}`);
   const cause = `Run ${runNo}: ${failed.join('; ')}`;
   return cause.length <= causeLength ? cause : `${cause.slice(0, causeLength - 1)}…`;

@@ -1,6 +1,6 @@
 import { and, eq, isNull } from 'drizzle-orm';
-import type { PathSpec } from '~/domain/bench/types';
-import { pathSpecSchema } from '~/schemas/bench-specs';
+import type { InstrumentSpec, PathSpec } from '~/domain/bench/types';
+import { instrumentSpecSchema, pathSpecSchema } from '~/schemas/bench-specs';
 import { instrumentRevisions, pathRevisions } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
 import type { WriteContext } from '~/server/write';
@@ -12,25 +12,27 @@ export interface Equipment {
 }
 
 /**
- * The path of a reading, and a check that both revisions are the present ones.
+ * Instrument and path of a reading, and a check that both revisions are the present ones.
  *
  * @throws DomainError `refused`
  */
 export async function mustBeInUse(
   w: WriteContext,
   { instrumentRevisionId, pathRevisionId }: Equipment,
-): Promise<PathSpec | null> {
+): Promise<{ instrument: InstrumentSpec | null; path: PathSpec | null }> {
+  let instrument: InstrumentSpec | null = null;
   if (instrumentRevisionId !== null) {
     const [found] = await w.tx
-      .select({ id: instrumentRevisions.id })
+      .select({ spec: instrumentRevisions.spec })
       .from(instrumentRevisions)
       .where(and(eq(instrumentRevisions.id, instrumentRevisionId), isNull(instrumentRevisions.retiredAt)));
     if (found === undefined) {
       const sentence = 'The instrument has a newer revision. Choose it again.';
       throw new DomainError('refused', sentence, { instrumentRevisionId: sentence });
     }
+    instrument = instrumentSpecSchema.parse(found.spec);
   }
-  if (pathRevisionId === null) return null;
+  if (pathRevisionId === null) return { instrument, path: null };
   const [path] = await w.tx
     .select({ spec: pathRevisions.spec })
     .from(pathRevisions)
@@ -39,5 +41,5 @@ export async function mustBeInUse(
     const sentence = 'The path has a newer revision. Choose it again.';
     throw new DomainError('refused', sentence, { pathRevisionId: sentence });
   }
-  return pathSpecSchema.parse(path.spec);
+  return { instrument, path: pathSpecSchema.parse(path.spec) };
 }

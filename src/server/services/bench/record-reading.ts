@@ -14,12 +14,13 @@ import { putReading } from './put-reading';
  * Records what was typed into a cell of an open run. Retyping corrects the newest reading, with both values in
  * the ledger of changes; `again` adds one, and all of them count.
  *
+ * @param input.source `wire` where a script sent it
  * @param input.version of the reading that the person saw, 0 for an empty cell; undefined is not checked
  * @throws DomainError `refused` with field `text` where the entry cannot be read or is asked about (field
  * `confirmed`), `conflict` where the run is closed or another window was quicker, `taken`, `not_found`
  */
 export async function recordReading(
-  input: ReadingEntry & { runId: number },
+  input: ReadingEntry & { runId: number; source?: 'typed' | 'wire' },
   ctx: Ctx,
 ): Promise<{ readingId: number; readingNo: number; version: number }> {
   return write(ctx, async (w) => {
@@ -28,11 +29,11 @@ export async function recordReading(
     const point = sheet.points.find(({ id }) => id === input.testPointId);
     if (point === undefined)
       throw new DomainError('not_found', 'The test plan of this unit has no such point.');
-    const path = await mustBeInUse(w, input);
+    const { instrument, path } = await mustBeInUse(w, input);
     refuseStale(newestReading(sheet.readings, point.id), input, pointLabel(point));
     const read = readCell(
       point,
-      { ...input, path },
+      { ...input, path, detector: instrument?.detector ?? null },
       { readings: sheet.readings, ratedPowerW: run.ratedPowerW, loadOhm: run.loadOhm },
     );
     if (!read.ok) {
@@ -49,7 +50,7 @@ export async function recordReading(
       freqHz: read.freqHz,
       atMost: false,
       attenuationHeld: input.attenuationHeld,
-      source: 'typed',
+      source: input.source ?? 'typed',
       sweepId: null,
       instrumentRevisionId: input.instrumentRevisionId,
       pathRevisionId: input.pathRevisionId,

@@ -1,7 +1,8 @@
 import { randomBytes } from 'node:crypto';
-import { desc, eq, isNull } from 'drizzle-orm';
+import { desc, eq } from 'drizzle-orm';
+import type { PointJudgement } from '~/domain/bench/judge-point';
 import { COMPUTATION_VERSION, judgeRun } from '~/domain/bench/judge-run';
-import { signedText } from '~/domain/certificates/canonical';
+import { AT_THE_WORKS } from '~/domain/certificates/amend';
 import { CODE_RANDOM_BYTES, codeFromRandom } from '~/domain/certificates/code';
 import type { BuyerPart, CertificateStatement } from '~/domain/certificates/statement';
 import { writeRunParts } from '~/domain/certificates/write-statement';
@@ -10,16 +11,20 @@ import { runIsReleased } from '~/domain/production/run-status';
 import { dayOf } from '~/lib/dates';
 import { paths } from '~/lib/paths';
 import { formatCertificateNumber } from '~/lib/serials';
-import { certificateBuyers, certificates, signingKeys, testRuns, userProfiles } from '~/server/db/schema';
+import { certificateBuyers, certificates, runPoints, testRuns, userProfiles } from '~/server/db/schema';
 import { env } from '~/server/env';
 import { DomainError } from '~/server/errors';
-import { digestBuyer, signText } from '~/server/keys/ed25519';
-import { openPrivateKey } from '~/server/keys/seal';
+import { digestBuyer } from '~/server/keys/ed25519';
 import { listUsedInstruments, readRunSheet } from '~/server/queries/bench/read-run-sheet';
-import { listUsedPaths, readCertificateFacts } from '~/server/queries/certificates/read-certificate-facts';
+import {
+  listSweepSpans,
+  listUsedPaths,
+  readCertificateFacts,
+} from '~/server/queries/certificates/read-certificate-facts';
 import { readWorksData } from '~/server/queries/office/read-works-data';
 import type { Ctx, WriteContext } from '~/server/write';
 import { actingPerson, nextNumber, write } from '~/server/write';
+import { signStatement } from './sign-statement';
 
 /** What is to be certified. */
 interface Input {
@@ -44,7 +49,6 @@ export async function issueCertificate(
     await lockReleasedRun(w, runId);
     const facts = await readCertificateFacts(w.tx, runId);
     await refuseSecond(w, runId, facts);
-    const key = await readKey(w);
     const statement = await writeStatement(w, facts, issuedBy);
     const { number, code } = statement;
     const [{ insertId: certificateId }] = await w.tx.insert(certificates).values({
@@ -54,9 +58,7 @@ export async function issueCertificate(
       contactId: facts.contactId,
       destinationCountry: facts.run.destinationCountry,
       code,
-      statement: signedText(statement),
-      signature: signText(openPrivateKey(key.sealedPrivateKey, env().secret), signedText(statement)),
-      signingKeyId: key.id,
+      ...(await signStatement(w, statement)),
       issuedAt: w.now,
       issuedBy,
     });
@@ -123,11 +125,31 @@ async function refuseSecond(w: WriteContext, runId: number, facts: Facts): Promi
   }
 }
 
-async function readKey(w: WriteContext) {
-  const [key] = await w.tx.select().from(signingKeys).where(isNull(signingKeys.retiredAt)).limit(1);
-  if (key === undefined)
-    throw new DomainError('conflict', 'The works has no signing key. The office makes one.');
-  return key;
+/** A rule or quantity of the works may have been revised since the run closed; then the words would say something else. */
+async function refuseOtherVerdicts(
+  w: WriteContext,
+  runId: number,
+  judgements: ReadonlyMap<number, PointJudgement>,
+): Promise<void> {
+  const kept = await w.tx
+    .select({
+      testPointId: runPoints.testPointId,
+      verdict: runPoints.verdict,
+      lower: runPoints.lowerLimit,
+      upper: runPoints.upperLimit,
+    })
+    .from(runPoints)
+    .where(eq(runPoints.testRunId, runId));
+  const isOther = kept.some(({ testPointId, verdict, lower, upper }) => {
+    const now = judgements.get(testPointId);
+    return now?.verdict !== verdict || now.lower !== lower || now.upper !== upper;
+  });
+  if (isOther) {
+    throw new DomainError(
+      'conflict',
+      'Limits or quantities have been revised since the run was closed, and it would be judged otherwise now: open a new run.',
+    );
+  }
 }
 
 async function writeStatement(
@@ -143,15 +165,20 @@ async function writeStatement(
   ]);
   if (worksData === null || run.closedAt === null) throw new Error('A closed run belongs to a works.');
   const { judgements } = judgeRun(sheet);
+  const conceded = new Map(sheet.concessions.map(({ testPointId, reason }) => [testPointId, reason]));
+  await refuseOtherVerdicts(w, run.id, judgements);
   const points = sheet.points.flatMap((point): JudgedPoint[] => {
     const judgement = judgements.get(point.id);
-    return judgement === undefined || judgement.value === null ? [] : [{ point, judgement }];
+    return judgement === undefined || judgement.value === null
+      ? []
+      : [{ point, judgement, concession: conceded.get(point.id) ?? null }];
   });
   const present = (ids: (number | null)[]) => [...new Set(ids.flatMap((id) => (id === null ? [] : [id])))];
   const counted = sheet.readings.filter(({ voided }) => !voided);
-  const [usedInstruments, usedPaths] = await Promise.all([
+  const [usedInstruments, usedPaths, spans] = await Promise.all([
     listUsedInstruments(w.tx, present(counted.map(({ instrumentRevisionId }) => instrumentRevisionId))),
     listUsedPaths(w.tx, present(counted.map(({ pathRevisionId }) => pathRevisionId))),
+    listSweepSpans(w.tx, run.id),
   ]);
   const buyer: BuyerPart | null =
     facts.orderNumber === null
@@ -185,21 +212,27 @@ async function writeStatement(
     testedAt: run.closedAt.toISOString(),
     issuedOn,
     testedBy: facts.testerName,
+    place: AT_THE_WORKS,
     issuedBy: issuer[0]?.name ?? '',
     conditions: {
       supply: run.supplyV === null ? 'not stated' : `${run.supplyV.toFixed(2)} V`,
       load: `${facts.planLoadOhm} Ω`,
       ambient: run.ambientC === null ? 'not stated' : `${run.ambientC} °C`,
     },
-    testPlan: { name: `Test plan ${facts.modelName}`, revision: facts.planLetter },
+    testPlan: { name: facts.modelName, revision: facts.planLetter },
     result: run.result === 'passed_by_concession' ? 'passed by concession' : 'passed',
-    deviations: [],
+    deviations: run.deviations === '' ? [] : [run.deviations],
     code,
     checkUrl: new URL(paths.certificateByCode(code), env().baseUrl).href,
     computationVersion: COMPUTATION_VERSION,
     ...writeRunParts({
       points,
-      ruleKey: sheet.ruleKey,
+      unread: sheet.points.filter(({ id }) => (judgements.get(id)?.value ?? null) === null),
+      historyPointIds: new Set(
+        counted.flatMap(({ source, testPointId }) => (source === 'history' ? [testPointId] : [])),
+      ),
+      spans,
+      rule: sheet.rule,
       destinationCountry: run.destinationCountry,
       instruments: usedInstruments,
       paths: usedPaths,

@@ -12,7 +12,7 @@ export const POST = door({
     runId: z.number().int(),
     runNo: z.number().int(),
     serial: z.string(),
-    result: z.enum(['passed', 'undecided', 'failed']),
+    result: z.enum(['passed', 'passed_by_concession', 'undecided', 'failed']),
   }),
   said: ({ runNo, result }) => `Run ${runNo} is closed: ${resultInWords(result).toLowerCase()}.`,
   run: ({ params, ctx }) => closeRun({ runId: params.id }, ctx),
