@@ -144,6 +144,9 @@ export const paths = {
     sweepLooks: (runId: number) => `/api/runs/${segment(runId)}/sweep-looks`,
     readingVoiding: (runId: number, readingId: number) =>
       `/api/runs/${segment(runId)}/readings/${segment(readingId)}/voiding`,
+    concessions: (runId: number) => `/api/runs/${segment(runId)}/concessions`,
+    concessionWithdrawal: (runId: number, testPointId: number) =>
+      `/api/runs/${segment(runId)}/concessions/${segment(testPointId)}/withdrawal`,
     runConditions: (runId: number) => `/api/runs/${segment(runId)}/conditions`,
     runTester: (runId: number) => `/api/runs/${segment(runId)}/tester`,
     runClosing: (runId: number) => `/api/runs/${segment(runId)}/closing`,

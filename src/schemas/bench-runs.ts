@@ -47,6 +47,15 @@ export const readingVoiding = z.object({
     .max(300, 'At most 300 characters.'),
 });
 
+export const concessionEntry = z.object({
+  testPointId: z.coerce.number().int(),
+  reason: z
+    .string()
+    .trim()
+    .min(1, 'Say why it may go: the certificate prints it.')
+    .max(500, 'At most 500 characters.'),
+});
+
 export const runConditions = z.object({
   supplyV: optionalNumber('The supply is a number of volts.').refine(
     (volts) => volts === null || (volts > 0 && volts <= 100),

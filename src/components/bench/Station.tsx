@@ -9,6 +9,7 @@ import { stationSchema } from '~/schemas/bench-station';
 import type { Station as StationData, StationReading } from '~/schemas/bench-station';
 import { BeforeYouKey } from './BeforeYouKey';
 import { CloseDialog } from './CloseDialog';
+import { Concession } from './Concession';
 import { KeyList } from './KeyList';
 import { ReadingDetail } from './ReadingDetail';
 import { ReadingGrid } from './ReadingGrid';
@@ -31,6 +32,7 @@ interface Props {
   equipment: Equipment;
   personId: number;
   mayTest: boolean;
+  isOwner: boolean;
   formKey: string;
 }
 
@@ -49,7 +51,7 @@ const HARMONIC = knownQuantity('harmonic_2');
 
 type Asking = { kind: 'keys' } | { kind: 'close' } | { kind: 'void'; reading: StationReading };
 
-function Bench({ station: first, equipment, personId, mayTest, formKey }: Props) {
+function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey }: Props) {
   const runId = first.run.id;
   const { data: stored, refetch } = useQuery({
     queryKey: ['run', runId],
@@ -202,6 +204,7 @@ function Bench({ station: first, equipment, personId, mayTest, formKey }: Props)
               onConfirm={() => cells.commit(true)}
             />
             <div className="bench-detail grid gap-5">
+              <Concession key={point.id} {...{ station, point, judgement, isOwner }} onChanged={refetch} />
               <ReadingDetail
                 {...{ point, judgement, readings, equipment, chosen, editable }}
                 onChoose={(next) => choose(point.quantity.key, next)}

@@ -69,6 +69,8 @@ const words: Readonly<Record<string, string>> = {
   'reading.correct': 'corrected a reading',
   'reading.send': 'sent readings from a script',
   'reading.void': 'voided a reading',
+  'concession.grant': 'let a point go by concession',
+  'concession.withdraw': 'withdrew a concession',
   'sweep.send': 'sent a sweep from a script',
   'sweep.read': 'read a sweep',
   'instrument.create': 'entered an instrument',
