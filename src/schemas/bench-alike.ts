@@ -1,6 +1,6 @@
 import { z } from 'zod';
 
-/** The last values that closed runs of the same model kept for a point: the newest first. */
+/** The last values that closed runs of the same model kept for a point, and then what old sheets say: the newest first. */
 export const alikePoint = z.object({
   testPointId: z.number().int(),
   quantityKey: z.string(),
@@ -9,10 +9,14 @@ export const alikePoint = z.object({
     z.object({
       /** At the unit, in the unit of the quantity. */
       value: z.number(),
-      verdict: z.enum(['pass', 'too_close', 'fail', 'not_run']),
+      /** Null for an old sheet: nothing was judged. */
+      verdict: z.enum(['pass', 'too_close', 'fail', 'not_run']).nullable(),
       serial: z.string(),
-      runNo: z.number().int(),
+      runNo: z.number().int().nullable(),
+      /** The day of an old sheet. */
       closedAt: z.union([z.date(), z.string()]).nullable(),
+      /** From an old sheet, and not from a run. */
+      isHistory: z.boolean(),
     }),
   ),
 });

@@ -11,10 +11,12 @@ interface Props {
   busy?: boolean | undefined;
   onAct?: (() => void) | undefined;
   onLeave: () => void;
+  /** What its leaving button says. */
+  leaveText?: string | undefined;
 }
 
 /** Asks before something that cannot be undone. Escape leaves it. */
-export function AskDialog({ title, children, action, tone, busy, onAct, onLeave }: Props) {
+export function AskDialog({ title, children, action, tone, busy, onAct, onLeave, leaveText }: Props) {
   const dialog = useRef<HTMLDialogElement>(null);
   useEffect(() => {
     const element = dialog.current;
@@ -39,7 +41,7 @@ export function AskDialog({ title, children, action, tone, busy, onAct, onLeave 
             </Button>
           )}
           <Button kind="outlined" type="button" onClick={onLeave}>
-            {action === undefined ? 'Close this list' : 'Leave it'}
+            {leaveText ?? (action === undefined ? 'Close this list' : 'Leave it')}
           </Button>
         </p>
       </form>

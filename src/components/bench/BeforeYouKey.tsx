@@ -2,6 +2,7 @@ import { useEffect, useState } from 'react';
 import { Checkbox } from '~/components/ui/Checkbox';
 import { Notice } from '~/components/ui/Notice';
 import { VerdictMark } from '~/components/ui/VerdictMark';
+import { smallTransistorCaution } from '~/domain/bench/derived';
 import { formatPower } from '~/domain/bench/format';
 import { checkPathPower } from '~/domain/bench/paths';
 import { resultInWords, verdictOfResult } from '~/domain/bench/run-result';
@@ -30,6 +31,15 @@ export function BeforeYouKey({ station, equipment, pathRevisionId }: Props) {
   const path = equipment.paths.find((each) => each.revisionId === pathRevisionId)?.spec;
   const freqHz = station.sheet.points.find((point) => point.freqHz !== null)?.freqHz ?? 7e6;
   const stands = path === undefined ? null : checkPathPower(path, unit.ratedPowerW, freqHz);
+  const stage = station.sheet.context.outputStage;
+  const sinkCaution =
+    stage === null
+      ? null
+      : smallTransistorCaution({
+          outputWPerDevice: unit.ratedPowerW / stage.devices,
+          keyDownMode: stage.duty >= 1,
+          hasSink: stage.hasSink,
+        });
   const items = [
     ['load', `Dummy load on, rated for ${formatPower(unit.ratedPowerW)} or more, antenna off`],
     ['limit', 'Supply current limit set'],
@@ -47,6 +57,13 @@ export function BeforeYouKey({ station, equipment, pathRevisionId }: Props) {
             <div className="my-2">
               <Notice tone="stop" title="Do not key">
                 {stands.reason}
+              </Notice>
+            </div>
+          )}
+          {sinkCaution !== null && (
+            <div className="my-2">
+              <Notice tone="warn" title="No heat sink">
+                {sinkCaution} Common practice; the data sheet of the part decides.
               </Notice>
             </div>
           )}

@@ -7,6 +7,7 @@ const keys = [
   ['Alt R', 'read again: adds a reading, all of them count'],
   ['Alt V', 'void the newest reading of the cell, with a cause'],
   ['Alt L', 'load a sweep for the band'],
+  ['Alt S', 'scratch readings: judged, never kept'],
   ['Alt O', 'go on by quantity or by band'],
   ['Alt C', 'close the run'],
   ['?', 'this list'],

@@ -4,6 +4,7 @@ import { Select } from '~/components/ui/Select';
 import { formatAtMeter, formatNumber } from '~/domain/bench/format';
 import type { PointJudgement } from '~/domain/bench/judge-point';
 import type { StationReading } from '~/schemas/bench-station';
+import { isRead } from './run-sheet';
 import type { Equipment, Point } from './run-sheet';
 import type { Chosen } from './use-equipment';
 
@@ -31,7 +32,8 @@ export function ReadingDetail(props: Props) {
   const isRatio = quantity.unit === 'dBc';
   return (
     <section className="sheet grid gap-4" aria-label="How it is read">
-      {editable && quantity.format !== 'yes_no' && (
+      <Conditions point={point} />
+      {editable && isRead(point) && quantity.format !== 'yes_no' && (
         <div className="grid gap-3">
           <Select
             name="instrument"
@@ -69,39 +71,69 @@ export function ReadingDetail(props: Props) {
           )}
         </div>
       )}
-      <div>
-        <h2 className="mb-1">Readings here</h2>
-        {readings.length === 0 && <p className="quiet">None yet. Type what the instrument shows.</p>}
-        <ul className="grid gap-1">
-          {readings.map((reading) => (
-            <li key={`${reading.readingNo} ${reading.id}`} className="flex flex-wrap items-center gap-x-3">
-              <span className={`font-mono ${reading.voided ? 'line-through' : ''}`}>
-                {formatAtMeter(reading.value, quantity)}
-              </span>
-              <span className="quiet">
-                {[sourceText(reading), reading.instrumentNumber, reading.pathNumber]
-                  .filter((text) => text !== null)
-                  .join(' · ')}
-              </span>
-              {reading.voided && <span className="quiet basis-full">Void: {reading.voidReason}</span>}
-              {editable && !reading.voided && reading.id > 0 && (
-                <Button kind="link" type="button" onClick={() => onVoid(reading)}>
-                  Void
-                </Button>
-              )}
-            </li>
-          ))}
-        </ul>
-        {editable && counted.length > 0 && (
-          <p className="mt-2">
-            <Button kind="outlined" type="button" onClick={onReadAgain} aria-keyshortcuts="Alt+R">
-              Read again
-            </Button>
-          </p>
-        )}
-      </div>
+      {isRead(point) && (
+        <div>
+          <h2 className="mb-1">Readings here</h2>
+          {readings.length === 0 && <p className="quiet">None yet. Type what the instrument shows.</p>}
+          <ul className="grid gap-1">
+            {readings.map((reading) => (
+              <li key={`${reading.readingNo} ${reading.id}`} className="flex flex-wrap items-center gap-x-3">
+                <span className={`font-mono ${reading.voided ? 'line-through' : ''}`}>
+                  {formatAtMeter(reading.value, quantity)}
+                </span>
+                <span className="quiet">
+                  {[sourceText(reading), reading.instrumentNumber, reading.pathNumber]
+                    .filter((text) => text !== null)
+                    .join(' · ')}
+                </span>
+                {reading.voided && <span className="quiet basis-full">Void: {reading.voidReason}</span>}
+                {editable && !reading.voided && reading.id > 0 && (
+                  <Button kind="link" type="button" onClick={() => onVoid(reading)}>
+                    Void
+                  </Button>
+                )}
+              </li>
+            ))}
+          </ul>
+          {editable && counted.length > 0 && (
+            <p className="mt-2">
+              <Button kind="outlined" type="button" onClick={onReadAgain} aria-keyshortcuts="Alt+R">
+                Read again
+              </Button>
+            </p>
+          )}
+        </div>
+      )}
       {judgement.uComponents.length > 0 && <Budget judgement={judgement} />}
     </section>
+  );
+}
+
+/** What the test plan says of the point besides its limits, and where a computed one comes from. */
+function Conditions({ point: { quantity, method, supplyV } }: Pick<Props, 'point'>) {
+  if (quantity.formula === null && method === '' && supplyV === null) return null;
+  return (
+    <dl className="grid gap-2">
+      {quantity.formula !== null && (
+        <div>
+          <dt className="font-semibold">Computed from the readings of its band</dt>
+          <dd className="font-mono text-[0.9375rem] break-words">{quantity.formula}</dd>
+          <dd className="quiet">Source: {quantity.source}</dd>
+        </div>
+      )}
+      {method !== '' && (
+        <div>
+          <dt className="font-semibold">How it is read</dt>
+          <dd>{method}</dd>
+        </div>
+      )}
+      {supplyV !== null && (
+        <div>
+          <dt className="font-semibold">Supply for this point</dt>
+          <dd className="font-mono">{formatNumber(supplyV, 1)} V</dd>
+        </div>
+      )}
+    </dl>
   );
 }
 

@@ -5,7 +5,7 @@ import { formatValue } from '~/domain/bench/format';
 import { pointLabel } from '~/domain/bench/judge-run';
 import { newestReading } from '~/domain/bench/run-entry';
 import type { Station } from '~/schemas/bench-station';
-import { emptyLimitOf, entryOrder, needOf, neighbour, notesOf, unitHint } from './run-sheet';
+import { emptyLimitOf, entryOrder, isRead, needOf, neighbour, notesOf, unitHint } from './run-sheet';
 import type { Grid, Judged, Point } from './run-sheet';
 import { textOf } from './use-cells';
 import type { Cells } from './use-cells';
@@ -31,7 +31,18 @@ const arrows: Record<string, { rows: number; columns: number }> = {
 /** Bands down, quantities across: one field a test point. */
 export function ReadingGrid({ grid, station, judged, cells, entries, order, editable }: Props) {
   const inputs = useRef(new Map<number, HTMLInputElement>());
+  const ids = entryOrder(grid, order);
+  // While a computed cell is in hand, Tab still leads into the grid.
+  const tabStop = ids.find((id) => id === cells.inHand) ?? ids[0];
   const goTo = (pointId: number): void => inputs.current.get(pointId)?.focus();
+  const [isAlive, setIsAlive] = useState(false);
+  // Until its script runs, the page would take keys that nobody hears.
+  useEffect(() => {
+    setIsAlive(true);
+    const held = [...inputs.current.values()].find((input) => input === document.activeElement);
+    held?.blur();
+    held?.focus();
+  }, []);
 
   // Read again empties the cell in hand, which then waits for what is read.
   useEffect(() => {
@@ -44,7 +55,6 @@ export function ReadingGrid({ grid, station, judged, cells, entries, order, edit
     if (event.key === 'Enter') {
       event.preventDefault();
       if (!cells.commit(true)) return;
-      const ids = entryOrder(grid, order);
       const at = ids.indexOf(point.id) + (event.shiftKey ? -1 : 1);
       const next = ids[at];
       if (next !== undefined) goTo(next);
@@ -78,10 +88,17 @@ export function ReadingGrid({ grid, station, judged, cells, entries, order, edit
               <th scope="row">{row.label}</th>
               {row.cells.map((point, column) => (
                 <td key={grid.columns[column]?.key}>
-                  {point !== undefined && (
-                    <Cell
-                      {...{ point, station, judged, cells, entries, editable, onKeyDown }}
+                  {point !== undefined && !isRead(point) && (
+                    <ComputedCell
+                      {...{ point, station, judged, cells }}
                       label={row.isLabelled ? point.quantity.label : undefined}
+                    />
+                  )}
+                  {point !== undefined && isRead(point) && (
+                    <Cell
+                      {...{ point, station, judged, cells, entries, editable, isAlive, onKeyDown }}
+                      label={row.isLabelled ? point.quantity.label : undefined}
+                      isTabStop={point.id === tabStop}
                       register={(input) => {
                         if (input === null) inputs.current.delete(point.id);
                         else inputs.current.set(point.id, input);
@@ -113,11 +130,25 @@ interface CellProps extends Omit<Props, 'grid' | 'order'> {
   point: Point;
   /** The quantity, where the column does not say it. */
   label: string | undefined;
+  isTabStop: boolean;
+  isAlive: boolean;
   onKeyDown: (event: KeyboardEvent<HTMLInputElement>, point: Point) => void;
   register: (input: HTMLInputElement | null) => void;
 }
 
-function Cell({ point, label, station, judged, cells, entries, editable, onKeyDown, register }: CellProps) {
+function Cell({
+  point,
+  label,
+  station,
+  judged,
+  cells,
+  entries,
+  editable,
+  isAlive,
+  isTabStop,
+  onKeyDown,
+  register,
+}: CellProps) {
   const isInHand = cells.inHand === point.id;
   const judgement = judged.judgements.get(point.id);
   const unread = cells.unread.get(point.id);
@@ -152,8 +183,8 @@ function Cell({ point, label, station, judged, cells, entries, editable, onKeyDo
           aria-label={pointLabel(point)}
           aria-describedby={noteId}
           aria-invalid={wrong ? 'true' : undefined}
-          tabIndex={isInHand ? 0 : -1}
-          readOnly={!editable}
+          tabIndex={isTabStop ? 0 : -1}
+          readOnly={!editable || !isAlive}
           autoComplete="off"
           autoCapitalize="off"
           spellCheck={false}
@@ -191,5 +222,40 @@ function Cell({ point, label, station, judged, cells, entries, editable, onKeyDo
         {wrong && <span className="block font-semibold text-stop">not taken</span>}
       </span>
     </label>
+  );
+}
+
+type ComputedProps = Pick<CellProps, 'point' | 'label' | 'station' | 'judged' | 'cells'>;
+
+/** A cell that follows from others: shown, looked into with a click or Tab and Enter, and never typed into. */
+function ComputedCell({ point, label, station, judged, cells }: ComputedProps) {
+  const isInHand = cells.inHand === point.id;
+  const judgement = judged.judgements.get(point.id);
+  const value = judgement?.value ?? null;
+  return (
+    <button
+      type="button"
+      className={['bench-cell w-full text-left', isInHand && 'bench-cell-in-hand'].filter(Boolean).join(' ')}
+      aria-current={isInHand ? 'true' : undefined}
+      onClick={() => cells.enter(point.id)}
+    >
+      <span className="sr-only">{pointLabel(point)}: </span>
+      {label !== undefined && (
+        <span className="quiet block" aria-hidden="true">
+          {label}
+        </span>
+      )}
+      <span className="flex min-h-7 items-center gap-1 font-mono">
+        <span className="flex-1">{value === null ? '—' : formatValue(value, point.quantity)}</span>
+        {judgement !== undefined && judgement.n > 0 && <VerdictMark verdict={judgement.verdict} bare />}
+      </span>
+      <span className="block font-mono text-quiet leading-snug text-ink-2">
+        <span className="block">
+          {needOf(point, judgement, emptyLimitOf(point, station, judged.judgements))}
+        </span>
+        <span className="block">computed</span>
+        {!point.required && <span className="block">not required</span>}
+      </span>
+    </button>
   );
 }

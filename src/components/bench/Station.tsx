@@ -7,6 +7,7 @@ import { knownQuantity } from '~/domain/bench/quantities';
 import { paths } from '~/lib/paths';
 import { stationSchema } from '~/schemas/bench-station';
 import type { Station as StationData, StationReading } from '~/schemas/bench-station';
+import { AlikePlot } from './AlikePlot';
 import { BeforeYouKey } from './BeforeYouKey';
 import { CloseDialog } from './CloseDialog';
 import { Concession } from './Concession';
@@ -17,8 +18,9 @@ import { ReadingInHand } from './ReadingInHand';
 import { RunFacts } from './RunFacts';
 import type { ConditionTexts } from './RunFacts';
 import { RunState } from './RunState';
-import { gridOf, judgeStation, withEntry } from './run-sheet';
+import { gridOf, isRead, judgeStation, withEntry } from './run-sheet';
 import type { Equipment } from './run-sheet';
+import { ScratchPanel } from './ScratchPanel';
 import { Refused, send } from './send';
 import { SweepPanel } from './SweepPanel';
 import { useCells } from './use-cells';
@@ -49,7 +51,8 @@ export function Station(props: Props) {
 const POWER = knownQuantity('rf_power');
 const HARMONIC = knownQuantity('harmonic_2');
 
-type Asking = { kind: 'keys' } | { kind: 'close' } | { kind: 'void'; reading: StationReading };
+type Asking =
+  { kind: 'keys' } | { kind: 'scratch' } | { kind: 'close' } | { kind: 'void'; reading: StationReading };
 
 function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey }: Props) {
   const runId = first.run.id;
@@ -94,13 +97,14 @@ function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey 
     r: () => editable && readings.length > 0 && cells.readAgain(),
     v: () => askVoid(newest),
     l: () => editable && fileInput.current?.click(),
+    s: () => point !== undefined && isRead(point) && setAsking({ kind: 'scratch' }),
     o: () => setOrder(order === 'band' ? 'quantity' : 'band'),
     c: () => editable && against === undefined && setAsking({ kind: 'close' }),
     '?': () => setAsking({ kind: 'keys' }),
   });
   useWarnBeforeLeaving(coming.length > 0);
 
-  const required = station.sheet.points.filter((each) => each.required);
+  const required = station.sheet.points.filter((each) => each.required && isRead(each));
   const filled = required.filter(({ id }) => (judged.judgements.get(id)?.n ?? 0) > 0).length;
   const conditions = useMutation({
     mutationFn: (texts: ConditionTexts) =>
@@ -178,6 +182,16 @@ function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey 
                 </button>
                 ; arrows move; Escape restores.
               </span>
+              {point !== undefined && isRead(point) && (
+                <button
+                  type="button"
+                  className="min-h-(--check) underline"
+                  aria-keyshortcuts="Alt+S"
+                  onClick={() => setAsking({ kind: 'scratch' })}
+                >
+                  Scratch reading
+                </button>
+              )}
               <button
                 type="button"
                 className="min-h-(--check) underline"
@@ -204,6 +218,7 @@ function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey 
               onConfirm={() => cells.commit(true)}
             />
             <div className="bench-detail grid gap-5">
+              <AlikePlot runId={runId} {...{ point, judgement }} />
               <Concession key={point.id} {...{ station, point, judgement, isOwner }} onChanged={refetch} />
               <ReadingDetail
                 {...{ point, judgement, readings, equipment, chosen, editable }}
@@ -229,6 +244,9 @@ function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey 
         )}
       </div>
       {asking?.kind === 'keys' && <KeyList onLeave={leave} />}
+      {asking?.kind === 'scratch' && point !== undefined && (
+        <ScratchPanel {...{ station, equipment, point, chosen }} onLeave={leave} />
+      )}
       {asking?.kind === 'close' && (
         <CloseDialog
           result={judged.result}

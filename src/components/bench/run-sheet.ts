@@ -86,7 +86,12 @@ export function gridOf(points: readonly Point[]): Grid {
   return { columns, rows: [...rows, ...unitRows] };
 }
 
-/** Ids of the points in the order in which Enter goes on; what is of the whole unit comes last. */
+/** Whether a point is typed or loaded; one whose quantity has a formula follows from others. */
+export function isRead({ quantity }: Point): boolean {
+  return quantity.formula === null;
+}
+
+/** Ids of the points in the order in which Enter goes on; what is of the whole unit comes last, what is computed is passed. */
 export function entryOrder({ columns, rows }: Grid, by: 'quantity' | 'band'): number[] {
   const bands = rows.filter(({ isLabelled }) => !isLabelled);
   const whole = rows.filter(({ isLabelled }) => isLabelled).flatMap(({ cells }) => cells);
@@ -94,10 +99,10 @@ export function entryOrder({ columns, rows }: Grid, by: 'quantity' | 'band'): nu
     by === 'band'
       ? bands.flatMap((row) => row.cells)
       : columns.flatMap((_, column) => bands.map((row) => row.cells[column]));
-  return [...cells, ...whole].flatMap((point) => (point === undefined ? [] : [point.id]));
+  return [...cells, ...whole].flatMap((point) => (point !== undefined && isRead(point) ? [point.id] : []));
 }
 
-/** The next cell in a direction that holds a point; the same one at the edge. */
+/** The next cell in a direction that is typed into; the same one at the edge. */
 export function neighbour(
   { rows }: Grid,
   pointId: number,
@@ -111,7 +116,7 @@ export function neighbour(
     const cells = rows[row]?.cells;
     if (cells === undefined || column < 0 || column >= cells.length) return pointId;
     const found = cells[column];
-    if (found !== undefined) return found.id;
+    if (found !== undefined && isRead(found)) return found.id;
   }
 }
 
@@ -125,6 +130,7 @@ export function columnUnitOf(readings: readonly StationReading[], quantity: Quan
 
 /** What may be typed into a column, shown in its empty cells. */
 export function unitHint(quantity: Quantity): string {
+  if (quantity.formula !== null) return '';
   switch (quantity.format) {
     case 'power':
       return 'dBm or W';

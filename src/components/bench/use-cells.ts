@@ -2,7 +2,7 @@ import { useRef, useState } from 'react';
 import { newestReading } from '~/domain/bench/run-entry';
 import type { Quantity } from '~/domain/bench/quantities';
 import type { Station, StationReading } from '~/schemas/bench-station';
-import { columnUnitOf, readEntry, withEntry } from './run-sheet';
+import { columnUnitOf, isRead, readEntry, withEntry } from './run-sheet';
 import type { Entry, Equipment, Point } from './run-sheet';
 import type { Entries } from './use-entries';
 import type { Chosen } from './use-equipment';
@@ -28,7 +28,7 @@ interface Given {
 /** The cell in hand, what is typed into it, and what becomes of it on leaving. */
 export function useCells({ station, equipment, entries, chosenFor, editable }: Given) {
   const { points, readings } = station.sheet;
-  const [inHand, setInHand] = useState<number | undefined>(points[0]?.id);
+  const [inHand, setInHand] = useState<number | undefined>((points.find(isRead) ?? points[0])?.id);
   const [draft, setDrawnDraft] = useState<string | null>(null);
   // Going on with Enter leaves the cell before what was typed is drawn again: it must be taken once.
   const newestDraft = useRef(draft);
@@ -61,7 +61,7 @@ export function useCells({ station, equipment, entries, chosenFor, editable }: G
 
   /** Takes what is typed; `explicit` also takes an unchanged text with another instrument or path. */
   const commit = (explicit: boolean): boolean => {
-    if (point === undefined || !editable) return true;
+    if (point === undefined || !isRead(point) || !editable) return true;
     const left = newestDraft.current;
     const typed = left === null || left.trim() === '' ? null : left;
     const newest = newestReading(readings, point.id);

@@ -2,7 +2,15 @@ import { eq } from 'drizzle-orm';
 import { beforeEach, describe, expect, it } from 'vitest';
 import { GET as alikeDoor } from '~/pages/api/runs/[id]/alike';
 import { letIn } from '~/server/auth/sessions';
-import { runPoints, testPlanRevisions, testPoints, testRuns, units } from '~/server/db/schema';
+import {
+  historyReadings,
+  historySheets,
+  runPoints,
+  testPlanRevisions,
+  testPoints,
+  testRuns,
+  units,
+} from '~/server/db/schema';
 import { listAlike, MOST_ALIKE } from '~/server/queries/bench/list-alike';
 import { readRunComparison } from '~/server/queries/bench/read-run-comparison';
 import { closeRun } from '~/server/services/bench/close-run';
@@ -213,6 +221,26 @@ describe('the last 40 like it', () => {
     await seedClosedRuns(1, { plan: await planWith('E', '40m') });
     const points = await listAlike(db, await open({}));
     expect(valuesOf(points)).toEqual([1]);
+  });
+
+  it('are followed by what old sheets of the model say, marked, and not in their place', async () => {
+    await seedClosedRuns(MOST_ALIKE + 1);
+    const [{ insertId: historySheetId }] = await database.db.insert(historySheets).values({
+      ...{ modelId: bench.modelId, serial: 'H3-0002', testedOn: '2019-03-10', createdAt: bench.ctx.now },
+    });
+    await database.db.insert(historyReadings).values([
+      { historySheetId, quantityKey: 'rf_power', band: '20m', enteredText: '5', enteredUnit: 'W', value: 5 },
+      { historySheetId, quantityKey: 'rf_power', band: '40m', enteredText: '6', enteredUnit: 'W', value: 6 },
+    ]);
+    const points = await listAlike(database.db, await open({}));
+    const power = points?.find(({ quantityKey }) => quantityKey === 'rf_power')?.values ?? [];
+    expect(power.filter(({ isHistory }) => !isHistory)).toHaveLength(MOST_ALIKE);
+    expect(power.slice(MOST_ALIKE)).toEqual([
+      {
+        ...{ value: 5, serial: 'H3-0002', runNo: null, verdict: null },
+        ...{ closedAt: '2019-03-10', isHistory: true },
+      },
+    ]);
   });
 
   it('are shown to who works at the bench', async () => {

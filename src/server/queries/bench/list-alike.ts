@@ -3,6 +3,7 @@ import { invariant } from '~/lib/invariant';
 import type { AlikePoint } from '~/schemas/bench-alike';
 import type { Reader } from '~/server/db/client';
 import { runPoints, testPoints, testRuns, units } from '~/server/db/schema';
+import { listHistoryValues } from './read-history';
 
 /** So many values of a point are shown. */
 export const MOST_ALIKE = 40;
@@ -13,7 +14,7 @@ const mostRuns = 500;
 
 /**
  * The last values of each point of a run, as closed runs of the same model kept them: the same quantity on the same
- * band, whichever revision of the test plan asked for it; the newest first.
+ * band, whichever revision of the test plan asked for it; the newest first. What old sheets say follows, marked.
  *
  * Runs are walked from the newest backwards, some at a time, so that a long history is not read whole.
  *
@@ -45,7 +46,24 @@ export async function listAlike(reader: Reader, runId: number): Promise<AlikePoi
     }
     before = oldest.id;
   }
-  return points.map((point) => ({ ...point, values: found.get(keyOf(point)) ?? [] }));
+  const old = await listOldValues(reader, run.modelId);
+  return points.map((point) => {
+    const key = keyOf(point);
+    return { ...point, values: [...(found.get(key) ?? []), ...(old.get(key) ?? [])] };
+  });
+}
+
+/** What old sheets say, by key, each at most {@link MOST_ALIKE}. */
+async function listOldValues(reader: Reader, modelId: number): Promise<Map<string, AlikePoint['values']>> {
+  const found = new Map<string, AlikePoint['values']>();
+  for (const old of await listHistoryValues(reader, modelId)) {
+    const { value, serial, testedOn } = old;
+    const values = found.get(keyOf(old)) ?? [];
+    if (values.length === MOST_ALIKE) continue;
+    values.push({ value, serial, verdict: null, runNo: null, closedAt: testedOn, isHistory: true });
+    found.set(keyOf(old), values);
+  }
+  return found;
 }
 
 interface ClosedRun {
@@ -115,7 +133,10 @@ async function listValues(reader: Reader, runs: readonly ClosedRun[], keys: Map<
     const run = runOf.get(runId);
     invariant(run !== undefined && value !== null, 'a value of one of the runs');
     const { serial, runNo, closedAt } = run;
-    return { key: keys.get(testPointId) ?? '', value: { value, verdict, serial, runNo, closedAt } };
+    return {
+      key: keys.get(testPointId) ?? '',
+      value: { value, verdict, serial, runNo, closedAt, isHistory: false },
+    };
   });
 }
 

@@ -1,11 +1,10 @@
-import { and, asc, desc, eq, inArray, isNull } from 'drizzle-orm';
+import { asc, desc, eq, inArray } from 'drizzle-orm';
 import { cutRows, guessSeparator } from '~/domain/planning/bom-import/read-table';
 import { formatValue } from '~/domain/bench/format';
 import { readHistory } from '~/domain/bench/history';
 import type { HistoryColumn, HistoryTable } from '~/domain/bench/history';
 import { pointLabel } from '~/domain/bench/judge-run';
 import { compareQuantities, unknownQuantity } from '~/domain/bench/quantities';
-import type { BandKey } from '~/domain/bench/types';
 import type { Reader } from '~/server/db/client';
 import { historyReadings, historySheets, models } from '~/server/db/schema';
 import { DomainError } from '~/server/errors';
@@ -105,25 +104,27 @@ export async function listHistorySheets(
   }));
 }
 
-/** What old sheets of a model say of a quantity on a band, for a plot that shows them apart from what was measured here. */
+/** So many values of old sheets are looked through, the newest first. */
+const mostHistoryValues = 2000;
+
+/** What old sheets of a model say, for a plot that shows them apart from what was measured here: the newest first. */
 export async function listHistoryValues(
   reader: Reader,
-  { modelId, quantityKey, band }: { modelId: number; quantityKey: string; band: BandKey | null },
-): Promise<{ serial: string; testedOn: string | null; value: number }[]> {
+  modelId: number,
+): Promise<
+  { quantityKey: string; band: string | null; serial: string; testedOn: string | null; value: number }[]
+> {
   return reader
     .select({
+      quantityKey: historyReadings.quantityKey,
+      band: historyReadings.band,
       serial: historySheets.serial,
       testedOn: historySheets.testedOn,
       value: historyReadings.value,
     })
     .from(historyReadings)
     .innerJoin(historySheets, eq(historySheets.id, historyReadings.historySheetId))
-    .where(
-      and(
-        eq(historySheets.modelId, modelId),
-        eq(historyReadings.quantityKey, quantityKey),
-        band === null ? isNull(historyReadings.band) : eq(historyReadings.band, band),
-      ),
-    )
-    .orderBy(asc(historySheets.testedOn), asc(historySheets.id));
+    .where(eq(historySheets.modelId, modelId))
+    .orderBy(desc(historySheets.testedOn), desc(historyReadings.id))
+    .limit(mostHistoryValues);
 }
