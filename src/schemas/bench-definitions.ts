@@ -5,14 +5,22 @@ import type { EntryUnit, Quantity, QuantityFormat, QuantityUnit } from '~/domain
 import { parseFormula } from '~/domain/formula/formula';
 
 const isoDay = z.string().regex(/^\d{4}-\d{2}-\d{2}$/, 'Write the day as 2027-03-09.');
-const text = (max: number) => z.string().trim().min(1).max(max, `At most ${String(max)} characters.`);
+const text = (max: number) =>
+  z
+    .string()
+    .trim()
+    .min(1)
+    .max(max, `At most ${String(max)} characters.`);
 const certainty = z.enum(['read', 'read in quotation', 'from memory', 'entered']);
 const hertz = z.number().finite().nonnegative();
 
 /** A key as formulas can name it. */
 export const definitionKey = z
   .string()
-  .regex(/^[a-z][a-z0-9_]{1,39}$/, 'A key has 2 to 40 small letters, digits and underscores, a letter first.');
+  .regex(
+    /^[a-z][a-z0-9_]{1,39}$/,
+    'A key has 2 to 40 small letters, digits and underscores, a letter first.',
+  );
 
 const formats = [
   'power',
@@ -28,9 +36,38 @@ const formats = [
   'number',
   'yes_no',
 ] as const satisfies readonly QuantityFormat[];
-const units = ['W', 'dBc', 'dBm', 'dB', 'A', 'V', 'Hz', 's', 'K', '1', ''] as const satisfies readonly QuantityUnit[];
+const units = [
+  'W',
+  'dBc',
+  'dBm',
+  'dB',
+  'A',
+  'V',
+  'Hz',
+  's',
+  'K',
+  '1',
+  '',
+] as const satisfies readonly QuantityUnit[];
 const entryUnits = [
-  ...(['dBm', 'W', 'Vrms', 'Vpk', 'Vpp', 'Vdc', 'dBc', 'dB', 'A', 'V', 'Hz', 's', '°C', 'K', '%', '1'] as const),
+  ...([
+    'dBm',
+    'W',
+    'Vrms',
+    'Vpk',
+    'Vpp',
+    'Vdc',
+    'dBc',
+    'dB',
+    'A',
+    'V',
+    'Hz',
+    's',
+    '°C',
+    'K',
+    '%',
+    '1',
+  ] as const),
   'yes/no',
 ] as const satisfies readonly EntryUnit[];
 

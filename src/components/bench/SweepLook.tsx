@@ -1,6 +1,7 @@
 import { useEffect, useRef } from 'react';
 import { Button } from '~/components/ui/Button';
 import { Notice } from '~/components/ui/Notice';
+import { referenceBandwidthHz } from '~/domain/bench/limit-rules';
 import { formatFrequency, formatNumber } from '~/domain/bench/format';
 import { ordinal } from '~/domain/bench/plan-products';
 import type { SweepLookAnswer } from '~/schemas/bench-sweeps';
@@ -97,8 +98,17 @@ function factsOf({ understood }: SweepLookAnswer): string {
     `${understood.points.toLocaleString('en')} points`,
     `${formatFrequency(lowHz)} to ${formatFrequency(highHz)}`,
     understood.rbwHz === null ? 'RBW not known' : `RBW ${formatFrequency(understood.rbwHz)}`,
+    referenceText(highHz),
     ...(understood.stepHz === null ? [] : [`points ${formatFrequency(understood.stepHz)} apart`]),
   ].join(' · ');
+}
+
+/** What products are stated in by the Radio Regulations, beside what the file was swept with. */
+function referenceText(highHz: number): string {
+  const below = formatFrequency(referenceBandwidthHz(1e6));
+  const above = formatFrequency(referenceBandwidthHz(100e6));
+  const parts = highHz > 30e6 ? `${below} to 30 MHz, ${above} above` : `${below} to 30 MHz`;
+  return `reference bandwidth ${parts} (from memory)`;
 }
 
 function acceptText({ readings }: SweepLookAnswer): string {

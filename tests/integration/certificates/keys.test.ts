@@ -90,7 +90,9 @@ describe('changing the signing key', () => {
 });
 
 describe('issuing', () => {
-  it('says what to do where there is no key', async () => {
+  it('says what to do where every key is retired', async () => {
+    await addSigningKey(callAs(database.db, bench.owner));
+    await database.db.update(signingKeys).set({ retiredAt: new Date() });
     await expect(issueFor(bench)).rejects.toThrow('its owner makes one under Office, Signing keys');
   });
 

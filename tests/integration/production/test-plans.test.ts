@@ -174,7 +174,8 @@ describe('a draft', () => {
       { no: '1', ...row({ quantity: 'rf_power', band: '40m', freq: '7030', lower: '4 W' }) },
       { no: '', ...row({}) },
     ];
-    for (const line of lines) for (const [name, text] of Object.entries<string>({ ...line })) form.append(name, text);
+    for (const line of lines)
+      for (const [name, text] of Object.entries<string>({ ...line })) form.append(name, text);
     const call = { params: { slug, letter: 'b' }, person: owner, headers: browser };
     const { response } = await callDoor(save, { ...call, body: form });
     expect(response.headers.get('location')).toBe('/works/models/holm-3/test-plans/b');
