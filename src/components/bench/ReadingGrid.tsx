@@ -235,7 +235,9 @@ function ComputedCell({ point, label, station, judged, cells }: ComputedProps) {
   return (
     <button
       type="button"
-      className={['bench-cell w-full text-left', isInHand && 'bench-cell-in-hand'].filter(Boolean).join(' ')}
+      className={['bench-cell flex w-full flex-col justify-start text-left', isInHand && 'bench-cell-in-hand']
+        .filter(Boolean)
+        .join(' ')}
       aria-current={isInHand ? 'true' : undefined}
       onClick={() => cells.enter(point.id)}
     >
@@ -245,7 +247,7 @@ function ComputedCell({ point, label, station, judged, cells }: ComputedProps) {
           {label}
         </span>
       )}
-      <span className="flex min-h-7 items-center gap-1 font-mono">
+      <span className="flex min-h-7 items-center gap-1 font-mono text-[1.0625rem] tracking-tight">
         <span className="flex-1">{value === null ? '—' : formatValue(value, point.quantity)}</span>
         {judgement !== undefined && judgement.n > 0 && <VerdictMark verdict={judgement.verdict} bare />}
       </span>
