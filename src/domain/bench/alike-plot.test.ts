@@ -32,10 +32,10 @@ describe('the values like a reading', () => {
 
   it('keep apart what an old sheet says', () => {
     const values = [...measured(2), { value: 1, isHistory: true }];
-    expect(alikePlot({ ...none, values }, frame)?.dots.map(({ isHistory }) => isHistory)).toEqual([
-      true,
-      false,
-    ]);
+    const plot = alikePlot({ ...none, values }, frame);
+    expect(plot?.dots.map(({ isHistory }) => isHistory)).toEqual([true, false]);
+    // The median is that of the runs alone: it stands at the 2.
+    expect(plot?.median).toBe(plot?.dots[1]?.x);
   });
 
   it('are not drawn where there are none', () => {

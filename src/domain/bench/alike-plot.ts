@@ -23,6 +23,7 @@ export interface AlikePlot {
   dots: { x: number; y: number; isHistory: boolean }[];
   reading: number | null;
   limits: { x: number; value: number; side: 'lower' | 'upper' }[];
+  /** Of the closed runs alone. */
   median: number;
   ends: { min: number; max: number };
 }
@@ -30,9 +31,9 @@ export interface AlikePlot {
 /** Dots keep this far apart, or stand upon each other. */
 const DOT_ROOM = 9;
 
-/** Lays the values out in a frame; null where nothing is like it. */
+/** Lays the values out in a frame; null where no closed run has one. */
 export function alikePlot({ values, reading, lower, upper }: Given, frame: PlotFrame): AlikePlot | null {
-  const middle = median(values.map(({ value }) => value));
+  const middle = median(values.filter(({ isHistory }) => !isHistory).map(({ value }) => value));
   if (middle === null) return null;
   const marks = [...values.map(({ value }) => value), reading, lower, upper].filter((mark) => mark !== null);
   const smallest = Math.min(...marks);
