@@ -12,6 +12,8 @@ interface Fixtures {
   mailbox: Mailbox;
   /** A page of a person of the demo works, in a browser of their own. */
   login: (viewer: Viewer, options?: ContextOptions) => Promise<Page>;
+  /** What a test makes go wrong inside a page on purpose. */
+  expectedFaults: RegExp[];
   /** Collects what goes wrong inside a page; looked at when the test ends. */
   watch: (page: Page) => Page;
 }
@@ -50,7 +52,10 @@ export const test = base.extend<Fixtures, WorkerFixtures>({
     await use(new Mailbox(setting('RIGWRIGHT_E2E_MAILBOX')));
   },
   // eslint-disable-next-line no-empty-pattern
-  watch: async ({}, use) => {
+  expectedFaults: async ({}, use) => {
+    await use([]);
+  },
+  watch: async ({ expectedFaults }, use) => {
     const faults: string[] = [];
     const own = new URL(setting('RIGWRIGHT_E2E_URL')).origin;
     await use((page) => {
@@ -66,7 +71,8 @@ export const test = base.extend<Fixtures, WorkerFixtures>({
       });
       return page;
     });
-    expect(faults, 'what went wrong inside the pages').toEqual([]);
+    const unexpected = faults.filter((fault) => !expectedFaults.some((one) => one.test(fault)));
+    expect(unexpected, 'what went wrong inside the pages').toEqual([]);
   },
   login: async ({ browser, sessions, watch, contextOptions, baseURL }, use) => {
     const contexts: BrowserContext[] = [];

@@ -8,8 +8,11 @@ import { waitForIslands } from './people';
 test('a dead network, a second window and another tester lose nothing on the station', async ({
   login,
   database,
+  expectedFaults,
 }) => {
-  test.setTimeout(60_000);
+  test.setTimeout(120_000);
+  // The dead network, and the second window's entry that is not taken.
+  expectedFaults.push(/ERR_INTERNET_DISCONNECTED/, /409 \(Conflict\)/);
   const page = await login('tester');
   const [unit] = await database
     .select({ id: units.id, serial: units.serial })

@@ -112,7 +112,7 @@ describe('a concession', () => {
     const folder = await mkdtemp(join(tmpdir(), 'certificate-'));
     try {
       const file = join(folder, 'certificate.pdf');
-      await writeFile(file, await makeCertificatePdf(database.db, certificateId));
+      await writeFile(file, (await makeCertificatePdf(database.db, certificateId)) ?? '');
       const { stdout } = await run('pdftotext', [file, '-']);
       expect(stdout.replace(/\s+/gu, ' ')).toContain(
         `By concession of the owner: Current, key down, 20 m, 950 mA where ≤ 900 mA is asked. ${reason}`,
