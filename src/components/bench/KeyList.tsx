@@ -6,6 +6,7 @@ const keys = [
   ['Escape', 'leave the cell as it was'],
   ['Alt R', 'read again: adds a reading, all of them count'],
   ['Alt V', 'void the newest reading of the cell, with a cause'],
+  ['Alt B', 'open or shut the uncertainty budget'],
   ['Alt L', 'load a sweep for the band'],
   ['Alt S', 'scratch readings: judged, never kept'],
   ['Alt O', 'go on by quantity or by band'],

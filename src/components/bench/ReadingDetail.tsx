@@ -16,6 +16,9 @@ interface Props {
   equipment: Equipment;
   chosen: Chosen;
   editable: boolean;
+  /** Stays as it is from cell to cell. */
+  isBudgetOpen: boolean;
+  onBudget: (isOpen: boolean) => void;
   onChoose: (chosen: Chosen) => void;
   onReadAgain: () => void;
   onVoid: (reading: StationReading) => void;
@@ -104,7 +107,9 @@ export function ReadingDetail(props: Props) {
           )}
         </div>
       )}
-      {judgement.uComponents.length > 0 && <Budget judgement={judgement} />}
+      {judgement.uComponents.length > 0 && (
+        <Budget judgement={judgement} isOpen={props.isBudgetOpen} onToggle={props.onBudget} />
+      )}
     </section>
   );
 }
@@ -145,12 +150,20 @@ function sourceText({ source, enteredText }: StationReading): string {
   return source === 'history' ? `${entered}, from an old sheet` : entered;
 }
 
-function Budget({ judgement }: { judgement: PointJudgement }) {
+interface BudgetProps {
+  judgement: PointJudgement;
+  isOpen: boolean;
+  onToggle: (isOpen: boolean) => void;
+}
+
+function Budget({ judgement, isOpen, onToggle }: BudgetProps) {
   const { uComponents, U, k, uUnit } = judgement;
   const decimals = uUnit === 'Hz' ? 1 : uUnit === 'A' ? 4 : 3;
   return (
-    <details>
-      <summary className="font-semibold">Uncertainty budget</summary>
+    <details open={isOpen} onToggle={({ currentTarget }) => onToggle(currentTarget.open)}>
+      <summary className="font-semibold" aria-keyshortcuts="Alt+B">
+        Uncertainty budget
+      </summary>
       <div className="table-frame mt-2" role="region" aria-label="Uncertainty budget" tabIndex={0}>
         <table className="table text-[0.9375rem]">
           <caption className="sr-only">Components of the expanded uncertainty, in {uUnit}</caption>

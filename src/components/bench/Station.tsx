@@ -73,6 +73,7 @@ function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey 
   const grid = gridOf(station.sheet.points);
   const [order, setOrder] = useState<'quantity' | 'band'>('quantity');
   const [asking, setAsking] = useState<Asking | null>(null);
+  const [isBudgetOpen, setBudgetOpen] = useState(false);
   const fileInput = useRef<HTMLInputElement>(null);
 
   const ask = useMutation({
@@ -98,6 +99,7 @@ function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey 
     v: () => askVoid(newest),
     l: () => editable && fileInput.current?.click(),
     s: () => point !== undefined && isRead(point) && setAsking({ kind: 'scratch' }),
+    b: () => setBudgetOpen(!isBudgetOpen),
     o: () => setOrder(order === 'band' ? 'quantity' : 'band'),
     c: () => editable && against === undefined && setAsking({ kind: 'close' }),
     '?': () => setAsking({ kind: 'keys' }),
@@ -221,7 +223,8 @@ function Bench({ station: first, equipment, personId, mayTest, isOwner, formKey 
               <AlikePlot runId={runId} {...{ point, judgement }} />
               <Concession key={point.id} {...{ station, point, judgement, isOwner }} onChanged={refetch} />
               <ReadingDetail
-                {...{ point, judgement, readings, equipment, chosen, editable }}
+                {...{ point, judgement, readings, equipment, chosen, editable, isBudgetOpen }}
+                onBudget={setBudgetOpen}
                 onChoose={(next) => choose(point.quantity.key, next)}
                 onReadAgain={cells.readAgain}
                 onVoid={askVoid}
