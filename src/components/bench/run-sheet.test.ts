@@ -2,8 +2,9 @@ import { describe, expect, it } from 'vitest';
 import { judgeRun } from '~/domain/bench/judge-run';
 import { ruleForDestination } from '~/domain/bench/limit-rules';
 import { knownQuantity } from '~/domain/bench/quantities';
+import type { Verdict } from '~/domain/bench/types';
 import type { Station, StationReading } from '~/schemas/bench-station';
-import { entryOrder, gridOf, judgeStation, neighbour, unitHint } from './run-sheet';
+import { entryOrder, gridOf, judgeStation, neighbour, notesOf, unitHint } from './run-sheet';
 import type { Equipment, Point } from './run-sheet';
 import { scratchReading } from './scratch';
 
@@ -169,5 +170,26 @@ describe('a scratch reading', () => {
   it('says why it cannot be read', () => {
     const read = scratchReading(stationWith([]), equipment, power, { ...entry, text: 'about five' });
     expect(read).toMatchObject({ ok: false, ask: false });
+  });
+});
+
+describe('a concession', () => {
+  const power = point(1, 'rf_power', { lower: 2 });
+  const station = stationWith([reading(1, power, 0.5)]);
+  const conceded: Station = {
+    ...station,
+    sheet: { ...station.sheet, concessions: [{ testPointId: power.id, reason: 'A demonstrator.' }] },
+  };
+  const notes = (of: Station, verdict: Verdict) => {
+    const { judgements } = judgeStation(of);
+    const judgement = judgements.get(power.id);
+    if (judgement === undefined) throw new Error('every point is judged');
+    return notesOf(power, { ...judgement, verdict }, of, judgements);
+  };
+
+  it('is said in the cell that it lets go, and in no other', () => {
+    expect(notes(conceded, 'fail')).toContain('let go by concession');
+    expect(notes(conceded, 'pass')).not.toContain('let go by concession');
+    expect(notes(station, 'fail')).not.toContain('let go by concession');
   });
 });

@@ -302,6 +302,14 @@ function bare(value: number, quantity: Quantity): string {
   return formatValue(value, quantity).replace('+', '');
 }
 
+/** Whether the owner lets a missed point go: of an open run as it stands, of a closed one as it was kept. */
+function isConceded(point: Point, judgement: PointJudgement | undefined, { sheet, kept }: Station): boolean {
+  const isMissed = judgement?.verdict === 'fail' || judgement?.verdict === 'too_close';
+  const keptPoint = kept.find(({ testPointId }) => testPointId === point.id);
+  if (keptPoint !== undefined) return keptPoint.concession !== null;
+  return isMissed && sheet.concessions.some(({ testPointId }) => testPointId === point.id);
+}
+
 /** Beneath the need: the meter for powers, efficiency for currents, how many readings. */
 export function notesOf(
   point: Point,
@@ -309,7 +317,7 @@ export function notesOf(
   station: Station,
   all: ReadonlyMap<number, PointJudgement>,
 ): string[] {
-  const notes: string[] = [];
+  const notes = isConceded(point, judgement, station) ? ['let go by concession'] : [];
   if (judgement === undefined || judgement.atMeter === null) return notes;
   if (point.quantity.key === 'rf_power') {
     notes.push(`${formatAtMeter(judgement.atMeter, point.quantity)} at meter`);
