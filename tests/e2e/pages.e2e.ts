@@ -37,7 +37,7 @@ for (const viewer of viewers) {
   test(`every page for the ${viewer}: can be used by everybody, fits, and breaks nothing`, async ({
     login,
   }) => {
-    test.setTimeout(400_000);
+    test.setTimeout(800_000);
     const page = await login(viewer, { viewport: wide, colorScheme: 'light', reducedMotion: 'reduce' });
     const mine = pages.filter((each) => each.viewers.includes(viewer) && each.status !== 500);
     expect(mine.length).toBeGreaterThan(0);
